@@ -1,0 +1,19 @@
+import type { Database, Tx } from "./client.ts";
+import { isWorthRetrying } from "./errors.ts";
+
+const ATTEMPTS = 5;
+
+/**
+ * Runs `work` in one READ COMMITTED transaction and again, whole, after a deadlock or a lost lock wait.
+ * `work` must therefore touch nothing but the database.
+ */
+export async function inTransaction<T>(db: Database, work: (tx: Tx) => Promise<T>): Promise<T> {
+  for (let attempt = 1; ; attempt++) {
+    try {
+      return await db.transaction(work, { isolationLevel: "read committed" });
+    } catch (error) {
+      if (attempt >= ATTEMPTS || !isWorthRetrying(error)) throw error;
+      await new Promise((resolve) => setTimeout(resolve, 5 * 2 ** attempt * (0.5 + Math.random())));
+    }
+  }
+}

@@ -1,0 +1,58 @@
+import type { Role, Scope } from "./codes.ts";
+
+type Grant = { roles: readonly Role[]; scope?: Scope };
+
+const everyone: readonly Role[] = ["reviewer", "supervisor", "risk_manager", "auditor", "administrator"];
+
+/**
+ * The one matrix of who may do what. Endpoints and pages name a capability; nothing else grants.
+ * `scope` lets a machine's key in; scopes that act for a person carry that person's roles as well.
+ */
+export const CAPABILITIES = {
+  "account.own": { roles: everyone },
+  "cases.read": { roles: ["reviewer", "supervisor", "risk_manager", "auditor"], scope: "cases:read" },
+  "desk.work": { roles: ["reviewer", "supervisor"], scope: "cases:decide" },
+  "case.correct": { roles: ["supervisor"], scope: "cases:decide" },
+  "case.assign": { roles: ["supervisor"], scope: "cases:decide" },
+  "floor.read": { roles: ["supervisor"] },
+  "policy.read": { roles: ["supervisor", "risk_manager", "auditor"], scope: "reports:read" },
+  "policy.propose": { roles: ["supervisor"], scope: "policy:write" },
+  "policy.approve": { roles: ["supervisor", "risk_manager"], scope: "policy:write" },
+  "scorer.read": { roles: ["supervisor", "risk_manager", "auditor"], scope: "reports:read" },
+  "losses.read": { roles: ["reviewer", "supervisor", "risk_manager", "auditor"], scope: "reports:read" },
+  "summary.manage": { roles: ["risk_manager"] },
+  "trail.own": { roles: ["reviewer", "supervisor", "risk_manager", "auditor"] },
+  "trail.read": { roles: ["supervisor", "risk_manager", "auditor"], scope: "reports:read" },
+  "intake.send": { roles: [], scope: "transactions:write" },
+  "outcomes.send": { roles: ["supervisor", "risk_manager"], scope: "outcomes:write" },
+  "intake.read": { roles: ["supervisor", "administrator", "auditor"] },
+  "intake.upload": { roles: ["supervisor"] },
+  "keys.manage": { roles: ["administrator"] },
+  "people.read": { roles: ["administrator", "auditor"] },
+  "people.manage": { roles: ["administrator"] },
+  "mail.read": { roles: ["administrator", "risk_manager", "auditor"] },
+  "metrics.read": { roles: [], scope: "reports:read" },
+} as const satisfies Record<string, Grant>;
+
+export type Capability = keyof typeof CAPABILITIES;
+
+/** Scopes whose key acts with one named person's rights. */
+export const PERSONAL_SCOPES: readonly Scope[] = ["cases:decide", "policy:write"];
+
+function grantOf(capability: Capability): Grant {
+  return CAPABILITIES[capability];
+}
+
+export function rolesMay(roles: readonly Role[], capability: Capability): boolean {
+  return roles.some((role) => grantOf(capability).roles.includes(role));
+}
+
+export function scopesMay(scopes: readonly Scope[], capability: Capability): boolean {
+  const { scope } = grantOf(capability);
+  return scope !== undefined && scopes.includes(scope);
+}
+
+export function isPersonal(capability: Capability): boolean {
+  const { scope } = grantOf(capability);
+  return scope !== undefined && PERSONAL_SCOPES.includes(scope);
+}

@@ -1,0 +1,45 @@
+import "server-only";
+import { createHash } from "node:crypto";
+import { and, eq, isNull } from "drizzle-orm";
+import { NextRequest } from "next/server";
+import { getToken } from "next-auth/jwt";
+import type { Database } from "@/db/client";
+import { apiKeys } from "@/db/schema/people";
+import type { Actor, PersonActor } from "../context";
+import { environment } from "../env";
+import { unauthenticated } from "../errors";
+import { findActivePerson, findPersonForSession } from "./read";
+
+/** Whose request it is: a key in the Authorization header, else the session cookie. @throws KnownError unauthenticated */
+export async function identify(url: string, headers: Headers, db: Database, now: Date): Promise<Actor> {
+  const authorization = headers.get("Authorization");
+  return authorization === null ? identifySession(url, headers, db) : identifyKey(authorization, db, now);
+}
+
+export async function identifySession(url: string, headers: Headers, db: Database): Promise<PersonActor> {
+  const token = await getToken({ req: new NextRequest(url, { headers }), secret: environment().AUTH_SECRET });
+  if (!token?.sub) throw unauthenticated("Your session has ended; sign in again");
+  const person = await findPersonForSession(db, token.sub, Number(token.sessionVersion));
+  if (!person) throw unauthenticated("Your session has ended; sign in again");
+  return { kind: "person", ...person, key: null };
+}
+
+async function identifyKey(header: string, db: Database, now: Date): Promise<Actor> {
+  const key = /^Bearer ([\x21-\x7e]+)$/.exec(header)?.[1];
+  if (!key) throw unauthenticated("Send the key as Authorization: Bearer <key>");
+  const hash = createHash("sha256").update(key).digest();
+  const [row] = await db
+    .select()
+    .from(apiKeys)
+    .where(and(eq(apiKeys.hash, hash), isNull(apiKeys.revokedAt)));
+  if (!row) throw unauthenticated("This key is not known or has been revoked");
+  // To the minute: a feed of thousands of requests should not write a row for each.
+  if (!row.lastUsedAt || now.getTime() - row.lastUsedAt.getTime() > 60_000) {
+    await db.update(apiKeys).set({ lastUsedAt: now }).where(eq(apiKeys.id, row.id));
+  }
+  const { id, source, scopes } = row;
+  if (!row.actsForPersonId) return { kind: "key", id, source, scopes };
+  const person = await findActivePerson(db, row.actsForPersonId);
+  if (!person) throw unauthenticated("The person this key acts for is no longer active");
+  return { kind: "person", ...person, key: { id, source, scopes } };
+}

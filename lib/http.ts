@@ -1,0 +1,124 @@
+import "server-only";
+import { createHash } from "node:crypto";
+import type { z } from "zod";
+import { sharedDatabase } from "@/db/client";
+import { demand } from "./auth/demand";
+import { identify } from "./auth/identify";
+import type { Actor, Context } from "./context";
+import { type Endpoint, pathParameters } from "./endpoint";
+import { ENDPOINTS, type EndpointKey } from "./endpoints";
+import { environment } from "./env";
+import { invalid } from "./errors";
+import { log } from "./log";
+import { newId } from "./new-id";
+import { problemResponse } from "./problem";
+import { refuseForeignOrigin } from "./origin";
+import { spendFromBudget } from "./rate-limit";
+import { readJsonBody } from "./request-body";
+import { fieldErrors } from "./field-errors";
+import { canonicalJson } from "./trail/chain";
+import { ReplayedAnswer } from "./write-once";
+
+type InputOf<K extends EndpointKey> = z.output<(typeof ENDPOINTS)[K]["input"]>;
+type OutputOf<K extends EndpointKey> = (typeof ENDPOINTS)[K]["output"] extends z.ZodType
+  ? z.input<(typeof ENDPOINTS)[K]["output"]>
+  : Response;
+
+type RouteArguments = { params: Promise<Record<string, string | string[] | undefined>> };
+
+/** A use case reached by HTTP. `null` answers 204. */
+type Handler<K extends EndpointKey> = (
+  ctx: Context,
+  input: InputOf<K>,
+  request: Request,
+) => Promise<OutputOf<K> | Response | null>;
+
+/**
+ * The only door: finds out who calls, asks the access matrix, checks the input against the endpoint's schema,
+ * and turns every error into a problem of RFC 9457.
+ */
+export function route<K extends EndpointKey>(key: K, handler: Handler<K>) {
+  const endpoint: Endpoint = ENDPOINTS[key];
+  return async (request: Request, { params }: RouteArguments): Promise<Response> => {
+    const requestId = newId();
+    const startedMs = performance.now();
+    let actor: Actor | null = null;
+    let response: Response;
+    try {
+      const ctx = await contextOf(request, endpoint, requestId);
+      actor = ctx.actor;
+      const input = await readInput(key, endpoint, request, await params);
+      const keyed = { ...ctx, idempotency: idempotencyOf(request, key, endpoint, input) };
+      response = toResponse(await handler(keyed, input as InputOf<K>, request), endpoint);
+    } catch (error) {
+      response =
+        error instanceof ReplayedAnswer
+          ? toResponse(error.answer, endpoint)
+          : problemResponse(error, requestId);
+    }
+    response.headers.set("X-Request-Id", requestId);
+    if (!response.headers.has("Cache-Control")) response.headers.set("Cache-Control", "no-store");
+    log.info({
+      requestId,
+      route: key,
+      status: response.status,
+      actor: actor ? actorLabel(actor) : null,
+      ms: Math.round(performance.now() - startedMs),
+    });
+    return response;
+  };
+}
+
+async function contextOf(request: Request, endpoint: Endpoint, requestId: string): Promise<Context> {
+  const db = sharedDatabase(environment().DATABASE_URL);
+  const base = { db, now: () => new Date(), requestId, idempotency: null };
+  if (endpoint.may === "anyone") return { ...base, actor: { kind: "system", job: "anonymous" } };
+  const actor = await identify(request.url, request.headers, db, base.now());
+  const ctx: Context = { ...base, actor };
+  // Refused before the input is read, so that a stranger learns nothing about it.
+  demand(ctx, endpoint.may);
+  refuseForeignOrigin(request, actor);
+  await spendFromBudget(actor);
+  return ctx;
+}
+
+async function readInput(
+  key: string,
+  endpoint: Endpoint,
+  request: Request,
+  params: Record<string, string | string[] | undefined>,
+): Promise<unknown> {
+  const names = pathParameters(key);
+  const fromPath = Object.fromEntries(names.map((name) => [name, params[name]]));
+  const url = new URL(request.url);
+  const fromQuery = Object.fromEntries(url.searchParams);
+  const isJson = request.method !== "GET" && (endpoint.body ?? "json") === "json";
+  const fromBody = isJson ? await readJsonBody(request) : {};
+  const sent: Record<string, unknown> = isJson ? fromBody : fromQuery;
+  const clash = names.find((name) => name in sent);
+  if (clash) throw invalid([{ path: clash, message: "belongs in the address, not in the body or the query" }]);
+  const parsed = endpoint.input.safeParse({ ...sent, ...fromPath });
+  if (!parsed.success) throw invalid(fieldErrors(parsed.error));
+  return parsed.data;
+}
+
+function idempotencyOf(request: Request, route: string, endpoint: Endpoint, input: unknown) {
+  const key = request.headers.get("Idempotency-Key");
+  if (request.method !== "POST" || key === null || endpoint.body === "raw") return null;
+  if (!/^[\x21-\x7e]{1,128}$/.test(key)) {
+    throw invalid([{ path: "Idempotency-Key", message: "needs 1 to 128 visible ASCII characters" }]);
+  }
+  return { key, requestHash: createHash("sha256").update(canonicalJson({ route, input })).digest() };
+}
+
+function toResponse(answer: unknown, endpoint: Endpoint): Response {
+  if (answer instanceof Response) return answer;
+  if (answer === null || answer === undefined) return new Response(null, { status: 204 });
+  return Response.json(answer, { status: endpoint.status ?? 200 });
+}
+
+function actorLabel(actor: Actor): string {
+  if (actor.kind === "person") return actor.personId;
+  return actor.kind === "key" ? actor.id : actor.job;
+}
+

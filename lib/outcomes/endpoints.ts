@@ -1,0 +1,3 @@
+import type { EndpointTable } from "../endpoint.ts";
+
+export const outcomeEndpoints = {} as const satisfies EndpointTable;

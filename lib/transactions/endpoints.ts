@@ -1,0 +1,3 @@
+import type { EndpointTable } from "../endpoint.ts";
+
+export const transactionEndpoints = {} as const satisfies EndpointTable;
