@@ -1,5 +1,14 @@
 import { createHash } from "node:crypto";
-import { existsSync, mkdirSync, openSync, closeSync, readFileSync, renameSync, rmSync, writeFileSync } from "node:fs";
+import {
+  closeSync,
+  existsSync,
+  mkdirSync,
+  openSync,
+  readFileSync,
+  renameSync,
+  rmSync,
+  writeFileSync,
+} from "node:fs";
 import { connect } from "node:net";
 import { tmpdir } from "node:os";
 import path from "node:path";
@@ -32,7 +41,8 @@ export async function ensureMariadb() {
   // The installer asks my_print_defaults, which Debian keeps in the client's package.
   await installDebianPackages("MariaDB 10.11", ["mariadb-server-core", "mariadb-client-core"]);
   const installed = findMariadb();
-  if (!installed) throw new Refusal("MariaDB was installed, but its mariadbd is not on PATH or in /usr/sbin.");
+  if (!installed)
+    throw new Refusal("MariaDB was installed, but its mariadbd is not on PATH or in /usr/sbin.");
   return installed;
 }
 
@@ -56,7 +66,10 @@ export async function startMariadb(folder, { fast = false } = {}) {
   const port = await rememberedPort(path.join(folder, "mariadb.port"));
   const log = path.join(folder, "mariadb.log");
   const output = openSync(log, "a", 0o600);
-  const service = startService("MariaDB", programs.server, serverOptions({ database, port, fast }), { output, stopWaitMs: 90_000 });
+  const service = startService("MariaDB", programs.server, serverOptions({ database, port, fast }), {
+    output,
+    stopWaitMs: 90_000,
+  });
   closeSync(output);
   await untilItGreets(service, port, log);
   return { port, ...accountUrls(folder, port), service };
@@ -86,9 +99,20 @@ async function initialise(install, folder, database) {
   const accounts = path.join(folder, "accounts.sql");
   writeFileSync(accounts, accountsSql(folder), { mode: 0o600 });
   try {
-    const options = ["--no-defaults", ...asRoot(), "--auth-root-authentication-method=normal", "--skip-test-db", "--skip-name-resolve"];
-    const { code, output } = await runToEnd(install, [...options, `--extra-file=${accounts}`, `--datadir=${unfinished}`], { quiet: true });
-    if (code !== 0) throw new Refusal(`${output.trim()}\nMariaDB could not make its database in ${unfinished}.`);
+    const options = [
+      "--no-defaults",
+      ...asRoot(),
+      "--auth-root-authentication-method=normal",
+      "--skip-test-db",
+      "--skip-name-resolve",
+    ];
+    const { code, output } = await runToEnd(
+      install,
+      [...options, `--extra-file=${accounts}`, `--datadir=${unfinished}`],
+      { quiet: true },
+    );
+    if (code !== 0)
+      throw new Refusal(`${output.trim()}\nMariaDB could not make its database in ${unfinished}.`);
     renameSync(unfinished, database);
   } finally {
     rmSync(accounts, { force: true });
@@ -166,7 +190,8 @@ async function untilItGreets(service, port, log) {
   void service.ended.then((how) => (ended = how));
   const deadline = Date.now() + startWaitMs;
   while (!(await greets(port))) {
-    if (ended) throw new Refusal(`MariaDB did not start (${ended}). Its log, ${log}, ends:\n${lastLines(log)}`);
+    if (ended)
+      throw new Refusal(`MariaDB did not start (${ended}). Its log, ${log}, ends:\n${lastLines(log)}`);
     if (Date.now() > deadline) {
       await service.stop();
       throw new Refusal(`MariaDB was not ready after ${startWaitMs / 1000} s. Its log is ${log}.`);

@@ -110,7 +110,11 @@ export function startService(name, command, args, { env, cwd, output = "inherit"
  */
 export function runToEnd(command, args, { env, cwd, quiet = false } = {}) {
   return new Promise((resolve, reject) => {
-    const child = spawn(command, args, { env, cwd, stdio: ["inherit", quiet ? "pipe" : "inherit", quiet ? "pipe" : "inherit"] });
+    const child = spawn(command, args, {
+      env,
+      cwd,
+      stdio: ["inherit", quiet ? "pipe" : "inherit", quiet ? "pipe" : "inherit"],
+    });
     let output = "";
     for (const stream of [child.stdout, child.stderr]) stream?.on("data", (chunk) => (output += chunk));
     child.once("error", reject);

@@ -1,0 +1,13 @@
+import type { NextConfig } from "next";
+
+const config: NextConfig = {
+  poweredByHeader: false,
+  reactStrictMode: true,
+  // Native or worker-spawning packages stay outside the bundle.
+  serverExternalPackages: ["@node-rs/argon2", "mysql2", "pino"],
+  // The checks build beside a running installation, not over it.
+  distDir: process.env.CUPEL_BUILD_DIR ?? ".next",
+  turbopack: { root: import.meta.dirname },
+};
+
+export default config;
