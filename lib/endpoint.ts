@@ -1,5 +1,5 @@
 import type { z } from "zod";
-import type { Capability } from "./auth/access.ts";
+import type { Capability } from "./auth/access";
 
 export type Endpoint = {
   summary: string;

@@ -1,10 +1,10 @@
-import { caseEndpoints } from "./cases/endpoints.ts";
-import { decisionEndpoints } from "./decisions/endpoints.ts";
-import type { EndpointTable } from "./endpoint.ts";
-import { outcomeEndpoints } from "./outcomes/endpoints.ts";
-import { platformEndpoints } from "./platform-endpoints.ts";
-import { policyEndpoints } from "./policy/endpoints.ts";
-import { transactionEndpoints } from "./transactions/endpoints.ts";
+import { caseEndpoints } from "./cases/endpoints";
+import { decisionEndpoints } from "./decisions/endpoints";
+import type { EndpointTable } from "./endpoint";
+import { outcomeEndpoints } from "./outcomes/endpoints";
+import { platformEndpoints } from "./platform-endpoints";
+import { policyEndpoints } from "./policy/endpoints";
+import { transactionEndpoints } from "./transactions/endpoints";
 
 /** Every route of the HTTP API: validation, access and the OpenAPI document come from here. */
 export const ENDPOINTS = {

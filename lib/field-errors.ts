@@ -1,5 +1,5 @@
 import type { z } from "zod";
-import type { FieldError } from "./errors.ts";
+import type { FieldError } from "./errors";
 
 /** One line per fault, each with the name of its field; unknown fields are named too. Values are never repeated. */
 export function fieldErrors(error: z.ZodError, prefix = ""): FieldError[] {

@@ -1,5 +1,5 @@
 import { z } from "zod";
-import type { EndpointTable } from "./endpoint.ts";
+import type { EndpointTable } from "./endpoint";
 
 const Nothing = z.strictObject({});
 

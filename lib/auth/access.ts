@@ -1,4 +1,4 @@
-import type { Role, Scope } from "./codes.ts";
+import type { Role, Scope } from "./codes";
 
 type Grant = { roles: readonly Role[]; scope?: Scope };
 

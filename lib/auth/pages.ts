@@ -1,4 +1,4 @@
-import type { Capability } from "./access.ts";
+import type { Capability } from "./access";
 
 /** Every page and the capability it takes; a page that is not listed is refused. Order is the order of the menu. */
 export const PAGES = {

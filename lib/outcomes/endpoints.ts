@@ -1,3 +1,3 @@
-import type { EndpointTable } from "../endpoint.ts";
+import type { EndpointTable } from "../endpoint";
 
 export const outcomeEndpoints = {} as const satisfies EndpointTable;

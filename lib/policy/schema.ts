@@ -1,6 +1,6 @@
 import { z } from "zod";
-import { CHANNELS } from "../transactions/codes.ts";
-import { ORDERS } from "./codes.ts";
+import { CHANNELS } from "../transactions/codes";
+import { ORDERS } from "./codes";
 
 const Probability = z.number().min(0).max(1);
 const Minor = z.number().int().min(0).max(Number.MAX_SAFE_INTEGER);
