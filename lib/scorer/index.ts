@@ -1,0 +1,19 @@
+export { DimensionError, LabelError, NotFiniteError, OptionsError, SnapshotError, StepError } from "./errors";
+export { logLoss, probabilityOf } from "./logistic";
+export { createScorer, restoreScorer } from "./scorer";
+export {
+  type Explanation,
+  type Label,
+  type Learned,
+  METHODS,
+  type Method,
+  type Move,
+  type PartReading,
+  type Placed,
+  type Reading,
+  type Score,
+  type Scorer,
+  type ScorerOptions,
+  type Step,
+} from "./types";
+export { createWaiting, type Waiting } from "./waiting";
