@@ -29,5 +29,9 @@ export async function startMailCatcher(folder) {
     ...(kept ? { mailDirectory: kept } : {}),
   });
   await catcher.start();
-  return { smtpUrl: `smtp://127.0.0.1:${smtp}`, url: `http://127.0.0.1:${web}`, stop: () => catcher.stop() };
+  return {
+    smtpUrl: `smtp://127.0.0.1:${smtp}`,
+    url: `http://127.0.0.1:${web}/index.html`,
+    stop: () => catcher.stop(),
+  };
 }

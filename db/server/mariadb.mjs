@@ -56,10 +56,12 @@ function findMariadb() {
 /**
  * Starts a MariaDB on loopback from the data folder, making its database first where there is none.
  * @param {string} folder the data folder
- * @param {{ fast?: boolean }} [options] fast gives durability up, for databases that do not outlive a test run
+ * @param {{ fast?: boolean, signal?: AbortSignal, onSpawn?: (service: import("./processes.mjs").Service) => void }} [options]
+ *   fast gives durability up, for databases that do not outlive a test run; the signal gives up waiting; onSpawn is
+ *   told of the process before it is ready
  * @returns {Promise<Mariadb>}
  */
-export async function startMariadb(folder, { fast = false } = {}) {
+export async function startMariadb(folder, { fast = false, signal, onSpawn } = {}) {
   const programs = await ensureMariadb();
   const database = path.join(folder, "mariadb");
   if (!existsSync(database)) await initialise(programs.install, folder, database);
@@ -71,7 +73,8 @@ export async function startMariadb(folder, { fast = false } = {}) {
     stopWaitMs: 90_000,
   });
   closeSync(output);
-  await untilItGreets(service, port, log);
+  onSpawn?.(service);
+  await untilItGreets(service, port, log, signal);
   return { port, ...accountUrls(folder, port), service };
 }
 
@@ -183,8 +186,9 @@ function socketPath(database) {
  * @param {import("./processes.mjs").Service} service
  * @param {number} port
  * @param {string} log
+ * @param {AbortSignal} [signal]
  */
-async function untilItGreets(service, port, log) {
+async function untilItGreets(service, port, log, signal) {
   /** @type {string | undefined} */
   let ended;
   void service.ended.then((how) => (ended = how));
@@ -192,8 +196,9 @@ async function untilItGreets(service, port, log) {
   while (!(await greets(port))) {
     if (ended)
       throw new Refusal(`MariaDB did not start (${ended}). Its log, ${log}, ends:\n${lastLines(log)}`);
-    if (Date.now() > deadline) {
+    if (signal?.aborted || Date.now() > deadline) {
       await service.stop();
+      signal?.throwIfAborted();
       throw new Refusal(`MariaDB was not ready after ${startWaitMs / 1000} s. Its log is ${log}.`);
     }
     await sleep(25);

@@ -105,20 +105,28 @@ export function startService(name, command, args, { env, cwd, output = "inherit"
  * Runs a command to its end.
  * @param {string} command
  * @param {string[]} args
- * @param {{ env?: NodeJS.ProcessEnv, cwd?: string, quiet?: boolean }} [options] quiet shows the output only if it fails
- * @returns {Promise<{ code: number, output: string }>} output is empty unless quiet
+ * @param {{ env?: NodeJS.ProcessEnv, cwd?: string, quiet?: boolean, signal?: AbortSignal }} [options] quiet gives
+ *   the output back instead of showing it; the signal ends the command
+ * @returns {Promise<{ code: number, output: string }>}
  */
-export function runToEnd(command, args, { env, cwd, quiet = false } = {}) {
+export function runToEnd(command, args, { env, cwd, quiet = false, signal } = {}) {
+  signal?.throwIfAborted();
+  const output = quiet ? "pipe" : "inherit";
   return new Promise((resolve, reject) => {
-    const child = spawn(command, args, {
-      env,
-      cwd,
-      stdio: ["inherit", quiet ? "pipe" : "inherit", quiet ? "pipe" : "inherit"],
+    const child = spawn(command, args, { env, cwd, signal, stdio: ["inherit", output, output] });
+    let text = "";
+    for (const stream of [child.stdout, child.stderr]) {
+      stream?.on("data", (chunk) => {
+        text += chunk;
+      });
+    }
+    /** @type {Error | undefined} */
+    let failure;
+    child.once("error", (error) => {
+      failure = error;
+      if (child.pid === undefined) reject(error);
     });
-    let output = "";
-    for (const stream of [child.stdout, child.stderr]) stream?.on("data", (chunk) => (output += chunk));
-    child.once("error", reject);
-    child.once("close", (code, signalName) => resolve({ code: code ?? (signalName ? 1 : 0), output }));
+    child.once("close", (code) => (failure ? reject(failure) : resolve({ code: code ?? 1, output: text })));
   });
 }
 

@@ -1,0 +1,63 @@
+import { startApp, untilLive } from "../server/app.mjs";
+import { buildApp, isBuildFresh } from "../server/build.mjs";
+import { ensureDemoData, migrate, openDatabase } from "../server/database.mjs";
+import { appEnvironment, portFrom } from "../server/environment.mjs";
+import { dataFolder } from "../server/folders.mjs";
+import { startMailCatcher } from "../server/mail-catcher.mjs";
+import { ensureMariadb } from "../server/mariadb.mjs";
+import { occupy } from "../server/occupancy.mjs";
+import { checkNode, ensurePackages } from "../server/packages.mjs";
+import { isPortFree } from "../server/ports.mjs";
+import { Refusal, runCommand } from "../server/refusal.mjs";
+import { runSession } from "../server/session.mjs";
+import { printWelcome } from "../server/welcome.mjs";
+
+const dev = process.argv.includes("--dev");
+
+/** @param {import("../server/session.mjs").Session} session */
+async function start(session) {
+  const { env } = process;
+  const { signal } = session;
+  checkNode();
+  const port = portFrom(env);
+  if (port === undefined) throw new Refusal("PORT must be a whole number from 1 to 65535.");
+
+  const folder = dataFolder(env);
+  const occupancy = await occupy(folder, dev ? "npm run dev" : "npm start");
+  session.onEnd("The data folder's record", occupancy.leave);
+  if (!(await isPortFree(port))) throw new Refusal(`Port ${port} is taken. Set PORT to another one.`);
+
+  const fresh = !dev && isBuildFresh(env);
+  await ensurePackages({ forBuilding: !fresh, signal });
+  if (!env.DATABASE_URL) await ensureMariadb();
+
+  const { url, ownerUrl, mariadb } = await openDatabase({ folder, env, session, occupancy });
+  const mail = env.SMTP_URL ? undefined : await startMailCatcher(folder);
+  if (mail) session.onEnd("The mail catcher", mail.stop);
+  const smtpUrl = mail?.smtpUrl ?? env.SMTP_URL ?? "";
+  const appEnv = appEnvironment({ env, folder, port, databaseUrl: url, smtpUrl });
+
+  await migrate(appEnv, ownerUrl, signal);
+  await ensureDemoData({ folder, env: appEnv, embedded: mariadb !== undefined, signal });
+  if (!dev && !fresh) {
+    console.log("Building the app …");
+    if ((await buildApp(env, signal)) !== 0) throw new Refusal("The build failed; its messages are above.");
+  }
+
+  const app = startApp(appEnv, { dev });
+  session.watch(app);
+  occupancy.addChild(app);
+  await untilLive(app, appEnv, signal);
+  occupancy.note({ appUrl: appEnv.APP_URL, smtpUrl, mailUrl: mail?.url });
+  printWelcome({ appUrl: appEnv.APP_URL ?? "", mailUrl: mail?.url, demo: appEnv.CUPEL_DEMO === "1" });
+
+  await session.untilStopped();
+  console.log("\nStopping …");
+  return 0;
+}
+
+await runCommand(async () => {
+  const code = await runSession(start);
+  if (code === 0) console.log("Stopped. The data is kept.");
+  return code;
+});
