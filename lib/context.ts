@@ -12,7 +12,9 @@ export type PersonActor = {
 };
 export type KeyActor = { kind: "key"; id: string; source: string; scopes: readonly Scope[] };
 export type SystemActor = { kind: "system"; job: string };
-export type Actor = PersonActor | KeyActor | SystemActor;
+/** A stranger at a door that is open to everybody; the access matrix gives it nothing. */
+export type AnonymousActor = { kind: "anonymous" };
+export type Actor = PersonActor | KeyActor | SystemActor | AnonymousActor;
 
 /** Everything a use case may know about the outside. */
 export type Context = {

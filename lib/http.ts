@@ -72,7 +72,7 @@ export function route<K extends EndpointKey>(key: K, handler: Handler<K>) {
 async function contextOf(request: Request, endpoint: Endpoint, requestId: string): Promise<Context> {
   const db = sharedDatabase(environment().DATABASE_URL);
   const base = { db, now: () => new Date(), requestId, idempotency: null };
-  if (endpoint.may === "anyone") return { ...base, actor: { kind: "system", job: "anonymous" } };
+  if (endpoint.may === "anyone") return { ...base, actor: { kind: "anonymous" } };
   const actor = await identify(request.url, request.headers, db, base.now());
   const ctx: Context = { ...base, actor };
   // Refused before the input is read, so that a stranger learns nothing about it.
@@ -119,6 +119,6 @@ function toResponse(answer: unknown, endpoint: Endpoint): Response {
 
 function actorLabel(actor: Actor): string {
   if (actor.kind === "person") return actor.personId;
+  if (actor.kind === "anonymous") return actor.kind;
   return actor.kind === "key" ? actor.id : actor.job;
 }
-

@@ -90,5 +90,6 @@ async function replay(ctx: Context, mine: ReturnType<typeof and>, requestHash: B
 
 function actorKey(actor: Actor): string {
   if (actor.kind === "person") return actor.key ? `key:${actor.key.id}` : `person:${actor.personId}`;
+  if (actor.kind === "anonymous") return actor.kind;
   return actor.kind === "key" ? `key:${actor.id}` : `system:${actor.job}`;
 }

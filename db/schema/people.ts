@@ -1,7 +1,7 @@
 import { sql } from "drizzle-orm";
 import { check, index, int, mysqlEnum, mysqlTable, primaryKey, tinyint, uniqueIndex, varchar } from "drizzle-orm/mysql-core";
-import { PERSON_STATES, ROLES, type Scope } from "../../lib/auth/codes.ts";
-import { bytes, instant, json, uuid } from "../columns.ts";
+import { PERSON_STATES, ROLES, type Scope } from "../../lib/auth/codes";
+import { bytes, instant, json, uuid } from "../columns";
 
 export const people = mysqlTable(
   "people",
@@ -53,6 +53,16 @@ export const apiKeys = mysqlTable(
     revokedAt: instant(),
   },
   (table) => [uniqueIndex("api_keys_hash").on(table.hash), uniqueIndex("api_keys_name").on(table.name)],
+);
+
+/** Sessions that were signed out of before their token ran out; rows older than the longest session are of no use. */
+export const endedSessions = mysqlTable(
+  "ended_sessions",
+  {
+    id: uuid().primaryKey(),
+    endedAt: instant().notNull(),
+  },
+  (table) => [index("ended_sessions_age").on(table.endedAt)],
 );
 
 export const idempotencyKeys = mysqlTable(

@@ -5,6 +5,7 @@ import { type Capability, isPersonal, rolesMay, scopesMay } from "./access";
 
 export function mayDo(actor: Actor, capability: Capability): boolean {
   if (actor.kind === "system") return true;
+  if (actor.kind === "anonymous") return false;
   if (actor.kind === "key") return scopesMay(actor.scopes, capability);
   if (!actor.key) return rolesMay(actor.roles, capability);
   if (!scopesMay(actor.key.scopes, capability)) return false;

@@ -55,5 +55,7 @@ function actorFields(actor: Actor) {
       return { actorKind: "key" as const, actorId: actor.id, onBehalfOf: null };
     case "system":
       return { actorKind: "system" as const, actorId: actor.job, onBehalfOf: null };
+    case "anonymous":
+      return { actorKind: "anonymous" as const, actorId: "anonymous", onBehalfOf: null };
   }
 }
