@@ -14,6 +14,7 @@ export async function policyInForce(db: Executor, now: Date): Promise<PolicyInFo
     .where(and(eq(policies.state, "approved"), lte(policies.effectiveAt, now)))
     .orderBy(desc(policies.effectiveAt), desc(policies.version))
     .limit(1);
-  if (row?.version == null || !row.effectiveAt) throw new Error("No policy is in force; the installation is not set up");
+  if (row?.version == null || !row.effectiveAt)
+    throw new Error("No policy is in force; the installation is not set up");
   return { version: row.version, terms: row.terms, effectiveAt: row.effectiveAt };
 }

@@ -19,7 +19,12 @@ export type Instruction = {
 };
 
 /** What the sender is told: a channel that cannot hold is refused at once or let go, as the policy says. */
-export function instructionFor(zone: Zone, channel: Channel, terms: PolicyTerms, receivedAt: Date): Instruction {
+export function instructionFor(
+  zone: Zone,
+  channel: Channel,
+  terms: PolicyTerms,
+  receivedAt: Date,
+): Instruction {
   const goes = { paymentState: "settled" as const, holdExpiresAt: null };
   if (zone !== "hold") return { action: zone, ...goes };
   const rule = terms.channels[channel];
@@ -43,5 +48,7 @@ export function instructionFor(zone: Zone, channel: Channel, terms: PolicyTerms,
  */
 export function valueAtRisk(logit: number, amountBaseMinor: number, terms: PolicyTerms): number {
   const probability = probabilityOf(logit);
-  return probability * amountBaseMinor * terms.lossGivenFraud - (1 - probability) * terms.falsePositiveCostMinor;
+  return (
+    probability * amountBaseMinor * terms.lossGivenFraud - (1 - probability) * terms.falsePositiveCostMinor
+  );
 }

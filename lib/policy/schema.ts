@@ -4,7 +4,11 @@ import { ORDERS } from "./codes";
 
 const Probability = z.number().min(0).max(1);
 const Minor = z.number().int().min(0).max(Number.MAX_SAFE_INTEGER);
-const Minutes = z.number().int().min(1).max(60 * 24 * 60);
+const Minutes = z
+  .number()
+  .int()
+  .min(1)
+  .max(60 * 24 * 60);
 
 /** What a channel can still do with a payment in the hold zone. */
 export const ChannelRule = z.strictObject({
@@ -38,9 +42,16 @@ export const PolicyTerms = z.strictObject({
   falsePositiveCostMinor: Minor,
   lossGivenFraud: Probability,
   lostMargin: Probability,
-  undoMinutes: z.number().int().min(1).max(24 * 60),
+  undoMinutes: z
+    .number()
+    .int()
+    .min(1)
+    .max(24 * 60),
   secondReviewWindowDays: z.number().int().min(1).max(90),
-  maturityDays: z.strictObject({ cards: z.number().int().min(1).max(400), other: z.number().int().min(1).max(400) }),
+  maturityDays: z.strictObject({
+    cards: z.number().int().min(1).max(400),
+    other: z.number().int().min(1).max(400),
+  }),
   hideScoreUntilVerdict: z.boolean(),
   takeNextOnly: z.boolean(),
   channels: z.strictObject(
