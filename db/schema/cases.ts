@@ -1,11 +1,24 @@
 import { sql } from "drizzle-orm";
-import { bigint, check, double, index, int, mysqlEnum, mysqlTable, primaryKey, text, tinyint, uniqueIndex, varchar } from "drizzle-orm/mysql-core";
-import { CASE_KINDS, CASE_STATES } from "../../lib/cases/codes.ts";
-import { CONFIDENCES, DECISION_KINDS, TYPOLOGIES, VERDICTS } from "../../lib/decisions/codes.ts";
-import { ZONES } from "../../lib/policy/codes.ts";
-import { bytes, instant, json, uuid } from "../columns.ts";
-import { apiKeys, people } from "./people.ts";
-import { scores, transactions } from "./transactions.ts";
+import {
+  bigint,
+  check,
+  double,
+  index,
+  int,
+  mysqlEnum,
+  mysqlTable,
+  primaryKey,
+  text,
+  tinyint,
+  uniqueIndex,
+  varchar,
+} from "drizzle-orm/mysql-core";
+import { CASE_KINDS, CASE_STATES } from "../../lib/cases/codes";
+import { CONFIDENCES, DECISION_KINDS, TYPOLOGIES, VERDICTS } from "../../lib/decisions/codes";
+import { ZONES } from "../../lib/policy/codes";
+import { bytes, instant, json, uuid } from "../columns";
+import { apiKeys, people } from "./people";
+import { scores, transactions } from "./transactions";
 
 export const cases = mysqlTable(
   "cases",
@@ -13,11 +26,15 @@ export const cases = mysqlTable(
     id: uuid().primaryKey(),
     /** Short number for people to say aloud; also the order in which ties in the ranking break. */
     number: bigint({ mode: "number" }).notNull().autoincrement().unique(),
-    transactionId: uuid().notNull().references(() => transactions.id),
+    transactionId: uuid()
+      .notNull()
+      .references(() => transactions.id),
     kind: mysqlEnum(CASE_KINDS).notNull(),
     state: mysqlEnum(CASE_STATES).notNull(),
     zone: mysqlEnum(ZONES).notNull(),
-    scoreId: bigint({ mode: "number" }).notNull().references(() => scores.id),
+    scoreId: bigint({ mode: "number" })
+      .notNull()
+      .references(() => scores.id),
     policyVersion: int().notNull(),
     /** Known probability with which a sample was drawn; null for other kinds. */
     sampleProbability: double(),
@@ -29,6 +46,8 @@ export const cases = mysqlTable(
     claimedAt: instant(),
     claimExpiresAt: instant(),
     waitUntil: instant(),
+    /** Set while the case is a supervisor's: a claim given back then returns it to them, not to everybody. */
+    escalatedAt: instant(),
     decidedAt: instant(),
     /** Raised by every change of the row, not by a new score: a decision names the revision it saw. */
     revision: int().notNull().default(1),
@@ -41,6 +60,7 @@ export const cases = mysqlTable(
     index("cases_assigned").on(table.assignedTo, table.state),
     index("cases_claimed").on(table.claimedBy, table.state),
     index("cases_claim_expiry").on(table.state, table.claimExpiresAt),
+    index("cases_lapse").on(table.state, table.lapsesAt),
     // Other servers follow changes by time.
     index("cases_changed").on(table.changedAt),
     check("cases_claim", sql`(${table.state} = 'claimed') = (${table.claimedBy} is not null)`),
@@ -54,8 +74,12 @@ export const caseNotes = mysqlTable(
   "case_notes",
   {
     id: uuid().primaryKey(),
-    caseId: uuid().notNull().references(() => cases.id),
-    personId: uuid().notNull().references(() => people.id),
+    caseId: uuid()
+      .notNull()
+      .references(() => cases.id),
+    personId: uuid()
+      .notNull()
+      .references(() => people.id),
     body: text().notNull(),
     writtenAt: instant().notNull(),
   },
@@ -66,22 +90,44 @@ export const caseNotes = mysqlTable(
 export const noteDrafts = mysqlTable(
   "note_drafts",
   {
-    caseId: uuid().notNull().references(() => cases.id),
-    personId: uuid().notNull().references(() => people.id),
+    caseId: uuid()
+      .notNull()
+      .references(() => cases.id),
+    personId: uuid()
+      .notNull()
+      .references(() => people.id),
     body: text().notNull(),
     savedAt: instant().notNull(),
   },
   (table) => [primaryKey({ columns: [table.caseId, table.personId] })],
 );
 
+/**
+ * How far each person is from the next case of the guaranteed shares. One row a person, so that two people who
+ * ask at once never wait on one another.
+ */
+export const handOuts = mysqlTable("hand_outs", {
+  personId: uuid()
+    .primaryKey()
+    .references(() => people.id),
+  sinceOverdue: int().notNull().default(0),
+  sinceSample: int().notNull().default(0),
+});
+
 export const decisions = mysqlTable(
   "decisions",
   {
     id: uuid().primaryKey(),
-    caseId: uuid().notNull().references(() => cases.id),
-    transactionId: uuid().notNull().references(() => transactions.id),
+    caseId: uuid()
+      .notNull()
+      .references(() => cases.id),
+    transactionId: uuid()
+      .notNull()
+      .references(() => transactions.id),
     kind: mysqlEnum(DECISION_KINDS).notNull(),
-    personId: uuid().notNull().references(() => people.id),
+    personId: uuid()
+      .notNull()
+      .references(() => people.id),
     apiKeyId: uuid().references(() => apiKeys.id),
     verdict: mysqlEnum(VERDICTS).notNull(),
     typology: mysqlEnum(TYPOLOGIES),
@@ -96,7 +142,9 @@ export const decisions = mysqlTable(
       sql`(if(undone_at is null and superseded_at is null, case_id, null))`,
       { mode: "stored" },
     ),
-    scoreId: bigint({ mode: "number" }).notNull().references(() => scores.id),
+    scoreId: bigint({ mode: "number" })
+      .notNull()
+      .references(() => scores.id),
     /** What was shown, as doubles: contribution of every coordinate, offset, pull, logit. */
     evidence: bytes({ length: 4096 }).notNull(),
     scoreWasHidden: tinyint().notNull().default(0),
@@ -123,7 +171,9 @@ export const ledger = mysqlTable(
   "ledger",
   {
     id: bigint({ mode: "number" }).primaryKey().autoincrement(),
-    transactionId: uuid().notNull().references(() => transactions.id),
+    transactionId: uuid()
+      .notNull()
+      .references(() => transactions.id),
     decisionId: uuid().references(() => decisions.id),
     outcomeId: uuid(),
     reversesId: bigint({ mode: "number" }),

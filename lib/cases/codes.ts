@@ -5,3 +5,6 @@ export type CaseState = (typeof CASE_STATES)[number];
 export const UNDECIDED_STATES = ["open", "claimed", "waiting", "escalated"] as const;
 
 export const CASE_KINDS = ["alert", "sample", "sibling"] as const;
+
+/** How long a claim lasts without a sign of life from its holder. */
+export const LEASE_MINUTES = 10;
