@@ -9,20 +9,38 @@ import type { Actor, PersonActor } from "../context";
 import { environment } from "../env";
 import { unauthenticated } from "../errors";
 import { findActivePerson, findPersonForSession } from "./read";
+import { isOverLongest, SessionClaims, sessionCookie } from "./session";
 
 /** Whose request it is: a key in the Authorization header, else the session cookie. @throws KnownError unauthenticated */
 export async function identify(url: string, headers: Headers, db: Database, now: Date): Promise<Actor> {
   const authorization = headers.get("Authorization");
-  return authorization === null ? identifySession(url, headers, db) : identifyKey(authorization, db, now);
+  return authorization === null
+    ? identifySession(url, headers, db, now)
+    : identifyKey(authorization, db, now);
 }
 
-export async function identifySession(url: string, headers: Headers, db: Database): Promise<PersonActor> {
-  const token = await getToken({ req: new NextRequest(url, { headers }), secret: environment().AUTH_SECRET });
-  if (!token?.sub) throw unauthenticated("Your session has ended; sign in again");
-  const person = await findPersonForSession(db, token.sub, Number(token.sessionVersion));
-  if (!person) throw unauthenticated("Your session has ended; sign in again");
+export async function identifySession(
+  url: string,
+  headers: Headers,
+  db: Database,
+  now: Date,
+): Promise<PersonActor> {
+  const { AUTH_SECRET, APP_URL } = environment();
+  const cookie = sessionCookie(APP_URL);
+  const token = await getToken({
+    req: new NextRequest(url, { headers }),
+    secret: AUTH_SECRET,
+    cookieName: cookie.name,
+    secureCookie: cookie.secure,
+  });
+  const claims = SessionClaims.safeParse(token);
+  if (!claims.success || isOverLongest(claims.data, now)) throw ended();
+  const person = await findPersonForSession(db, claims.data);
+  if (!person) throw ended();
   return { kind: "person", ...person, key: null };
 }
+
+const ended = () => unauthenticated("Your session has ended; sign in again");
 
 async function identifyKey(header: string, db: Database, now: Date): Promise<Actor> {
   const key = /^Bearer ([\x21-\x7e]+)$/.exec(header)?.[1];

@@ -1,11 +1,13 @@
 import "server-only";
 import { headers } from "next/headers";
-import { forbidden as renderForbidden, redirect } from "next/navigation";
+import { redirect, forbidden as renderForbidden } from "next/navigation";
+import { cache } from "react";
 import { sharedDatabase } from "@/db/client";
 import type { Context, PersonActor } from "../context";
 import { environment } from "../env";
 import { KnownError } from "../errors";
 import { newId } from "../new-id";
+import { ASKED_PATH_HEADER } from "./asked-path";
 import { mayDo } from "./demand";
 import { identifySession } from "./identify";
 import { PAGES, type PagePath } from "./pages";
@@ -16,19 +18,26 @@ export type PageContext = Context & { actor: PersonActor };
 export async function pageContext(path: PagePath): Promise<PageContext> {
   const page = PAGES[path];
   const ctx = await signedInContext();
-  if (!ctx) redirect(`/sign-in?from=${encodeURIComponent(path.includes("[") ? "/" : path)}`);
+  if (!ctx) redirect(`/sign-in?from=${encodeURIComponent(await askedFor(path))}`);
   if (page.may !== "anyone" && !mayDo(ctx.actor, page.may)) renderForbidden();
   return ctx;
 }
 
-/** For pages open to everybody, and the shell. */
-export async function signedInContext(): Promise<PageContext | null> {
+/** The address as asked for, which proxy.ts passes along: a link from a mail leads on after signing in. */
+async function askedFor(path: PagePath): Promise<string> {
+  const asked = (await headers()).get(ASKED_PATH_HEADER);
+  return asked ?? (path.includes("[") ? "/" : path);
+}
+
+/** For pages open to everybody, and the shell; asked once a request. */
+export const signedInContext = cache(async (): Promise<PageContext | null> => {
   const db = sharedDatabase(environment().DATABASE_URL);
   try {
-    const actor = await identifySession(environment().APP_URL, new Headers(await headers()), db);
-    return { actor, db, now: () => new Date(), requestId: newId(), idempotency: null };
+    const now = () => new Date();
+    const actor = await identifySession(environment().APP_URL, new Headers(await headers()), db, now());
+    return { actor, db, now, requestId: newId(), idempotency: null };
   } catch (error) {
     if (error instanceof KnownError && error.code === "unauthenticated") return null;
     throw error;
   }
-}
+});

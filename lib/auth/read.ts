@@ -1,8 +1,9 @@
 import "server-only";
-import { and, eq } from "drizzle-orm";
+import { and, eq, notExists } from "drizzle-orm";
 import type { Executor } from "@/db/client";
-import { people, personRoles } from "@/db/schema/people";
+import { endedSessions, people, personRoles } from "@/db/schema/people";
 import type { Role } from "./codes";
+import type { SessionClaims } from "./session";
 
 export type SignedInPerson = { personId: string; name: string; roles: readonly Role[]; timeZone: string };
 
@@ -11,16 +12,20 @@ export async function findActivePerson(db: Executor, personId: string): Promise<
   return findPerson(db, and(eq(people.id, personId), eq(people.state, "active")));
 }
 
-/** As above, and only while the session's version is still the person's. */
+/** As above, and only while the session's version is still the person's and nobody signed out of it. */
 export async function findPersonForSession(
   db: Executor,
-  personId: string,
-  sessionVersion: number,
+  { sub, sid, sessionVersion }: Pick<SessionClaims, "sub" | "sid" | "sessionVersion">,
 ): Promise<SignedInPerson | null> {
-  if (!Number.isInteger(sessionVersion)) return null;
+  const ended = db.select({ id: endedSessions.id }).from(endedSessions).where(eq(endedSessions.id, sid));
   return findPerson(
     db,
-    and(eq(people.id, personId), eq(people.state, "active"), eq(people.sessionVersion, sessionVersion)),
+    and(
+      eq(people.id, sub),
+      eq(people.state, "active"),
+      eq(people.sessionVersion, sessionVersion),
+      notExists(ended),
+    ),
   );
 }
 

@@ -1,0 +1,29 @@
+import { ZxcvbnFactory } from "@zxcvbn-ts/core";
+import { adjacencyGraphs, dictionary } from "@zxcvbn-ts/language-common";
+
+/** NIST SP 800-63B-4 for a password that is the only factor; no rules about kinds of characters. */
+export const PASSWORD_MIN = 15;
+export const PASSWORD_MAX = 256;
+
+/** Guesses, as a power of ten, below which a password counts as made of common ones. */
+const LEAST_GUESSES_LOG10 = 9;
+/** The estimate's cost grows with the length; what is common shows within this many characters. */
+const ESTIMATED_LENGTH = 64;
+
+const estimator = new ZxcvbnFactory({ dictionary, graphs: adjacencyGraphs });
+
+/**
+ * Why a password cannot be taken, or null where it can. `own` are words that anybody who knows the person would
+ * try first: name, e-mail address.
+ */
+export function passwordProblem(password: string, own: readonly string[]): string | null {
+  const length = [...password].length;
+  if (length < PASSWORD_MIN) return `needs at least ${PASSWORD_MIN} characters; a few words make a good one`;
+  if (length > PASSWORD_MAX) return `has more than ${PASSWORD_MAX} characters`;
+  const words = ["cupel", ...own.flatMap((word) => [word, ...word.split(/[^\p{L}\p{N}]+/u)])];
+  const known = words.filter((word) => word.length >= 3).map((word) => word.toLowerCase());
+  const { guessesLog10 } = estimator.check(password.slice(0, ESTIMATED_LENGTH), known);
+  return guessesLog10 < LEAST_GUESSES_LOG10
+    ? "is too easy to guess: it repeats or joins common passwords, keys in a row, or your own name"
+    : null;
+}
