@@ -1,10 +1,11 @@
 import { sql } from "drizzle-orm";
 import { bigint, check, index, int, mysqlEnum, mysqlTable, primaryKey, tinyint, uniqueIndex, varchar } from "drizzle-orm/mysql-core";
-import { LABEL_KINDS } from "../../lib/decisions/codes.ts";
-import { bytes, exactDouble, instant, json, uuid } from "../columns.ts";
-import { cases, decisions } from "./cases.ts";
-import { people } from "./people.ts";
-import { transactions } from "./transactions.ts";
+import { LABEL_KINDS } from "../../lib/decisions/codes";
+import type { ScorerOptions } from "../../lib/scorer";
+import { bytes, exactDouble, instant, json, uuid } from "../columns";
+import { cases, decisions } from "./cases";
+import { people } from "./people";
+import { transactions } from "./transactions";
 
 export const scorers = mysqlTable(
   "scorers",
@@ -16,7 +17,7 @@ export const scorers = mysqlTable(
     /** 1 for the one scorer in use, else null: the unique index allows one. */
     inUse: tinyint().generatedAlwaysAs(sql`(if(role = 'in_use', 1, null))`, { mode: "stored" }),
     signalSetVersion: int().notNull(),
-    options: json<Record<string, unknown>>()().notNull(),
+    options: json<ScorerOptions>()().notNull(),
     /** Grows with every label, undo, correction or change of options. */
     version: bigint({ mode: "number" }).notNull(),
     /** Last row of the label log that the state has taken in. */

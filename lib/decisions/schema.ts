@@ -64,5 +64,9 @@ export const CorrectionInput = z
 export type CorrectionInput = z.infer<typeof CorrectionInput>;
 
 /** Answer to an undo or a correction. */
-export const RelearnView = z.strictObject({ scorerVersion: z.int(), moved: Moved.nullable(), revision: z.int() });
+export const RelearnView = z.strictObject({
+  scorerVersion: z.int(),
+  moved: Moved.nullable(),
+  revision: z.int(),
+});
 export type RelearnView = z.infer<typeof RelearnView>;

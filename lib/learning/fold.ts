@@ -1,0 +1,90 @@
+import "server-only";
+import { and, asc, desc, eq, gt, isNotNull, isNull, lt, lte, min } from "drizzle-orm";
+import type { Executor } from "@/db/client";
+import { bytesToVector } from "@/db/columns";
+import { labelLog, scorerSnapshots } from "@/db/schema/scorers";
+import { createScorer, type Label, restoreScorer, type Scorer, type ScorerOptions } from "../scorer";
+import { isSnapshotDue } from "./learn";
+
+const PAGE_ROWS = 1_000;
+
+export type Folded = {
+  scorer: Scorer;
+  /** Snapshots that fell due on the way, to be kept if the fold is adopted. */
+  snapshots: { place: number; state: Uint8Array }[];
+};
+
+type FoldFrom = { scorer: Scorer; place: number };
+
+/**
+ * Learns the labels that hold at the places (from.place, upToSeq] in order, as the log stood at row `upToSeq`.
+ * @param overrides labels that shall hold although the log does not say so yet (0: none)
+ */
+export async function foldLog(
+  db: Executor,
+  from: FoldFrom,
+  upToSeq: number,
+  overrides: ReadonlyMap<number, Label | 0> = new Map(),
+): Promise<Folded> {
+  const replaced = await replacements(db, from.place, upToSeq);
+  for (const [place, label] of overrides) replaced.set(place, label);
+  const { scorer } = from;
+  const snapshots: Folded["snapshots"] = [];
+  for (let after = from.place; ; ) {
+    const rows = await db
+      .select({ seq: labelLog.seq, label: labelLog.label, weight: labelLog.weight, vector: labelLog.vector })
+      .from(labelLog)
+      .where(and(gt(labelLog.seq, after), lte(labelLog.seq, upToSeq), isNull(labelLog.place)))
+      .orderBy(asc(labelLog.seq))
+      .limit(PAGE_ROWS);
+    for (const row of rows) {
+      const label = replaced.get(row.seq) ?? (row.label as Label | 0);
+      if (label === 0) continue;
+      scorer.learn(bytesToVector(row.vector), label, row.weight);
+      if (isSnapshotDue(scorer.labels)) snapshots.push({ place: row.seq, state: scorer.snapshot() });
+    }
+    const last = rows.at(-1);
+    if (!last || rows.length < PAGE_ROWS) return { scorer, snapshots };
+    after = last.seq;
+  }
+}
+
+/**
+ * Nearest state below `place` from which the log as of `asOfSeq` can be folded: a snapshot that no later row
+ * of the log has reached behind, else the untrained scorer.
+ */
+export async function foldStart(
+  db: Executor,
+  scorerId: string,
+  options: ScorerOptions,
+  place: number,
+  asOfSeq = Number.MAX_SAFE_INTEGER,
+): Promise<FoldFrom> {
+  const [later] = await db
+    .select({ earliest: min(labelLog.place) })
+    .from(labelLog)
+    .where(and(gt(labelLog.seq, asOfSeq), isNotNull(labelLog.place)));
+  const below = Math.min(place, later?.earliest ?? place);
+  const [snapshot] = await db
+    .select()
+    .from(scorerSnapshots)
+    .where(and(eq(scorerSnapshots.scorerId, scorerId), lt(scorerSnapshots.place, below)))
+    .orderBy(desc(scorerSnapshots.place))
+    .limit(1);
+  return snapshot
+    ? { scorer: restoreScorer(snapshot.state), place: snapshot.place }
+    : { scorer: createScorer(options), place: 0 };
+}
+
+async function replacements(
+  db: Executor,
+  afterPlace: number,
+  upToSeq: number,
+): Promise<Map<number, Label | 0>> {
+  const rows = await db
+    .select({ place: labelLog.place, label: labelLog.label })
+    .from(labelLog)
+    .where(and(gt(labelLog.place, afterPlace), lte(labelLog.seq, upToSeq)))
+    .orderBy(asc(labelLog.seq));
+  return new Map(rows.map((row) => [row.place as number, row.label as Label | 0]));
+}

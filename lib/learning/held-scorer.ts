@@ -1,0 +1,50 @@
+import "server-only";
+import { eq } from "drizzle-orm";
+import type { Executor, Tx } from "@/db/client";
+import { scorers } from "@/db/schema/scorers";
+import { restoreScorer, type Scorer } from "../scorer";
+
+/** The scorer in use as one reader or one transaction has it; nothing of it is shared in memory. */
+export type HeldScorer = {
+  id: string;
+  name: string;
+  /** Grows with every label, undo, correction and change of options. */
+  version: number;
+  /** Last row of the label log that the state has taken in. */
+  logSeq: number;
+  signalSetVersion: number;
+  /** Sum in nats of the losses as they were lived. */
+  cumulativeLoss: number;
+  scorer: Scorer;
+};
+
+/** @throws Error on an installation without a scorer */
+export async function readScorerInUse(db: Executor): Promise<HeldScorer> {
+  return toHeld(await db.select().from(scorers).where(eq(scorers.inUse, 1)).limit(1));
+}
+
+/** Locks the scorer in use until the transaction ends. Case rows must be locked before it, the trail's head after. */
+export async function lockScorerInUse(tx: Tx): Promise<HeldScorer> {
+  return toHeld(await tx.select().from(scorers).where(eq(scorers.inUse, 1)).limit(1).for("update"));
+}
+
+/** Writes the advanced state back, once, at the end of the learning steps of a transaction. */
+export async function saveScorer(tx: Tx, held: HeldScorer, now: Date): Promise<void> {
+  await tx
+    .update(scorers)
+    .set({
+      version: held.version,
+      logSeq: held.logSeq,
+      state: Buffer.from(held.scorer.snapshot()),
+      cumulativeLoss: held.cumulativeLoss,
+      changedAt: now,
+    })
+    .where(eq(scorers.id, held.id));
+}
+
+function toHeld(rows: (typeof scorers.$inferSelect)[]): HeldScorer {
+  const [row] = rows;
+  if (!row) throw new Error("No scorer is in use; the installation is not set up");
+  const { id, name, version, logSeq, signalSetVersion, cumulativeLoss, state } = row;
+  return { id, name, version, logSeq, signalSetVersion, cumulativeLoss, scorer: restoreScorer(state) };
+}
