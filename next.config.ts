@@ -1,5 +1,15 @@
 import type { NextConfig } from "next";
 
+/** On every answer; what changes with the request or the installation (nonce, HSTS) is in proxy.ts. */
+const COMMON_HEADERS = [
+  { key: "X-Content-Type-Options", value: "nosniff" },
+  { key: "Referrer-Policy", value: "same-origin" },
+  { key: "Permissions-Policy", value: "camera=(), microphone=(), geolocation=(), payment=(), usb=()" },
+  { key: "Cross-Origin-Opener-Policy", value: "same-origin" },
+  { key: "Cross-Origin-Resource-Policy", value: "same-origin" },
+];
+const API_POLICY = { key: "Content-Security-Policy", value: "default-src 'none'; frame-ancestors 'none'" };
+
 const config: NextConfig = {
   poweredByHeader: false,
   reactStrictMode: true,
@@ -9,6 +19,10 @@ const config: NextConfig = {
   experimental: { authInterrupts: true },
   // The checks build beside a running installation, not over it.
   distDir: process.env.CUPEL_BUILD_DIR ?? ".next",
+  headers: async () => [
+    { source: "/:path*", headers: COMMON_HEADERS },
+    { source: "/api/:path*", headers: [API_POLICY] },
+  ],
   turbopack: { root: import.meta.dirname },
 };
 

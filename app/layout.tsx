@@ -1,5 +1,5 @@
 import type { Metadata, Viewport } from "next";
-import { connection } from "next/server";
+import { headers } from "next/headers";
 import type { ReactNode } from "react";
 import { AppShell, type MenuPage } from "@/components/shell/app-shell";
 import { Providers } from "@/components/shell/providers";
@@ -29,13 +29,14 @@ function menuOf(ctx: PageContext): MenuPage[] {
 }
 
 export default async function RootLayout({ children }: { children: ReactNode }) {
-  await connection();
+  // Reading the request keeps every page dynamic, as a nonce of its own needs.
+  const nonce = (await headers()).get("x-nonce") ?? undefined;
   const ctx = await signedInContext();
   return (
     // The theme script sets an attribute before React wakes.
     <html lang="en-GB" className={fontVariables} suppressHydrationWarning>
       <body>
-        <Providers timeZone={ctx?.actor.timeZone ?? "UTC"}>
+        <Providers timeZone={ctx?.actor.timeZone ?? "UTC"} nonce={nonce}>
           {ctx ? (
             <AppShell pages={menuOf(ctx)} personName={ctx.actor.name}>
               {children}

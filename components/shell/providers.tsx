@@ -17,10 +17,22 @@ function newQueryClient(): QueryClient {
   });
 }
 
-export function Providers({ timeZone, children }: { timeZone: string; children: ReactNode }) {
+type ProvidersProps = {
+  timeZone: string;
+  /** Of this page, so that the theme's own script may run. */
+  nonce: string | undefined;
+  children: ReactNode;
+};
+
+export function Providers({ timeZone, nonce, children }: ProvidersProps) {
   const [client] = useState(newQueryClient);
   return (
-    <ThemeProvider attribute="data-theme" defaultTheme="system" disableTransitionOnChange>
+    <ThemeProvider
+      attribute="data-theme"
+      defaultTheme="system"
+      disableTransitionOnChange
+      {...(nonce && { nonce })}
+    >
       <NuqsAdapter>
         <QueryClientProvider client={client}>
           <ZoneProvider value={timeZone}>{children}</ZoneProvider>
