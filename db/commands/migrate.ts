@@ -8,6 +8,6 @@ try {
   readEnvironment(process.env);
 } catch (error) {
   console.error(error instanceof Error ? error.message : error);
-  process.exit(1);
+  process.exit(2);
 }
 await migrateDatabase(ownerUrl);

@@ -4,6 +4,9 @@ import { startMariadb } from "./mariadb.mjs";
 import { Refusal } from "./refusal.mjs";
 import { runScript } from "./scripts.mjs";
 
+/** What migrate.ts exits with when it is the settings that are wrong. */
+const badSettings = 2;
+
 /** @param {string} folder */
 const demoMark = (folder) => path.join(folder, "demo-data-unfinished");
 
@@ -44,6 +47,7 @@ export async function openDatabase({ folder, env, session, occupancy, fast }) {
  */
 export async function migrate(env, ownerUrl, signal) {
   const code = await runScript("db/commands/migrate.ts", [ownerUrl], env, signal);
+  if (code === badSettings) throw new Refusal("Cupel does not start with these settings.");
   if (code !== 0) throw new Refusal("The database was not brought up to date; the reason is above.");
 }
 

@@ -37,3 +37,20 @@ export function portFrom(env) {
   const port = Number(env.PORT || 3000);
   return Number.isInteger(port) && port >= 1 && port <= 65_535 ? port : undefined;
 }
+
+const ownSettings =
+  /^(PORT|APP_URL|DATABASE_URL|SMTP_URL|AUTH_SECRET|AUTH_TRUST_HOST|NODE_ENV|NEXTAUTH_.*|CUPEL_(?!STREAM|BUILD_DIR).*)$/;
+
+/**
+ * The environment of checks and benchmarks: without the person's own settings, so that nothing of theirs is
+ * touched, and with a build folder beside that of `npm start`.
+ * @param {NodeJS.ProcessEnv} env
+ * @returns {NodeJS.ProcessEnv}
+ */
+export function checkEnvironment(env) {
+  const kept = { ...env, CUPEL_BUILD_DIR: ".next-test", NEXT_TELEMETRY_DISABLED: "1" };
+  for (const name of Object.keys(env)) {
+    if (ownSettings.test(name)) delete kept[name];
+  }
+  return kept;
+}

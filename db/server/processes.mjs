@@ -82,7 +82,12 @@ function signal(identity, name) {
  * @returns {Service}
  */
 export function startService(name, command, args, { env, cwd, output = "inherit", stopWaitMs = 30_000 }) {
-  const child = spawn(command, args, { env, cwd, detached: true, stdio: ["ignore", output, output] });
+  // Where Debian's setpriv is, the kernel ends the child even if we are killed and cannot.
+  const setpriv = findProgram("setpriv");
+  const [program, allArgs] = setpriv
+    ? [setpriv, ["--pdeathsig", "TERM", "--", command, ...args]]
+    : [command, args];
+  const child = spawn(program, allArgs, { env, cwd, detached: true, stdio: ["ignore", output, output] });
   /** @type {Promise<string>} */
   const ended = new Promise((resolve) => {
     child.once("error", (error) => resolve(error.message));

@@ -30,7 +30,7 @@ export async function runSession(body) {
     watch: (service) => {
       toStop.push({ name: service.name, stop: () => service.stop() });
       void service.ended.then((how) => {
-        if (ending) return;
+        if (ending || controller.signal.aborted) return;
         console.error(`\n${service.name} ended unexpectedly (${how}); stopping everything.`);
         died = true;
         stopNow();
