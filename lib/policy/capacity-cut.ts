@@ -12,34 +12,39 @@ const STRAGGLER_SHARE = 0.005;
 const MARGIN_NATS = 1e-9;
 
 /**
- * How many days the payments span, by when they happened.
- * @param arrivals at least one, in any order
+ * How many days payments span, by when they happened.
+ * @param times epoch milliseconds of at least one payment, or of a random share of them, in any order
  * @returns days, at least one hour of them; for evenly spaced payments exactly last − first
  */
-export function daysSpanned(arrivals: readonly ScoredArrival[]): number {
-  const times = Float64Array.from(arrivals, (arrival) => arrival.occurredAt.getTime()).sort();
-  const left = Math.floor(times.length * STRAGGLER_SHARE);
-  const kept = times.subarray(left, times.length - left);
+export function daysSpanned(times: Iterable<number>): number {
+  const sorted = Float64Array.from(times).sort();
+  const left = Math.floor(sorted.length * STRAGGLER_SHARE);
+  const kept = sorted.subarray(left, sorted.length - left);
   let spanMs = 0;
   for (let i = 1; i < kept.length; i++) {
     spanMs += Math.min((kept[i] as number) - (kept[i - 1] as number), LONGEST_PAUSE_MS);
   }
-  if (kept.length > 1) spanMs *= (times.length - 1) / (kept.length - 1);
+  if (kept.length > 1) spanMs *= (sorted.length - 1) / (kept.length - 1);
   return Math.max(spanMs, SHORTEST_SPAN_MS) / DAY_MS;
 }
 
 /**
- * The review line that would have yielded the wished number of cases a day: between the last score counted in and
- * the first left out. Equal scores stay together, on the side that gives fewer cases; where there are fewer
- * payments than wished cases, all lie on or above the line.
- * @param arrivals at least one, in any order
- * @returns log-odds in nats
+ * The line between the last score counted in and the first left out. Equal scores stay together, on the side that
+ * gives fewer cases; where there are no more scores than wished, all lie above the line.
+ * @param highest the `wished` + 1 highest scores, or all where there are fewer but at least one; falling, in nats
  */
-export function capacityCut(arrivals: readonly ScoredArrival[], casesPerDay: number): number {
-  const logits = Float64Array.from(arrivals, (arrival) => arrival.logit).sort();
-  const wished = Math.round(casesPerDay * daysSpanned(arrivals));
-  if (wished >= logits.length) return (logits[0] as number) - MARGIN_NATS;
-  const firstOut = logits[logits.length - 1 - wished] as number;
-  const lastIn = logits.find((logit) => logit > firstOut);
+export function cutBelow(highest: readonly number[], wished: number): number {
+  const firstOut = highest[wished];
+  if (firstOut === undefined) return (highest.at(-1) as number) - MARGIN_NATS;
+  const lastIn = highest.findLast((logit) => logit > firstOut);
   return lastIn === undefined ? firstOut + MARGIN_NATS : (firstOut + lastIn) / 2;
+}
+
+/** The review line, in nats, that would have yielded the wished number of cases a day; at least one arrival. */
+export function capacityCut(arrivals: readonly ScoredArrival[], casesPerDay: number): number {
+  const wished = Math.round(
+    casesPerDay * daysSpanned(arrivals.map(({ occurredAt }) => occurredAt.getTime())),
+  );
+  const falling = arrivals.map(({ logit }) => logit).sort((a, b) => b - a);
+  return cutBelow(falling.slice(0, wished + 1), wished);
 }

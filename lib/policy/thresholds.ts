@@ -1,16 +1,15 @@
 import "server-only";
-import { and, desc, eq, gte, lte, sql } from "drizzle-orm";
+import { and, count, desc, eq, gt, lte } from "drizzle-orm";
 import type { Executor } from "@/db/client";
 import { policyCuts } from "@/db/schema/policies";
-import { scores, transactions } from "@/db/schema/transactions";
+import { scores } from "@/db/schema/transactions";
 import { logitOf } from "../decibans";
 import { capacityCut, type ScoredArrival } from "./capacity-cut";
 import type { PolicyInForce } from "./read";
+import { cutOfRecent, newestScores } from "./recent-scores";
 import type { Thresholds } from "./rules";
 
-/** Newest arrival scores that a cut is taken from; a batch is in with all of its scores or with none. */
-const SCORES_IN_CUT = 20_000;
-/** With fewer, a cut would be chance. */
+/** With fewer scores, a cut would be chance. */
 const FEWEST_SCORES = 200;
 const NEW_SCORES_FOR_A_NEW_CUT = 1_000;
 const LONGEST_CUT_AGE_MS = 10 * 60_000;
@@ -26,9 +25,12 @@ export async function thresholdsInForce(db: Executor, policy: PolicyInForce, now
   if (wish.kind === "fixed") return withReviewLine(policy, logitOf(wish.probability));
   const cut = await findNewestCut(db, policy.version, now);
   if (cut) return withReviewLine(policy, cut.logit);
-  const recent = await recentArrivals(db);
-  const enough = recent.length >= FEWEST_SCORES;
-  return withReviewLine(policy, enough ? capacityCut(recent, wish.casesPerDay) : CUT_WITHOUT_SCORES);
+  const recent = await newestScores(db);
+  const enough = recent.count >= FEWEST_SCORES;
+  return withReviewLine(
+    policy,
+    enough ? await cutOfRecent(db, recent, wish.casesPerDay) : CUT_WITHOUT_SCORES,
+  );
 }
 
 /**
@@ -44,13 +46,15 @@ export async function refreshCut(
   const wish = policy.terms.reviewThreshold;
   if (wish.kind === "fixed") return withReviewLine(policy, logitOf(wish.probability));
   const last = await findNewestCut(db, policy.version, now);
-  if (last && !isStale(last, now)) return withReviewLine(policy, last.logit);
-  const recent = await recentArrivals(db);
-  const taken = recent.length >= FEWEST_SCORES ? recent : batch;
-  if (taken.length < FEWEST_SCORES) return withReviewLine(policy, last?.logit ?? CUT_WITHOUT_SCORES);
-  const logit = capacityCut(taken, wish.casesPerDay);
-  const lastScoreId = recent.reduce((newest, score) => Math.max(newest, score.id), 0);
-  const cut = { logit, scoreCount: taken.length, lastScoreId };
+  if (last && !(await isStale(db, last, now))) return withReviewLine(policy, last.logit);
+  const recent = await newestScores(db);
+  const fromRecent = recent.count >= FEWEST_SCORES;
+  const scoreCount = fromRecent ? recent.count : batch.length;
+  if (scoreCount < FEWEST_SCORES) return withReviewLine(policy, last?.logit ?? CUT_WITHOUT_SCORES);
+  const logit = fromRecent
+    ? await cutOfRecent(db, recent, wish.casesPerDay)
+    : capacityCut(batch, wish.casesPerDay);
+  const cut = { logit, scoreCount, lastScoreId: recent.lastScoreId };
   await db
     .insert(policyCuts)
     .values({ policyVersion: policy.version, computedAt: now, ...cut })
@@ -62,14 +66,14 @@ function withReviewLine(policy: PolicyInForce, reviewLogit: number): Thresholds 
   return { reviewLogit, holdLogit: Math.max(logitOf(policy.terms.holdThreshold), reviewLogit) };
 }
 
-type Cut = { logit: number; computedAt: Date; newScores: number };
+type Cut = { logit: number; computedAt: Date; lastScoreId: number };
 
 async function findNewestCut(db: Executor, version: number, now: Date): Promise<Cut | undefined> {
   const [cut] = await db
     .select({
       logit: policyCuts.logit,
       computedAt: policyCuts.computedAt,
-      newScores: sql<number>`(select count(*) from ${scores} where ${scores.kind} = 'arrival' and ${scores.id} > ${policyCuts.lastScoreId})`,
+      lastScoreId: policyCuts.lastScoreId,
     })
     .from(policyCuts)
     .where(and(eq(policyCuts.policyVersion, version), lte(policyCuts.computedAt, now)))
@@ -78,17 +82,11 @@ async function findNewestCut(db: Executor, version: number, now: Date): Promise<
   return cut;
 }
 
-function isStale(cut: Cut, now: Date): boolean {
-  const ageMs = now.getTime() - cut.computedAt.getTime();
-  return cut.newScores >= NEW_SCORES_FOR_A_NEW_CUT || ageMs >= LONGEST_CUT_AGE_MS;
-}
-
-async function recentArrivals(db: Executor): Promise<(ScoredArrival & { id: number })[]> {
-  const oldest = sql`coalesce((select b.taken_at from ${scores} b where b.kind = 'arrival'
-    order by b.taken_at desc limit 1 offset ${sql.raw(String(SCORES_IN_CUT - 1))}), '1000-01-01')`;
-  return db
-    .select({ id: scores.id, logit: scores.logit, occurredAt: transactions.occurredAt })
-    .from(scores)
-    .innerJoin(transactions, eq(transactions.id, scores.transactionId))
-    .where(and(eq(scores.kind, "arrival"), gte(scores.takenAt, oldest)));
+async function isStale(db: Executor, cut: Cut, now: Date): Promise<boolean> {
+  if (now.getTime() - cut.computedAt.getTime() >= LONGEST_CUT_AGE_MS) return true;
+  const [arrived] = await db
+    .select({ count: count() })
+    .from(scores, { forceIndex: "PRIMARY" })
+    .where(and(eq(scores.kind, "arrival"), gt(scores.id, cut.lastScoreId)));
+  return (arrived?.count ?? 0) >= NEW_SCORES_FOR_A_NEW_CUT;
 }
