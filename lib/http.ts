@@ -9,13 +9,14 @@ import { type Endpoint, pathParameters } from "./endpoint";
 import { ENDPOINTS, type EndpointKey } from "./endpoints";
 import { environment } from "./env";
 import { invalid } from "./errors";
+import { fieldErrors } from "./field-errors";
 import { log } from "./log";
+import { observeCall } from "./metrics";
 import { newId } from "./new-id";
-import { problemResponse } from "./problem";
 import { refuseForeignOrigin } from "./origin";
+import { problemResponse } from "./problem";
 import { spendFromBudget } from "./rate-limit";
 import { readJsonBody } from "./request-body";
-import { fieldErrors } from "./field-errors";
 import { canonicalJson } from "./trail/chain";
 import { ReplayedAnswer } from "./write-once";
 
@@ -58,12 +59,14 @@ export function route<K extends EndpointKey>(key: K, handler: Handler<K>) {
     }
     response.headers.set("X-Request-Id", requestId);
     if (!response.headers.has("Cache-Control")) response.headers.set("Cache-Control", "no-store");
+    const ms = performance.now() - startedMs;
+    observeCall(key, response.status, ms / 1000);
     log.info({
       requestId,
       route: key,
       status: response.status,
       actor: actor ? actorLabel(actor) : null,
-      ms: Math.round(performance.now() - startedMs),
+      ms: Math.round(ms),
     });
     return response;
   };
@@ -96,7 +99,8 @@ async function readInput(
   const fromBody = isJson ? await readJsonBody(request) : {};
   const sent: Record<string, unknown> = isJson ? fromBody : fromQuery;
   const clash = names.find((name) => name in sent);
-  if (clash) throw invalid([{ path: clash, message: "belongs in the address, not in the body or the query" }]);
+  if (clash)
+    throw invalid([{ path: clash, message: "belongs in the address, not in the body or the query" }]);
   const parsed = endpoint.input.safeParse({ ...sent, ...fromPath });
   if (!parsed.success) throw invalid(fieldErrors(parsed.error));
   return parsed.data;

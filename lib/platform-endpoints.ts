@@ -8,6 +8,7 @@ export const Readiness = z.strictObject({
   migrations: z.boolean(),
   mail: z.boolean(),
 });
+export type Readiness = z.infer<typeof Readiness>;
 
 export const platformEndpoints = {
   "GET /api/health/live": {
@@ -23,7 +24,7 @@ export const platformEndpoints = {
     output: Readiness,
   },
   "GET /api/metrics": {
-    summary: "Figures of this process in the Prometheus text format",
+    summary: "Figures of this process and of the installation in the Prometheus text format",
     may: "metrics.read",
     input: Nothing,
     output: null,

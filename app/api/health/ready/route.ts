@@ -1,0 +1,4 @@
+import { readReadiness } from "@/lib/health";
+import { route } from "@/lib/http";
+
+export const GET = route("GET /api/health/ready", readReadiness);
