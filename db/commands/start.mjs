@@ -1,7 +1,9 @@
+import { rmSync } from "node:fs";
+import { parseArgs } from "node:util";
 import { startApp, untilLive } from "../server/app.mjs";
 import { buildApp, isBuildFresh } from "../server/build.mjs";
 import { ensureDemoData, migrate, openDatabase } from "../server/database.mjs";
-import { appEnvironment, portFrom } from "../server/environment.mjs";
+import { appEnvironment, checkEnvironment, portFrom } from "../server/environment.mjs";
 import { dataFolder } from "../server/folders.mjs";
 import { startMailCatcher } from "../server/mail-catcher.mjs";
 import { ensureMariadb } from "../server/mariadb.mjs";
@@ -12,17 +14,26 @@ import { Refusal, runCommand } from "../server/refusal.mjs";
 import { runSession } from "../server/session.mjs";
 import { printWelcome } from "../server/welcome.mjs";
 
-const dev = process.argv.includes("--dev");
+const { values: options } = parseArgs({
+  options: { dev: { type: "boolean", default: false }, "throw-away": { type: "string" } },
+});
+const { dev, "throw-away": throwAway } = options;
+
+/** `--throw-away <folder>`, for checks: a data folder that goes at the end, and none of the person's settings. */
+const env = throwAway
+  ? { ...checkEnvironment(process.env), PORT: process.env.PORT, CUPEL_DATA_DIR: throwAway }
+  : process.env;
 
 /** @param {import("../server/session.mjs").Session} session */
 async function start(session) {
-  const { env } = process;
   const { signal } = session;
   checkNode();
   const port = portFrom(env);
   if (port === undefined) throw new Refusal("PORT must be a whole number from 1 to 65535.");
 
   const folder = dataFolder(env);
+  if (throwAway)
+    session.onEnd("The throw-away folder", () => rmSync(folder, { recursive: true, force: true }));
   const occupancy = await occupy(folder, dev ? "npm run dev" : "npm start");
   session.onEnd("The data folder's record", occupancy.leave);
   if (!(await isPortFree(port))) throw new Refusal(`Port ${port} is taken. Set PORT to another one.`);
@@ -31,7 +42,13 @@ async function start(session) {
   await ensurePackages({ forBuilding: !fresh, signal });
   if (!env.DATABASE_URL) await ensureMariadb();
 
-  const { url, ownerUrl, mariadb } = await openDatabase({ folder, env, session, occupancy });
+  const { url, ownerUrl, mariadb } = await openDatabase({
+    folder,
+    env,
+    session,
+    occupancy,
+    fast: throwAway !== undefined,
+  });
   const mail = env.SMTP_URL ? undefined : await startMailCatcher(folder);
   if (mail) session.onEnd("The mail catcher", mail.stop);
   const smtpUrl = mail?.smtpUrl ?? env.SMTP_URL ?? "";
@@ -58,6 +75,6 @@ async function start(session) {
 
 await runCommand(async () => {
   const code = await runSession(start);
-  if (code === 0) console.log("Stopped. The data is kept.");
+  if (code === 0) console.log(throwAway ? "Stopped." : "Stopped. The data is kept.");
   return code;
 });

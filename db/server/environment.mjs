@@ -48,6 +48,7 @@ const ownSettings =
  * @returns {NodeJS.ProcessEnv}
  */
 export function checkEnvironment(env) {
+  /** @type {NodeJS.ProcessEnv} */
   const kept = { ...env, CUPEL_BUILD_DIR: ".next-test", NEXT_TELEMETRY_DISABLED: "1" };
   for (const name of Object.keys(env)) {
     if (ownSettings.test(name)) delete kept[name];

@@ -19,6 +19,6 @@ function printSignIns() {
   const signIns = JSON.parse(readFileSync(file, "utf8"));
   console.log("Demo sign-ins:");
   for (const { role, email, password } of signIns) {
-    console.log(`  ${role.padEnd(16)}${email.padEnd(34)}${password}`);
+    console.log(`  ${role.replace("_", " ").padEnd(16)}${email.padEnd(34)}${password}`);
   }
 }

@@ -1,43 +1,12 @@
 import { inject } from "vitest";
-import { z } from "zod";
+import { awaitMail, type CaughtMail, readMail } from "./mailbox";
 
-const Addresses = z.array(z.object({ address: z.string(), name: z.string().optional() }));
-const CaughtMail = z.object({
-  id: z.string(),
-  from: Addresses,
-  to: Addresses,
-  subject: z.string(),
-  text: z.string().default(""),
-  html: z.string().default(""),
-  headers: z.record(z.string(), z.unknown()),
-  envelope: z.object({ to: z.array(z.object({ address: z.string() })) }),
-});
-export type CaughtMail = z.infer<typeof CaughtMail>;
-
-const pollMs = 50;
-
-/** Everything the catcher received for this address, oldest first. */
-export async function mailTo(address: string, catcherUrl = inject("mailUrl")): Promise<CaughtMail[]> {
-  const response = await fetch(new URL("/api/email", catcherUrl));
-  if (!response.ok) throw new Error(`The mail catcher answered ${response.status}`);
-  const all = z.array(CaughtMail).parse(await response.json());
-  return all.filter((mail) =>
-    mail.envelope.to.some((to) => to.address.toLowerCase() === address.toLowerCase()),
-  );
+/** What the run's mail catcher received for this address, oldest first. */
+export function mailTo(address: string): Promise<CaughtMail[]> {
+  return readMail(inject("mailUrl"), address);
 }
 
-/** Waits until the address has at least so many messages; for senders that work in the background. */
-export async function waitForMail(
-  address: string,
-  count = 1,
-  catcherUrl = inject("mailUrl"),
-): Promise<CaughtMail[]> {
-  const deadline = Date.now() + 10_000;
-  for (;;) {
-    const mails = await mailTo(address, catcherUrl);
-    if (mails.length >= count) return mails;
-    if (Date.now() > deadline)
-      throw new Error(`${address} got ${mails.length} messages, not ${count}, within 10 s`);
-    await new Promise((resolve) => setTimeout(resolve, pollMs));
-  }
+/** The same, once there are at least so many messages. */
+export function waitForMail(address: string, count = 1): Promise<CaughtMail[]> {
+  return awaitMail(inject("mailUrl"), address, count);
 }

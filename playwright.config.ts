@@ -1,0 +1,51 @@
+import { mkdtempSync } from "node:fs";
+import { tmpdir } from "node:os";
+import path from "node:path";
+import { defineConfig, devices } from "@playwright/test";
+import { freePort } from "./db/server/ports.mjs";
+
+// Workers load this file again: what the first load chose reaches them through the environment.
+process.env.CUPEL_E2E_PORT ??= String(await freePort());
+process.env.CUPEL_E2E_DATA ??= mkdtempSync(path.join(tmpdir(), "cupel-e2e-"));
+
+const port = process.env.CUPEL_E2E_PORT;
+const baseURL = `http://localhost:${port}`;
+
+export default defineConfig({
+  testDir: "e2e",
+  outputDir: "test-results",
+  workers: 2,
+  retries: 0,
+  forbidOnly: true,
+  timeout: 60_000,
+  expect: { timeout: 10_000 },
+  reporter: "list",
+  use: {
+    ...devices["Desktop Chrome"],
+    baseURL,
+    locale: "en-GB",
+    timezoneId: "Europe/Vienna",
+    trace: "retain-on-failure",
+    screenshot: "only-on-failure",
+    launchOptions: {
+      executablePath: "/usr/bin/chromium",
+      args: [
+        "--no-sandbox",
+        "--disable-background-networking",
+        "--disable-component-update",
+        "--disable-sync",
+        "--disable-quic",
+        "--no-first-run",
+        "--disable-gpu",
+      ],
+    },
+  },
+  webServer: {
+    command: `exec node db/commands/start.mjs --throw-away ${process.env.CUPEL_E2E_DATA}`,
+    url: `${baseURL}/api/health/live`,
+    timeout: 240_000,
+    gracefulShutdown: { signal: "SIGTERM", timeout: 30_000 },
+    stdout: "pipe",
+    env: { PORT: port },
+  },
+});

@@ -1,0 +1,11 @@
+/** Uniform in [0, 1), the same for the same seed: a 32-bit counter through two multiply-and-shift rounds. */
+export function seededRandom(seed: number): () => number {
+  let state = seed >>> 0;
+  return () => {
+    state = (state + 0x9e3779b9) >>> 0;
+    let mixed = state;
+    mixed = Math.imul(mixed ^ (mixed >>> 16), 0x21f0aaad);
+    mixed = Math.imul(mixed ^ (mixed >>> 15), 0x735a2d97);
+    return ((mixed ^ (mixed >>> 15)) >>> 0) / 2 ** 32;
+  };
+}
