@@ -1,0 +1,17 @@
+import { decibansToNats } from "../../decibans";
+
+/** What a label did to the waiting cases. */
+export type Movement = { up: number; down: number; aboveHoldLine: number; belowHoldLine: number };
+
+/** A smaller change is no movement that anybody could see. */
+const LEAST_MOVE_NATS = decibansToNats(1);
+
+export const noMovement = (): Movement => ({ up: 0, down: 0, aboveHoldLine: 0, belowHoldLine: 0 });
+
+/** Counts one case in; log-odds in nats. */
+export function countMove(movement: Movement, before: number, after: number, holdLogit: number): void {
+  if (after - before >= LEAST_MOVE_NATS) movement.up += 1;
+  else if (before - after >= LEAST_MOVE_NATS) movement.down += 1;
+  if (before < holdLogit && after >= holdLogit) movement.aboveHoldLine += 1;
+  else if (before >= holdLogit && after < holdLogit) movement.belowHoldLine += 1;
+}

@@ -1,0 +1,104 @@
+import { probabilityOf } from "../../decibans";
+import { valueAtRisk } from "../../policy/rules";
+import type { PolicyTerms } from "../../policy/schema";
+import { sortDescending } from "./sort";
+
+/** Cases in order of arrival, as the ranking sees them. */
+export type Rankable = {
+  count: number;
+  /** Log-odds in nats. */
+  logit: (i: number) => number;
+  /** s = x·Px of the scorer: how little experience there is with a vector like this. */
+  leverage: (i: number) => number;
+  amountBaseMinor: (i: number) => number;
+  /** End of a hold that stands, in ms; null where nothing is held. */
+  holdExpiresAtMs: (i: number) => number | null;
+};
+
+export type Ranking = {
+  /** Positions in order of arrival, best case first. */
+  order: Uint32Array;
+  /** How many at the front are holds about to expire. */
+  expiring: number;
+  /** Key of every position: larger is better. An expiring hold's key is its amount. */
+  keys: Float64Array;
+  /** When the next hold starts or stops to count as about to expire, in ms; Infinity if none will. */
+  goodUntilMs: number;
+};
+
+/**
+ * The order of the queue: holds about to expire by amount, then everything else by the policy's order; ties by arrival.
+ * - probability: by log-odds;
+ * - value at risk: by the expected saving of stopping the payment;
+ * - learning value: leverage × p(1 − p), where a verdict teaches the scorer most.
+ */
+export function rank(cases: Rankable, terms: PolicyTerms, nowMs: number): Ranking {
+  const { count } = cases;
+  const keys = new Float64Array(count);
+  const expiring: number[] = [];
+  const windowMs = terms.expiringMinutes * 60_000;
+  let goodUntilMs = Number.POSITIVE_INFINITY;
+  for (let i = 0; i < count; i++) {
+    keys[i] = orderKey(cases, i, terms);
+    const expiresMs = cases.holdExpiresAtMs(i);
+    if (expiresMs === null || expiresMs <= nowMs) continue;
+    const startsMs = expiresMs - windowMs;
+    if (startsMs <= nowMs) {
+      keys[i] = cases.amountBaseMinor(i);
+      expiring.push(i);
+    }
+    goodUntilMs = Math.min(goodUntilMs, startsMs <= nowMs ? expiresMs : startsMs);
+  }
+  return { order: withFirst(expiring, keys), expiring: expiring.length, keys, goodUntilMs };
+}
+
+function orderKey(cases: Rankable, i: number, terms: PolicyTerms): number {
+  const logit = cases.logit(i);
+  switch (terms.order) {
+    case "probability":
+      return logit;
+    case "value_at_risk":
+      return valueAtRisk(logit, cases.amountBaseMinor(i), terms);
+    case "learning_value": {
+      const p = probabilityOf(logit);
+      return cases.leverage(i) * p * (1 - p);
+    }
+  }
+}
+
+function withFirst(first: readonly number[], keys: Float64Array): Uint32Array {
+  const sorted = sortDescending(keys);
+  if (first.length === 0) return sorted;
+  const inFront = new Uint8Array(keys.length);
+  for (const i of first) inFront[i] = 1;
+  const order = new Uint32Array(keys.length);
+  let front = 0;
+  let behind = first.length;
+  for (const i of sorted) {
+    if (inFront[i] === 1) order[front++] = i;
+    else order[behind++] = i;
+  }
+  return order;
+}
+
+/** Where a case stood when a page of the list ended. */
+export type Place = { expiring: boolean; key: number; number: number };
+
+/** Whether a case comes behind a place in the order. */
+export function isBehind(item: Place, place: Place): boolean {
+  if (item.expiring !== place.expiring) return place.expiring;
+  if (item.key !== place.key) return item.key < place.key;
+  return item.number > place.number;
+}
+
+/** First index of a sequence, in the order, whose place lies behind `place`. */
+export function firstBehind(length: number, placeAt: (index: number) => Place, place: Place): number {
+  let low = 0;
+  let high = length;
+  while (low < high) {
+    const middle = (low + high) >>> 1;
+    if (isBehind(placeAt(middle), place)) high = middle;
+    else low = middle + 1;
+  }
+  return low;
+}
