@@ -38,7 +38,7 @@ export default async function RootLayout({ children }: { children: ReactNode }) 
       <body>
         <Providers timeZone={ctx?.actor.timeZone ?? "UTC"} nonce={nonce}>
           {ctx ? (
-            <AppShell pages={menuOf(ctx)} personName={ctx.actor.name}>
+            <AppShell pages={menuOf(ctx)} person={{ personId: ctx.actor.personId, name: ctx.actor.name }}>
               {children}
             </AppShell>
           ) : (

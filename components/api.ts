@@ -38,6 +38,8 @@ export type CallOptions = {
   signal?: AbortSignal;
   /** Give the same key to a repeated attempt; each call makes its own otherwise. */
   idempotencyKey?: string;
+  /** Outlives the page that sends it. */
+  keepalive?: boolean;
 };
 
 /**
@@ -83,7 +85,8 @@ function requestOf(key: EndpointKey, input: Record<string, unknown>, options: Ca
   }
   const headers: Record<string, string> = { "Content-Type": "application/json" };
   if (method === "POST") headers["Idempotency-Key"] = options.idempotencyKey ?? newId();
-  return { path, init: { method, headers, signal, body: JSON.stringify(rest) } };
+  const keepalive = options.keepalive ?? false;
+  return { path, init: { method, headers, signal, keepalive, body: JSON.stringify(rest) } };
 }
 
 async function answerOf({ path, init }: ApiRequest): Promise<Response> {

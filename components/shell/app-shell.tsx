@@ -3,15 +3,20 @@ import Link from "next/link";
 import { usePathname } from "next/navigation";
 import { type ReactNode, useState } from "react";
 import { Mark } from "./mark";
+import { SignInAgain } from "./sign-in-again";
 import { SignOut } from "./sign-out";
 import { ThemeSwitch } from "./theme-switch";
 
 export type MenuPage = { path: string; name: string };
 
-type AppShellProps = { pages: readonly MenuPage[]; personName: string; children: ReactNode };
+type AppShellProps = {
+  pages: readonly MenuPage[];
+  person: { personId: string; name: string };
+  children: ReactNode;
+};
 
 /** The bar every signed-in screen stands under, with the pages this person's roles may see. */
-export function AppShell({ pages, personName, children }: AppShellProps) {
+export function AppShell({ pages, person, children }: AppShellProps) {
   const pathname = usePathname();
   // Remembering where the menu was opened closes it by itself on the next page.
   const [menuOpenAt, setMenuOpenAt] = useState<string | null>(null);
@@ -50,7 +55,7 @@ export function AppShell({ pages, personName, children }: AppShellProps) {
           <div className="flex flex-wrap items-center gap-x-4 gap-y-1 pt-2 text-small md:ml-auto md:pt-0">
             <ThemeSwitch />
             <Link href="/profile" className="text-soft hover:text-ink hover:underline">
-              {personName}
+              {person.name}
             </Link>
             <SignOut />
           </div>
@@ -59,6 +64,7 @@ export function AppShell({ pages, personName, children }: AppShellProps) {
       <main id="main" tabIndex={-1} className="outline-none">
         {children}
       </main>
+      <SignInAgain personId={person.personId} />
     </>
   );
 }

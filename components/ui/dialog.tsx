@@ -13,24 +13,18 @@ type DialogProps = {
   /** Refuse to close by Escape or a press outside: something must be answered. */
   mustAnswer?: boolean;
   wide?: boolean;
+  /** Hides the page beneath, for when nobody may be looking at it. */
+  opaque?: boolean;
 };
 
 export function Dialog(props: DialogProps) {
-  const {
-    open,
-    onOpenChange,
-    title,
-    description,
-    children,
-    footer,
-    mustAnswer = false,
-    wide = false,
-  } = props;
+  const { open, onOpenChange, title, description, children, footer } = props;
+  const { mustAnswer = false, wide = false, opaque = false } = props;
   const hold = mustAnswer ? (event: Event) => event.preventDefault() : undefined;
   return (
     <Radix.Root open={open} onOpenChange={onOpenChange}>
       <Radix.Portal>
-        <Radix.Overlay className="fixed inset-0 z-40 bg-[rgb(20_18_14/0.45)]" />
+        <Radix.Overlay className={`fixed inset-0 z-40 ${opaque ? "bg-sunk" : "bg-[rgb(20_18_14/0.45)]"}`} />
         <Radix.Content
           {...(description === undefined && { "aria-describedby": undefined })}
           onEscapeKeyDown={hold}
