@@ -1,5 +1,5 @@
 import { factorise, solve } from "./cholesky";
-import { multiply } from "./triangle";
+import { addToDiagonal, multiply } from "./triangle";
 import { dot, lengthOf } from "./vector";
 
 /** Scales a vector longer than the bound down to it, in place. */
@@ -28,7 +28,7 @@ export function projectInMetric(mean: Float64Array, triangle: Float64Array, boun
     if (multiplier > 0) solve(factor, slope);
     multiplier += ((length - bound) / bound) * ((length * length) / dot(point, slope));
     for (let at = 0; at < factor.length; at++) factor[at] = multiplier * (triangle[at] as number);
-    for (let i = 0, at = 0; i < dimension; i++, at += i + 1) factor[at] = (factor[at] as number) + 1;
+    addToDiagonal(factor, dimension, 1);
     factorise(factor, dimension);
     point.set(mean);
     solve(factor, point);

@@ -36,11 +36,12 @@ export class Belief {
     addOuter(this.triangle, u, -shrink);
   }
 
-  /** Projects m onto ‖m‖ ≤ bound in the norm of A; says whether it had to. */
-  keepWithin(bound: number): boolean {
-    if (lengthOf(this.mean) <= bound) return false;
+  /** Projects m onto ‖m‖ ≤ bound in the norm of A; returns by how much m moved, null when it was within. */
+  keepWithin(bound: number): Float64Array | null {
+    if (lengthOf(this.mean) <= bound) return null;
+    const before = this.mean.slice();
     projectInMetric(this.mean, this.triangle, bound);
-    return true;
+    return before.map((value, i) => (this.mean[i] as number) - value);
   }
 
   /** P ← P/rho; then no variance may pass the starting one: row and column are scaled back, without which P diverges. */

@@ -42,3 +42,14 @@ export function solve(factor: Float64Array, b: Float64Array): void {
   solveLower(factor, b);
   solveUpper(factor, b);
 }
+
+/** out = (L Lᵀ)⁻¹ as a lower triangle. */
+export function invert(factor: Float64Array, out: Float64Array, dimension: number): void {
+  const column = new Float64Array(dimension);
+  for (let j = 0; j < dimension; j++) {
+    column.fill(0);
+    column[j] = 1;
+    solve(factor, column);
+    for (let i = j; i < dimension; i++) out[(i * (i + 1)) / 2 + j] = column[i] as number;
+  }
+}

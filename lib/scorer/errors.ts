@@ -13,7 +13,7 @@ export class OptionsError extends Error {
   override readonly name = "OptionsError";
 }
 
-/** A label other than 1 or -1, or a weight that is negative or not finite. */
+/** A label other than 1 or -1, or a weight out of range. */
 export class LabelError extends Error {
   override readonly name = "LabelError";
 }

@@ -1,5 +1,7 @@
 export { DimensionError, LabelError, NotFiniteError, OptionsError, SnapshotError, StepError } from "./errors";
+export { bestInHindsight, type Fit } from "./hindsight";
 export { logLoss, probabilityOf } from "./logistic";
+export { scoreByCard } from "./scorecard";
 export { createScorer, restoreScorer } from "./scorer";
 export {
   type Explanation,
@@ -12,6 +14,8 @@ export {
   type Placed,
   type Reading,
   type Score,
+  type Scorecard,
+  type ScorecardPart,
   type Scorer,
   type ScorerOptions,
   type Step,

@@ -28,8 +28,9 @@ function require(holds: boolean, key: keyof ScorerOptions, wanted: string, value
   if (!holds) throw new OptionsError(`${key} must be ${wanted}, got ${String(value)}`);
 }
 
+/** Within these ranges no state can leave the range of a double. */
 function requirePositive(key: keyof ScorerOptions, value: number): void {
-  require(Number.isFinite(value) && value > 0, key, "a positive number", value);
+  require(value >= 1e-9 && value <= 1e9, key, "between 1e-9 and 1e9", value);
 }
 
 /** Fills in the defaults. Errors: OptionsError naming the option that is out of range or not this method's. */
@@ -85,7 +86,7 @@ export function checkOptions(options: ResolvedOptions): void {
   requirePositive("marginBound", options.marginBound);
   if (has(options.method, "regularization")) requirePositive("regularization", options.regularization);
   require(outcomeWeight === 0.5 || outcomeWeight === 1, "outcomeWeight", "0.5 or 1", outcomeWeight);
-  require(Number.isFinite(offset), "offset", "a finite number", offset);
+  require(Math.abs(offset) <= 1000, "offset", "between -1000 and 1000", offset);
   require(forgetting > 0 && forgetting <= 1, "forgetting", "above 0 and at most 1", forgetting);
   require(linearization === "posterior" ||
     linearization === "prior", "linearization", "posterior or prior", linearization);

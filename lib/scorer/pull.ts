@@ -32,24 +32,21 @@ export function pulledLogit(target: number, strength: number): number {
 
 /**
  * The log odds after the label: root w of w = target + strength·y·sigma(-yw), where strength = weight·s.
- * It lies between target and target + y·strength; a Newton step that leaves the bracket is replaced by halving it.
- * Source: the proximal (implicit) step for the logistic loss. The same stopping rule holds, with max |f''|/2 halved.
+ * Source: the proximal (implicit) step for the logistic loss.
+ * In v = yw it is the root of g(v) = v - strength·sigma(-v) - y·target, between y·target and y·target + strength.
+ * g is convex below 0 and concave above, so Newton from 0, or from the end of the bracket on the root's side of 0,
+ * runs to the root without passing it. As g' ≥ 1 and max |g''|/2 = HALF_CURVATURE·strength/2, it stops as above.
  */
 export function posteriorLogit(target: number, strength: number, label: number): number {
   const start = label * target;
-  let low = start;
-  let high = start + strength;
-  let w = start;
-  for (let round = 0; round < 100 && low < high; round++) {
-    const p = logistic(-w);
-    const residual = w - strength * p - start;
-    if (residual < 0) low = w;
-    else high = w;
-    const next = w - residual / (1 + strength * p * (1 - p));
-    const inside = next >= low && next <= high;
-    const settled = inside && (HALF_CURVATURE / 2) * strength * residual * residual <= TOLERANCE;
-    w = inside ? next : low + (high - low) / 2;
+  let v = start + strength / 2 >= 0 ? Math.max(0, start) : Math.min(0, start + strength);
+  for (let round = 0; round < 100; round++) {
+    const p = logistic(-v);
+    const residual = v - strength * p - start;
+    const next = v - residual / (1 + strength * p * (1 - p));
+    const settled = next === v || (HALF_CURVATURE / 2) * strength * residual * residual <= TOLERANCE;
+    v = next;
     if (settled) break;
   }
-  return label * w;
+  return label * v;
 }

@@ -1,4 +1,4 @@
-import type { Move, Reading } from "./types";
+import type { Move, Reading, ScorecardPart } from "./types";
 
 /** What a rule made of one label: the log odds it gave before, and the step it took. */
 export interface RuleLearned {
@@ -17,6 +17,10 @@ export interface Rule {
   learn(x: Float64Array, label: number, weight: number): RuleLearned;
   weights(): Float64Array;
   certificate(): number | null;
+  /** The present state as plain parts of a scorecard. */
+  freeze(): ScorecardPart[];
+  /** Mean of the weights as they stood before each label; only where scores are linear in the vector. */
+  averagedWeights?(): Float64Array;
   /** Everything that changes, as doubles; `restore` takes the same array back. */
   state(): Float64Array;
   /** Returns false, without changing anything, when the length cannot be this rule's. */

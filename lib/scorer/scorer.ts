@@ -4,9 +4,23 @@ import { logLoss, probabilityOf } from "./logistic";
 import { ownOptions, type ResolvedOptions, resolveOptions } from "./options";
 import { readLeverage, readLogit, readRawEvidence } from "./reading";
 import type { Rule } from "./rule";
+import { freezeScorecard } from "./scorecard";
 import { decodeSnapshot, encodeSnapshot } from "./snapshot";
-import type { Explanation, Label, Learned, Placed, Reading, Score, Scorer, ScorerOptions } from "./types";
+import type {
+  Explanation,
+  Label,
+  Learned,
+  Placed,
+  Reading,
+  Score,
+  Scorecard,
+  Scorer,
+  ScorerOptions,
+} from "./types";
 import { checkVector, withinLength } from "./vector";
+
+/** Keeps every step within the range of a double; useful weights are far smaller. */
+const LARGEST_WEIGHT = 1e6;
 
 /** An untrained scorer. Errors: OptionsError naming the option. */
 export function createScorer(options: ScorerOptions): Scorer {
@@ -62,8 +76,8 @@ class RuleScorer implements Scorer {
   learn(x: Float64Array, label: Label, weight = 1): Learned {
     const bounded = this.bound(x);
     if (label !== 1 && label !== -1) throw new LabelError(`label must be 1 or -1, got ${String(label)}`);
-    if (!Number.isFinite(weight) || weight < 0) {
-      throw new LabelError(`weight must be a finite number, 0 or more, got ${weight}`);
+    if (!(weight >= 0 && weight <= LARGEST_WEIGHT)) {
+      throw new LabelError(`weight must be between 0 and ${LARGEST_WEIGHT}, got ${weight}`);
     }
     const { logit, move } = this.rule.learn(bounded, label, weight);
     this.count += 1;
@@ -89,6 +103,10 @@ class RuleScorer implements Scorer {
 
   certificate(): number | null {
     return this.rule.certificate();
+  }
+
+  scorecard(): Scorecard {
+    return freezeScorecard(this.rule, this.resolved, this.count);
   }
 
   snapshot(): Uint8Array {

@@ -54,9 +54,9 @@ export function createSecondOrder(settings: SecondOrderSettings): Rule {
     else certificate.withdraw();
     belief.move(u, shift, shrink);
     if (forgetting < 1) belief.forget(forgetting);
-    const projected = belief.keepWithin(weightBound);
-    if (projected) certificate.withdraw();
-    return { logit, move: { u, shift, shrink, exact: !projected && forgetting === 1 } };
+    const drift = belief.keepWithin(weightBound);
+    if (drift) certificate.withdraw();
+    return { logit, move: { u, shift, shrink, drift, exact: forgetting === 1 } };
   }
 
   return {
@@ -68,6 +68,14 @@ export function createSecondOrder(settings: SecondOrderSettings): Rule {
     learn,
     weights: () => belief.mean.slice(),
     certificate: () => (certified ? certificate.value() : null),
+    freeze: () => [
+      {
+        weights: [...belief.mean],
+        triangle: outcomeWeight > 0 ? [...belief.triangle] : null,
+        outcomeWeight,
+        share: 1,
+      },
+    ],
     state() {
       const state = new Float64Array(stateLength);
       belief.write(state, 0);

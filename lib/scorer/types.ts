@@ -52,13 +52,15 @@ export interface Explanation extends Score {
   contributions: Float64Array;
 }
 
-/** How one part moved: with v = x·u a waiting case moves by z0 += shift·v and s -= shrink·v². */
+/** How one part moved: with v = x·u a waiting case moves by z0 += shift·v + x·drift and s -= shrink·v². */
 export interface Move {
   /** u = P x as it was before the label. */
   u: Float64Array;
   shift: number;
   shrink: number;
-  /** False when the weights moved in another way too (projection, forgetting, refit): waiting cases must be recomputed. */
+  /** What the projection onto the weight bound added to the weights; null when none was needed. */
+  drift: Float64Array | null;
+  /** False when the leverages moved in another way (forgetting, refit): waiting cases must be recomputed. */
   exact: boolean;
 }
 
@@ -102,6 +104,28 @@ export interface Learned {
   step: Step;
 }
 
+export interface ScorecardPart {
+  weights: number[];
+  /** P row by row up to the diagonal, for the leverage; null where nothing is held back. */
+  triangle: number[] | null;
+  outcomeWeight: number;
+  share: number;
+}
+
+/** A frozen scorer as plain JSON, for a payment system that scores on its own. */
+export interface Scorecard {
+  /** `averaged`: the mean of the weights over all labels; `latest`: the state after the last label. */
+  kind: "averaged" | "latest";
+  /** What is promised for its scores, in words. */
+  guarantee: string;
+  /** The live certificate at the time, in nats. */
+  certificate: number | null;
+  labels: number;
+  featureBound: number;
+  offset: number;
+  parts: ScorecardPart[];
+}
+
 export interface Scorer {
   readonly method: Method;
   readonly dimension: number;
@@ -114,7 +138,7 @@ export interface Scorer {
   explain(x: Float64Array): Explanation;
   /**
    * Errors: DimensionError, NotFiniteError, LabelError; each leaves the scorer as it was.
-   * @param weight multiplies the loss of this label; 0 or more.
+   * @param weight multiplies the loss of this label; from 0 to 1e6.
    */
   learn(x: Float64Array, label: Label, weight?: number): Learned;
   /** Where a vector stands, for `createWaiting`. Errors: DimensionError, NotFiniteError. */
@@ -124,5 +148,7 @@ export interface Scorer {
   weights(): Float64Array;
   /** Upper bound on the regret so far in nats, or null where none holds (see the rule's file). */
   certificate(): number | null;
+  /** Freezes the scorer by online-to-batch conversion; see `scorecard.ts` for the guarantees. */
+  scorecard(): Scorecard;
   snapshot(): Uint8Array;
 }
