@@ -1,6 +1,7 @@
 import { createHash } from "node:crypto";
 import type { Database } from "@/db/client";
 import { vectorToBytes } from "@/db/columns";
+import { Chance } from "@/db/demo/random";
 import { cases } from "@/db/schema/cases";
 import { people, personRoles } from "@/db/schema/people";
 import { scores, transactions } from "@/db/schema/transactions";
@@ -11,7 +12,6 @@ import { newId } from "@/lib/new-id";
 import { ensureFirstPolicy } from "@/lib/policy/install";
 import { DIMENSION, SIGNAL_SET_VERSION } from "@/lib/signals/catalogue";
 import { type TestDatabase, testDatabase } from "./database";
-import { seededRandom } from "./random";
 
 /** A moment all worlds start at; tests move on from it. */
 export const WORLD_START = new Date("2026-03-02T09:00:00.000Z");
@@ -25,7 +25,13 @@ export type World = TestDatabase & {
   waitingCases: (count: number, options?: CaseOptions) => Promise<WaitingCase[]>;
 };
 
-type CaseOptions = { accountId?: string; amountMinor?: number; seed?: number; openedAt?: Date; held?: boolean };
+type CaseOptions = {
+  accountId?: string;
+  amountMinor?: number;
+  seed?: number;
+  openedAt?: Date;
+  held?: boolean;
+};
 
 export async function testWorld(): Promise<World> {
   const database = await testDatabase();
@@ -64,13 +70,17 @@ async function insertPerson(db: Database, roles: Role[]): Promise<PersonActor> {
   return { kind: "person", personId, name, roles, timeZone: "UTC", key: null };
 }
 
-async function insertWaitingCases(db: Database, count: number, options: CaseOptions = {}): Promise<WaitingCase[]> {
+async function insertWaitingCases(
+  db: Database,
+  count: number,
+  options: CaseOptions = {},
+): Promise<WaitingCase[]> {
   const { accountId, amountMinor = 12_900, seed = 1, openedAt = WORLD_START, held = false } = options;
-  const random = seededRandom(seed);
+  const chance = new Chance(seed);
   const made = Array.from({ length: count }, (_, index) => ({
     caseId: newId(),
     transactionId: newId(),
-    vector: randomVector(random),
+    vector: randomVector(chance),
     accountId: accountId ?? `ACC-${seed}-${index}`,
   }));
   for (let from = 0; from < count; from += 500) {
@@ -137,8 +147,10 @@ function arrivalScore(one: { transactionId: string; vector: Float64Array }, take
 }
 
 /** In [−1, 1], the bias last and 1, about as sparse as real signals are. */
-function randomVector(random: () => number): Float64Array {
-  const vector = Float64Array.from({ length: DIMENSION }, () => (random() < 0.4 ? 2 * random() - 1 : 0));
+function randomVector(chance: Chance): Float64Array {
+  const vector = Float64Array.from({ length: DIMENSION }, () =>
+    chance.hits(0.4) ? 2 * chance.unit() - 1 : 0,
+  );
   vector[DIMENSION - 1] = 1;
   return vector;
 }
