@@ -63,6 +63,9 @@ export const cases = mysqlTable(
     index("cases_lapse").on(table.state, table.lapsesAt),
     // Other servers follow changes by time.
     index("cases_changed").on(table.changedAt),
+    // Workload of a week: opened in it, still undecided at its end.
+    index("cases_opened").on(table.openedAt),
+    index("cases_decided_at").on(table.decidedAt),
     check("cases_claim", sql`(${table.state} = 'claimed') = (${table.claimedBy} is not null)`),
     check("cases_decided", sql`(${table.state} = 'decided') = (${table.decidedAt} is not null)`),
     check("cases_sample", sql`(${table.kind} = 'sample') = (${table.sampleProbability} is not null)`),

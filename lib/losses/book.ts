@@ -5,7 +5,10 @@ import { decisions, ledger } from "@/db/schema/cases";
 import { transactions } from "@/db/schema/transactions";
 import type { Typology, Verdict } from "../decisions/codes";
 import type { PolicyTerms } from "../policy/schema";
-import { type LedgerLine, ledgerLine, reversed } from "./rules";
+import { reverseLines, standingOutcomeLines } from "./reverse";
+import { type LedgerLine, ledgerLine, NOTHING_BOOKED } from "./rules";
+
+type CostTerms = Pick<PolicyTerms, "reviewCostMinorPerHour" | "lostMargin">;
 
 export type DecisionBooking = {
   decisionId: string;
@@ -15,24 +18,68 @@ export type DecisionBooking = {
   typology: Typology | null;
   handlingSeconds: number;
   /** Terms of the policy that the decision falls under. */
-  terms: Pick<PolicyTerms, "reviewCostMinorPerHour" | "lostMargin">;
+  terms: CostTerms;
   bookedAt: Date;
 };
 
 /**
  * Books the ledger line of a decision or correction that is already inserted, inside its transaction. Reads the
  * amount and where the money is from the transaction as it stands, so a disposition must not be written before.
+ * Where an outcome has labelled the payment, a plain decision books its review cost alone; a correction, which is
+ * stronger, takes the outcome's line back first.
  * @throws Error where the transaction does not exist
  */
 export async function bookDecision(tx: Tx, booking: DecisionBooking): Promise<LedgerLine> {
   const payment = await paymentOrThrow(tx, booking.transactionId);
-  const wasPassed = payment.action === "pass" || (await wasDecidedLegitimate(tx, booking));
-  const line = ledgerLine({ ...booking, ...payment, wasPassed });
+  const wasPassed =
+    payment.action === "pass" || (await wasDecidedLegitimate(tx, booking.transactionId, booking.decisionId));
+  const whole = ledgerLine({ ...booking, ...payment, wasPassed });
+  const byOutcome = await standingOutcomeLines(tx, booking.transactionId);
+  const yields = byOutcome.length > 0 && (await isPlainDecision(tx, booking.decisionId));
+  if (!yields) await reverseLines(tx, byOutcome, booking.bookedAt, "nothing");
+  const line = yields ? { ...NOTHING_BOOKED, reviewCostMinor: whole.reviewCostMinor } : whole;
   await tx.insert(ledger).values({
     ...line,
     transactionId: booking.transactionId,
     decisionId: booking.decisionId,
     bookedAt: booking.bookedAt,
+    occurredAt: payment.occurredAt,
+    typology: yields ? null : booking.typology,
+    detail: { verdict: booking.verdict, paymentState: payment.paymentState, wasPassed },
+  });
+  return line;
+}
+
+export type OutcomeBooking = {
+  outcomeId: string;
+  transactionId: string;
+  verdict: "fraudulent" | "legitimate";
+  typology: Typology | null;
+  terms: CostTerms;
+  bookedAt: Date;
+};
+
+/**
+ * Books the label that an outcome brought: takes back the money of whatever finding stood before, while the cost of
+ * reviewing it stays, and books the payment anew. Call it only where the label changed.
+ */
+export async function bookOutcome(tx: Tx, booking: OutcomeBooking): Promise<LedgerLine> {
+  const { transactionId, bookedAt } = booking;
+  const payment = await paymentOrThrow(tx, transactionId);
+  const wasPassed = payment.action === "pass" || (await wasDecidedLegitimate(tx, transactionId));
+  const before = await tx
+    .select()
+    .from(ledger)
+    .where(
+      and(eq(ledger.transactionId, transactionId), eq(ledger.recoveredMinor, 0), isNull(ledger.reversesId)),
+    );
+  await reverseLines(tx, before, bookedAt, "review_cost");
+  const line = ledgerLine({ ...booking, ...payment, wasPassed, handlingSeconds: 0 });
+  await tx.insert(ledger).values({
+    ...line,
+    transactionId,
+    outcomeId: booking.outcomeId,
+    bookedAt,
     occurredAt: payment.occurredAt,
     typology: booking.typology,
     detail: { verdict: booking.verdict, paymentState: payment.paymentState, wasPassed },
@@ -40,10 +87,18 @@ export async function bookDecision(tx: Tx, booking: DecisionBooking): Promise<Le
   return line;
 }
 
+/** Money that came back on a fraudulent payment, in minor units of the base currency. */
+export async function bookRecovery(
+  tx: Tx,
+  recovery: { outcomeId: string; transactionId: string; recoveredMinor: number; bookedAt: Date },
+): Promise<void> {
+  const { occurredAt } = await paymentOrThrow(tx, recovery.transactionId);
+  await tx.insert(ledger).values({ ...NOTHING_BOOKED, ...recovery, occurredAt });
+}
+
 /**
- * Takes back what a decision booked, by a line of the opposite sign; booking it twice changes nothing. An undo
- * returns everything, since the next decision on the case carries the whole handling time. A correction keeps the
- * review cost: that time was spent.
+ * Takes back what a decision booked, by a line of the opposite sign; a second call changes nothing. The review cost
+ * is the caller's question: it stays where the time was spent whatever came of it.
  */
 export async function reverseBooking(
   tx: Tx,
@@ -51,35 +106,11 @@ export async function reverseBooking(
   bookedAt: Date,
   keep: "nothing" | "review_cost" = "nothing",
 ): Promise<void> {
-  await reverseLines(tx, eq(ledger.decisionId, decisionId), bookedAt, keep);
-}
-
-async function reverseLines(
-  tx: Tx,
-  which: ReturnType<typeof eq>,
-  bookedAt: Date,
-  keep: "nothing" | "review_cost",
-): Promise<void> {
   const rows = await tx
     .select()
     .from(ledger)
-    .where(
-      and(
-        which,
-        isNull(ledger.reversesId),
-        sql`not exists (select 1 from ledger as later where later.reverses_id = ${ledger.id})`,
-      ),
-    );
-  for (const { id, detail: _, ...row } of rows) {
-    const line = reversed(row);
-    await tx.insert(ledger).values({
-      ...row,
-      ...line,
-      reviewCostMinor: keep === "review_cost" ? 0 : line.reviewCostMinor,
-      reversesId: id,
-      bookedAt,
-    });
-  }
+    .where(and(eq(ledger.decisionId, decisionId), isNull(ledger.reversesId)));
+  await reverseLines(tx, rows, bookedAt, keep);
 }
 
 async function paymentOrThrow(tx: Tx, transactionId: string) {
@@ -96,21 +127,28 @@ async function paymentOrThrow(tx: Tx, transactionId: string) {
   return payment;
 }
 
+/** A verdict of "legitimate" other than this one was given on the payment and not taken back as a slip. */
 async function wasDecidedLegitimate(
   tx: Tx,
-  booking: { caseId: string; decisionId: string },
+  transactionId: string,
+  exceptDecisionId?: string,
 ): Promise<boolean> {
   const [earlier] = await tx
     .select({ id: decisions.id })
     .from(decisions)
     .where(
       and(
-        eq(decisions.caseId, booking.caseId),
-        ne(decisions.id, booking.decisionId),
+        eq(decisions.caseId, sql`(select c.id from cases c where c.transaction_id = ${transactionId})`),
+        exceptDecisionId ? ne(decisions.id, exceptDecisionId) : undefined,
         eq(decisions.verdict, "legitimate"),
         isNull(decisions.undoneAt),
       ),
     )
     .limit(1);
   return earlier !== undefined;
+}
+
+async function isPlainDecision(tx: Tx, decisionId: string): Promise<boolean> {
+  const [row] = await tx.select({ kind: decisions.kind }).from(decisions).where(eq(decisions.id, decisionId));
+  return row?.kind === "decision" || row?.kind === "second_review";
 }

@@ -100,3 +100,6 @@ export function reversed(line: LedgerLine): LedgerLine {
     reviewCostMinor: 0 - line.reviewCostMinor,
   };
 }
+
+export const isNothing = (line: LedgerLine): boolean =>
+  Object.keys(NOTHING_BOOKED).every((figure) => line[figure as keyof LedgerLine] === 0);

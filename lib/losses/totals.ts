@@ -1,0 +1,75 @@
+import { wilsonInterval } from "../wilson";
+import { divideHalfEven } from "./rounding";
+import type { LedgerLine } from "./rules";
+
+/** What the database adds up for one week; money in minor units of the base currency. */
+export type WeekSums = LedgerLine & {
+  /** Value of the payments that went through: neither held nor refused. */
+  settledMinor: number;
+  payments: number;
+  /** Payments of the week whose currency has no rate: they are in no figure of money. */
+  unpriced: number;
+  /** Cases with a standing verdict. */
+  fraudulent: number;
+  legitimate: number;
+  customerMisuse: number;
+  /** Alerts with a standing verdict, samples and siblings left out, and the fraudulent among them. */
+  alertsDecided: number;
+  alertsFraudulent: number;
+};
+
+/** A share with its 95 % interval, in parts per million. */
+export type ShareOf = { ppm: number; lowPpm: number; highPpm: number; count: number; of: number };
+
+/** Figures that follow from the sums; null means "not defined", never 0. Rates in parts per million: 100 ppm = 1 bp. */
+export type WeekTotals = WeekSums & {
+  /** Attempted − prevented, recovered or not. */
+  grossMinor: number;
+  /** Gross − recovered. */
+  netMinor: number;
+  /** Net + lost margin + review cost. */
+  totalCostMinor: number;
+  /** Prevented ÷ attempted, by value. */
+  valueDetectionPpm: number | null;
+  /** Gross, net and total cost ÷ settled value. */
+  grossPpm: number | null;
+  netPpm: number | null;
+  totalCostPpm: number | null;
+  /** Fraudulent among the alerts decided. */
+  precision: ShareOf | null;
+  /** Review cost ÷ cases decided. */
+  costPerCaseMinor: number | null;
+};
+
+/** Ratio of two amounts in parts per million by integer arithmetic, rounded half-even; null over nothing. */
+export function partsPerMillion(part: number, whole: number): number | null {
+  return whole > 0 ? Number(divideHalfEven(BigInt(part) * 1_000_000n, BigInt(whole))) : null;
+}
+
+/** The week's figures from its sums. */
+export function weekTotals(sums: WeekSums): WeekTotals {
+  const grossMinor = sums.attemptedMinor - sums.preventedMinor;
+  const netMinor = grossMinor - sums.recoveredMinor;
+  const totalCostMinor = netMinor + sums.lostMarginMinor + sums.reviewCostMinor;
+  const decided = sums.fraudulent + sums.legitimate + sums.customerMisuse;
+  return {
+    ...sums,
+    grossMinor,
+    netMinor,
+    totalCostMinor,
+    valueDetectionPpm: partsPerMillion(sums.preventedMinor, sums.attemptedMinor),
+    grossPpm: partsPerMillion(grossMinor, sums.settledMinor),
+    netPpm: partsPerMillion(netMinor, sums.settledMinor),
+    totalCostPpm: partsPerMillion(totalCostMinor, sums.settledMinor),
+    precision: shareOf(sums.alertsFraudulent, sums.alertsDecided),
+    costPerCaseMinor:
+      decided > 0 ? Number(divideHalfEven(BigInt(sums.reviewCostMinor), BigInt(decided))) : null,
+  };
+}
+
+function shareOf(count: number, of: number): ShareOf | null {
+  const ppm = partsPerMillion(count, of);
+  if (ppm === null) return null;
+  const { low, high } = wilsonInterval(count, of);
+  return { ppm, lowPpm: Math.round(low * 1e6), highPpm: Math.round(high * 1e6), count, of };
+}
