@@ -13,9 +13,15 @@ try {
   const statesEqual = replay.differingStates.length === 0;
   const lossesEqual = replay.firstDifferingLoss === null && replay.cumulativeLossEqual;
   console.log(`Label log: ${replay.rows} rows, ${replay.labels} labels in force, replayed in ${seconds} s.`);
-  console.log(`State:  ${statesEqual ? "identical bit for bit" : `DIFFERS for ${replay.differingStates.join(", ")}`}`);
-  console.log(`Losses: ${lossesEqual ? "identical bit for bit" : `DIFFER from row ${replay.firstDifferingLoss ?? "of the sum"}`}`);
-  console.log(`Trail:  ${chain.intact ? `${chain.entries} entries, chain intact` : `BROKEN at entry ${chain.firstBrokenSeq}`}`);
+  console.log(
+    `State:  ${statesEqual ? "identical bit for bit" : `DIFFERS for ${replay.differingStates.join(", ")}`}`,
+  );
+  console.log(
+    `Losses: ${lossesEqual ? "identical bit for bit" : `DIFFER from row ${replay.firstDifferingLoss ?? "of the sum"}`}`,
+  );
+  console.log(
+    `Trail:  ${chain.intact ? `${chain.entries} entries, chain intact` : `BROKEN at entry ${chain.firstBrokenSeq}`}`,
+  );
   process.exitCode = statesEqual && lossesEqual && chain.intact ? 0 : 1;
 } finally {
   await close();

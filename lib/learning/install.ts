@@ -9,7 +9,7 @@ import { logitOf } from "../decibans";
 import { newId } from "../new-id";
 import { policyInForce } from "../policy/read";
 import { createScorer } from "../scorer";
-import { DIMENSION, SIGNAL_KEYS, SIGNAL_SET_VERSION } from "../signals/catalogue";
+import { CATALOGUE, DIMENSION, SIGNAL_SET_VERSION } from "../signals/catalogue";
 import { appendTrail } from "../trail/append";
 
 /** Puts an untrained scorer in use on a new installation; of two servers starting at once, one does it. */
@@ -41,7 +41,7 @@ export async function ensureScorerInUse(ctx: Context): Promise<void> {
       });
       await tx
         .insert(signalSets)
-        .values({ version: SIGNAL_SET_VERSION, definition: SIGNAL_KEYS, createdAt: now })
+        .values({ version: SIGNAL_SET_VERSION, definition: CATALOGUE.map((signal) => signal.key), createdAt: now })
         .onDuplicateKeyUpdate({ set: { version: SIGNAL_SET_VERSION } });
       await appendTrail(ctx, tx, {
         act: "scorer.installed",

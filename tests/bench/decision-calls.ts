@@ -1,0 +1,92 @@
+import { createDatabase } from "@/db/client";
+import { scenarioDays } from "@/db/demo/scenario";
+import type { CaseView } from "@/lib/cases/schema";
+import { startApp } from "../support/app";
+import type { Row } from "../support/bench";
+import { Api, insertKey } from "./support/api";
+import { ms, quantile } from "./support/figures";
+import { setTerms } from "./support/install";
+
+const WAITING_CASES = 10_000;
+const REVIEWERS = 10;
+const DECISIONS_EACH = 60;
+const LIMIT_MS = 40;
+/** Even a fast reviewer looks at a case; ten of them still decide several times a second. */
+const PAUSE_MS = 400;
+
+/** Ten reviewers deciding at once on a queue of ten thousand: with a short look at each case, and without any. */
+export async function run(): Promise<Row[]> {
+  const app = await startApp({ durable: true, env: { CUPEL_REQUESTS_PER_MINUTE: "1000000" } });
+  const { db, close } = createDatabase(app.databaseUrl, 2);
+  try {
+    // Everything is an alert, so that the queue fills.
+    await setTerms(db, {
+      reviewThreshold: { kind: "fixed", probability: 0 },
+      holdThreshold: 1,
+      dailyCapacity: 1_000_000,
+    });
+    await fillQueue(new Api(app.url, await insertKey(db, ["transactions:write"])));
+    const keys = await Promise.all(
+      Array.from({ length: REVIEWERS }, () => insertKey(db, ["cases:read", "cases:decide"], ["reviewer"])),
+    );
+    const reviewers = keys.map((key) => new Api(app.url, key));
+    await work(reviewers, 5, 0);
+    const paced = await work(reviewers, DECISIONS_EACH, PAUSE_MS);
+    const flatOut = await work(reviewers, DECISIONS_EACH, 0);
+    const p95 = quantile(paced, 0.95);
+    return [
+      {
+        name: `decision p50, ${REVIEWERS} reviewers`,
+        measured: ms(quantile(paced, 0.5)),
+        limit: "–",
+        ok: true,
+      },
+      {
+        name: `decision p95, ${REVIEWERS} reviewers`,
+        measured: ms(p95),
+        limit: ms(LIMIT_MS),
+        ok: p95 <= LIMIT_MS,
+      },
+      { name: "the same without a pause, p50", measured: ms(quantile(flatOut, 0.5)), limit: "–", ok: true },
+      { name: "the same without a pause, p95", measured: ms(quantile(flatOut, 0.95)), limit: "–", ok: true },
+    ];
+  } finally {
+    await close();
+    await app.stop();
+  }
+}
+
+async function fillQueue(sender: Api): Promise<void> {
+  let sent = 0;
+  for (let seed = 1; sent < WAITING_CASES + 2_000; seed++) {
+    for (const { transactions } of scenarioDays(seed, new Date("2026-11-30T00:00:00Z"))) {
+      const items = transactions.map(({ item }) => ({ ...item, externalId: `${seed}-${item.externalId}` }));
+      await sender.mustPost("/api/transactions", { transactions: items.slice(0, 1_000) });
+      sent += items.length;
+    }
+  }
+}
+
+/** @returns the time of each decision call in ms */
+async function work(reviewers: Api[], decisions: number, pauseMs: number): Promise<number[]> {
+  const times: number[] = [];
+  await Promise.all(
+    reviewers.map(async (api, number) => {
+      for (let index = 0; index < decisions; index++) {
+        if (pauseMs > 0) await new Promise((resolve) => setTimeout(resolve, pauseMs * (0.5 + Math.random())));
+        const view = await api.mustPost<CaseView>("/api/queue/next", {});
+        const fraudulent = (number + index) % 10 === 0;
+        const answer = await api.post(`/api/cases/${view.caseId}/decision`, {
+          verdict: fraudulent ? "fraudulent" : "legitimate",
+          typology: fraudulent ? "other" : null,
+          confidence: "sure",
+          seenVersion: view.revision,
+        });
+        if (answer.status !== 200)
+          throw new Error(`A decision answered ${answer.status}: ${JSON.stringify(answer.body)}`);
+        times.push(answer.ms);
+      }
+    }),
+  );
+  return times;
+}
