@@ -1,14 +1,20 @@
 import { caseEndpoints } from "./cases/endpoints";
 import { decisionEndpoints } from "./decisions/endpoints";
 import type { EndpointTable } from "./endpoint";
+import { keyEndpoints } from "./keys/endpoints";
 import { outcomeEndpoints } from "./outcomes/endpoints";
+import { peopleEndpoints } from "./people/endpoints";
 import { platformEndpoints } from "./platform-endpoints";
 import { policyEndpoints } from "./policy/endpoints";
+import { profileEndpoints } from "./profile/endpoints";
 import { transactionEndpoints } from "./transactions/endpoints";
 
 /** Every route of the HTTP API: validation, access and the OpenAPI document come from here. */
 export const ENDPOINTS = {
   ...platformEndpoints,
+  ...profileEndpoints,
+  ...peopleEndpoints,
+  ...keyEndpoints,
   ...transactionEndpoints,
   ...caseEndpoints,
   ...decisionEndpoints,

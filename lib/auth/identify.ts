@@ -1,5 +1,4 @@
 import "server-only";
-import { createHash } from "node:crypto";
 import { and, eq, isNull } from "drizzle-orm";
 import { NextRequest } from "next/server";
 import { getToken } from "next-auth/jwt";
@@ -8,6 +7,7 @@ import { apiKeys } from "@/db/schema/people";
 import type { Actor, PersonActor } from "../context";
 import { environment } from "../env";
 import { unauthenticated } from "../errors";
+import { hashOfKey } from "./key-hash";
 import { findActivePerson, findPersonForSession } from "./read";
 import { isOverLongest, SessionClaims, sessionCookie } from "./session";
 
@@ -45,11 +45,10 @@ const ended = () => unauthenticated("Your session has ended; sign in again");
 async function identifyKey(header: string, db: Database, now: Date): Promise<Actor> {
   const key = /^Bearer ([\x21-\x7e]+)$/.exec(header)?.[1];
   if (!key) throw unauthenticated("Send the key as Authorization: Bearer <key>");
-  const hash = createHash("sha256").update(key).digest();
   const [row] = await db
     .select()
     .from(apiKeys)
-    .where(and(eq(apiKeys.hash, hash), isNull(apiKeys.revokedAt)));
+    .where(and(eq(apiKeys.hash, hashOfKey(key)), isNull(apiKeys.revokedAt)));
   if (!row) throw unauthenticated("This key is not known or has been revoked");
   // To the minute: a feed of thousands of requests should not write a row for each.
   if (!row.lastUsedAt || now.getTime() - row.lastUsedAt.getTime() > 60_000) {

@@ -79,7 +79,7 @@ async function authorize(given: Record<string, unknown> | undefined, headers: Re
   } catch (error) {
     throw error instanceof KnownError ? new Error("too_many") : error;
   }
-  const result = await signIn(strangersContext(), input.data, { origin: originReference(address) }).catch(
+  const result = await signIn(strangersContext(), input.data, originReference(address)).catch(
     (error: unknown) => {
       log.error({ err: error });
       throw new Error("failed");
