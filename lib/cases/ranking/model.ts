@@ -1,0 +1,288 @@
+import "server-only";
+import type { Database } from "@/db/client";
+import { bytesToVector } from "@/db/columns";
+import { type HeldScorer, readScorerInUse } from "../../learning/held-scorer";
+import { log } from "../../log";
+import { type PolicyInForce, policyInForce } from "../../policy/read";
+import type { Thresholds } from "../../policy/rules";
+import { thresholdsInForce } from "../../policy/thresholds";
+import type { Label, Step } from "../../scorer";
+import { advance, recompute } from "./advance";
+import { type CaseDelta, readDelta } from "./delta";
+import type { Movement } from "./movement";
+import { type LoggedLabel, readLabels, readPlaced, readScorerHead, readWaitingIds } from "./read-waiting";
+import { Breath, Turns } from "./turns";
+import { RankingView } from "./view";
+import { type CaseFacts, WaitingCases } from "./waiting-cases";
+
+/** Clocks of servers differ, and a transaction commits later than the time it writes. */
+const OVERLAP_MS = 15_000;
+const POLICY_AGE_MS = 1_000;
+const PAGE = 500;
+/** From about as many labels as a vector has coordinates on, computing anew is cheaper than moving label by label. */
+const MOST_STEPS = 64;
+const MOVEMENTS_KEPT = 500;
+
+export type RankingEvent = { version: number; logSeq: number; changes: readonly CaseDelta[] };
+
+/**
+ * The ranking of waiting cases of one database, in this process's memory: a read model, never the truth. It is
+ * brought forward from the label log and from the cases' times of change, so that every process comes to the same
+ * order by itself. Nobody sees it half-way: changes and reads take turns.
+ */
+export class RankingModel {
+  private readonly updates = new Turns();
+  private readonly state = new Turns();
+  private readonly listeners = new Set<(event: RankingEvent) => void>();
+  private readonly hinted = new Set<string>();
+  private readonly movements = new Map<number, Movement>();
+  private pending: Promise<void> | null = null;
+  private pollWanted = false;
+  private loaded: { cases: WaitingCases; held: HeldScorer } | null = null;
+  private policy: { inForce: PolicyInForce; thresholds: Thresholds; readMs: number } | null = null;
+  private view: RankingView | null = null;
+  private isFrozen = false;
+  private pollFrom = new Date(0);
+
+  constructor(private readonly db: Database) {}
+
+  /** Rises with every label, undo, correction and change of the scorer's options; 0 before the first load. */
+  get version(): number {
+    return this.loaded?.held.version ?? 0;
+  }
+
+  get logSeq(): number {
+    return this.loaded?.held.logSeq ?? 0;
+  }
+
+  subscribe(listener: (event: RankingEvent) => void): () => void {
+    this.listeners.add(listener);
+    return () => this.listeners.delete(listener);
+  }
+
+  /**
+   * Hands the ranking to `use`, whole and at rest; what it returns must not hold on to the view.
+   * While everything is computed anew, the ranking as it was before is handed out.
+   */
+  async read<T>(now: Date, use: (view: RankingView) => T): Promise<T> {
+    if (!this.loaded) await this.catchUp();
+    if (this.isFrozen && this.view) return use(this.view);
+    return this.state.take(() => use(this.viewAt(now)));
+  }
+
+  /**
+   * Takes in what has changed since: the named cases and the label log, and with `poll` whatever changed lately.
+   * Calls that come before a run has begun share it.
+   */
+  catchUp(caseIds: readonly string[] = [], poll = false): Promise<void> {
+    for (const id of caseIds) this.hinted.add(id);
+    this.pollWanted ||= poll;
+    this.pending ??= this.updates.take(() => {
+      this.pending = null;
+      return this.bringForward();
+    });
+    return this.pending;
+  }
+
+  /** What moved when the scorer came to this version; null when nobody counted it here. */
+  movementOf(version: number): Movement | null {
+    return this.movements.get(version) ?? null;
+  }
+
+  private viewAt(now: Date): RankingView {
+    if (this.view?.isGoodAt(now)) return this.view;
+    const { cases, held, policy } = this.present();
+    this.view = new RankingView(cases, held, policy.inForce, policy.thresholds, now);
+    return this.view;
+  }
+
+  private async bringForward(): Promise<void> {
+    const now = new Date();
+    const hinted = [...this.hinted];
+    const poll = this.pollWanted;
+    this.hinted.clear();
+    this.pollWanted = false;
+    try {
+      await this.refreshPolicy(now);
+      if (!this.loaded) return await this.load(now);
+      const labels = await this.labelsUpTo(await readScorerHead(this.db));
+      const fresh = labels ? null : await readScorerInUse(this.db);
+      if (fresh && !isOfSameShape(fresh, this.loaded.held)) return await this.load(now);
+      // A decided case leaves before the others move, whoever decided it.
+      const named = [...hinted, ...(labels ?? []).flatMap(({ caseId }) => caseId ?? [])];
+      const delta = await readDelta(this.db, this.loaded.cases, named, poll ? this.pollFrom : null);
+      await this.state.take(() => this.apply(delta, labels ?? [], fresh));
+      if (poll) this.pollFrom = new Date(now.getTime() - OVERLAP_MS);
+    } catch (error) {
+      for (const id of hinted) this.hinted.add(id);
+      this.pollWanted ||= poll;
+      throw error;
+    }
+  }
+
+  private async load(now: Date): Promise<void> {
+    const held = await readScorerInUse(this.db);
+    const cases = new WaitingCases(held.scorer);
+    const breath = new Breath();
+    for (let after = 0; ; ) {
+      const page = await readWaitingIds(this.db, after, PAGE);
+      const last = page.at(-1);
+      if (!last) break;
+      after = last.number;
+      for (const { facts, vector } of await readPlaced(
+        this.db,
+        page.map(({ id }) => id),
+      )) {
+        cases.place(facts, fitting(facts, vector, held), held.scorer);
+        await breath.take();
+      }
+    }
+    await this.state.take(() => {
+      this.loaded = { cases, held };
+      this.view = null;
+      this.pollFrom = new Date(now.getTime() - OVERLAP_MS);
+    });
+    this.tell([]);
+    // What changed while the pages were read.
+    void this.catchUp([], true).catch((error) =>
+      log.error({ err: error }, "The ranking could not be brought forward"),
+    );
+  }
+
+  /** The labels that lead on to where the scorer stands; null when its state has to be taken from the database. */
+  private async labelsUpTo(head: {
+    id: string;
+    version: number;
+    logSeq: number;
+  }): Promise<LoggedLabel[] | null> {
+    const { held } = this.present();
+    if (head.id !== held.id) return null;
+    if (head.logSeq === held.logSeq) return head.version === held.version ? [] : null;
+    const labels = await readLabels(this.db, held.logSeq, head.logSeq, MOST_STEPS + 1);
+    if (labels.length > MOST_STEPS || labels.some(({ place }) => place !== null)) return null;
+    const leadsOn =
+      labels.at(-1)?.scorerVersion === head.version && held.version + labels.length === head.version;
+    return leadsOn ? labels : null;
+  }
+
+  private async apply(
+    delta: CaseDelta[],
+    labels: readonly LoggedLabel[],
+    fresh: HeldScorer | null,
+  ): Promise<void> {
+    if (delta.length === 0 && labels.length === 0 && !fresh) return;
+    const { cases, held } = this.present();
+    try {
+      for (const { caseId, after } of delta) if (!after) cases.remove(caseId);
+      if (fresh) await this.startAfresh(fresh);
+      else for (const act of actsOf(labels)) await this.learn(act, held);
+      const { scorer } = this.present().held;
+      const breath = new Breath();
+      for (const { after } of delta) {
+        if (after?.vector) cases.place(after.facts, fitting(after.facts, after.vector, held), scorer);
+        else if (after) cases.update(after.facts);
+        await breath.take();
+      }
+    } catch (error) {
+      // Half-way is nowhere: the next run loads everything again.
+      this.loaded = null;
+      throw error;
+    } finally {
+      this.view = null;
+    }
+    this.tell(delta);
+  }
+
+  private async learn(act: readonly LoggedLabel[], held: HeldScorer): Promise<void> {
+    const { cases, policy } = this.present();
+    const steps: Step[] = [];
+    for (const { vector, label, weight, seq, scorerVersion } of act) {
+      steps.push(held.scorer.learn(bytesToVector(vector), label as Label, weight).step);
+      held.logSeq = seq;
+      held.version = scorerVersion;
+    }
+    const movement = steps.every((step) => step.exact)
+      ? await advance(cases, steps, policy.thresholds.holdLogit)
+      : await this.computeAnew(held);
+    this.remember(held.version - act.length + 1, held.version, movement);
+  }
+
+  /** After an undo, a correction or other options the scorer's state comes from the database. */
+  private async startAfresh(fresh: HeldScorer): Promise<void> {
+    const { cases, held } = this.present();
+    this.remember(held.version + 1, fresh.version, await this.computeAnew(fresh));
+    this.loaded = { cases, held: fresh };
+  }
+
+  private async computeAnew({ scorer }: HeldScorer): Promise<Movement> {
+    const { cases, policy } = this.present();
+    this.viewAt(new Date());
+    this.isFrozen = true;
+    try {
+      return await recompute(cases, scorer, policy.thresholds.holdLogit);
+    } finally {
+      this.isFrozen = false;
+    }
+  }
+
+  private present() {
+    if (!this.loaded || !this.policy) throw new Error("The ranking is not loaded");
+    return { ...this.loaded, policy: this.policy };
+  }
+
+  private remember(fromVersion: number, toVersion: number, movement: Movement): void {
+    for (let version = Math.max(fromVersion, toVersion - MOVEMENTS_KEPT); version <= toVersion; version++) {
+      this.movements.set(version, movement);
+    }
+    for (const version of this.movements.keys()) {
+      if (this.movements.size <= MOVEMENTS_KEPT) break;
+      this.movements.delete(version);
+    }
+  }
+
+  private async refreshPolicy(now: Date): Promise<void> {
+    if (this.policy && now.getTime() - this.policy.readMs < POLICY_AGE_MS) return;
+    const inForce = await policyInForce(this.db, now);
+    const thresholds = await thresholdsInForce(this.db, inForce, now);
+    const changed = this.policy?.inForce.version !== inForce.version;
+    this.policy = { inForce, thresholds, readMs: now.getTime() };
+    if (changed && this.loaded) {
+      await this.state.take(() => {
+        this.view = null;
+      });
+      this.tell([]);
+    }
+  }
+
+  private tell(changes: readonly CaseDelta[]): void {
+    const event = { version: this.version, logSeq: this.logSeq, changes };
+    for (const listener of this.listeners) listener(event);
+  }
+}
+
+const isOfSameShape = (one: HeldScorer, other: HeldScorer) =>
+  one.scorer.dimension === other.scorer.dimension &&
+  one.scorer.reading().parts.length === other.scorer.reading().parts.length;
+
+/** Labels that one act brought belong together: what moved is counted once for all of them. */
+function actsOf(labels: readonly LoggedLabel[]): LoggedLabel[][] {
+  const acts: LoggedLabel[][] = [];
+  for (const label of labels) {
+    const before = acts.at(-1)?.at(-1);
+    const isSameAct = before?.personId === label.personId && before.at.getTime() === label.at.getTime();
+    if (isSameAct) acts.at(-1)?.push(label);
+    else acts.push([label]);
+  }
+  return acts;
+}
+
+/** A vector of another set of signals says nothing to this scorer; the case stands at the base rate until refreshed. */
+function fitting(facts: CaseFacts, vector: Float64Array, held: HeldScorer): Float64Array {
+  const { dimension } = held.scorer;
+  if (vector.length === dimension) return vector;
+  log.warn(
+    { caseId: facts.id, length: vector.length, dimension },
+    "A case waits with the vector of another signal set",
+  );
+  return new Float64Array(dimension);
+}

@@ -1,0 +1,169 @@
+import "server-only";
+import { and, asc, eq, gt, gte, inArray, lte } from "drizzle-orm";
+import type { Executor } from "@/db/client";
+import { bytesToVector } from "@/db/columns";
+import { cases } from "@/db/schema/cases";
+import { labelLog, scorers } from "@/db/schema/scorers";
+import { scores, transactions } from "@/db/schema/transactions";
+import { type CaseState, UNDECIDED_STATES } from "../codes";
+import type { CaseFacts } from "./waiting-cases";
+
+export type ScorerHead = { id: string; version: number; logSeq: number };
+
+/** Where the scorer in use stands, without its state. @throws Error on an installation without one */
+export async function readScorerHead(db: Executor): Promise<ScorerHead> {
+  const [head] = await db
+    .select({ id: scorers.id, version: scorers.version, logSeq: scorers.logSeq })
+    .from(scorers)
+    .where(eq(scorers.inUse, 1))
+    .limit(1);
+  if (!head) throw new Error("No scorer is in use; the installation is not set up");
+  return head;
+}
+
+export type LoggedLabel = {
+  seq: number;
+  place: number | null;
+  label: number;
+  weight: number;
+  vector: Buffer;
+  scorerVersion: number;
+  caseId: string | null;
+  personId: string | null;
+  at: Date;
+};
+
+/** Rows of the label log behind `after`, up to and with `upTo`. */
+export async function readLabels(
+  db: Executor,
+  after: number,
+  upTo: number,
+  limit: number,
+): Promise<LoggedLabel[]> {
+  return db
+    .select({
+      seq: labelLog.seq,
+      place: labelLog.place,
+      label: labelLog.label,
+      weight: labelLog.weight,
+      vector: labelLog.vector,
+      scorerVersion: labelLog.scorerVersion,
+      caseId: labelLog.caseId,
+      personId: labelLog.personId,
+      at: labelLog.at,
+    })
+    .from(labelLog)
+    .where(and(gt(labelLog.seq, after), lte(labelLog.seq, upTo)))
+    .orderBy(asc(labelLog.seq))
+    .limit(limit);
+}
+
+/** A row that has changed, and enough of it to tell whether the ranking knows already. */
+export type ChangedCase = {
+  id: string;
+  state: CaseState;
+  revision: number;
+  scoreId: number;
+  changedAt: Date;
+};
+
+const changed = {
+  id: cases.id,
+  state: cases.state,
+  revision: cases.revision,
+  scoreId: cases.scoreId,
+  changedAt: cases.changedAt,
+};
+
+export async function readChangedSince(db: Executor, since: Date): Promise<ChangedCase[]> {
+  return db.select(changed).from(cases).where(gte(cases.changedAt, since));
+}
+
+export async function readChangedAmong(db: Executor, ids: readonly string[]): Promise<ChangedCase[]> {
+  return ids.length === 0
+    ? []
+    : db
+        .select(changed)
+        .from(cases)
+        .where(inArray(cases.id, [...ids]));
+}
+
+const facts = {
+  id: cases.id,
+  number: cases.number,
+  kind: cases.kind,
+  state: cases.state,
+  zone: cases.zone,
+  channel: transactions.channel,
+  externalId: transactions.externalId,
+  accountId: transactions.accountId,
+  assignedTo: cases.assignedTo,
+  claimedBy: cases.claimedBy,
+  claimExpiresAt: cases.claimExpiresAt,
+  waitUntil: cases.waitUntil,
+  escalatedAt: cases.escalatedAt,
+  dueAt: cases.dueAt,
+  holdExpiresAt: transactions.holdExpiresAt,
+  paymentState: transactions.paymentState,
+  amountMinor: transactions.amountMinor,
+  amountBaseMinor: transactions.amountBaseMinor,
+  revision: cases.revision,
+  scoreId: cases.scoreId,
+  changedAt: cases.changedAt,
+};
+
+type FactsRow = Omit<CaseFacts, "holdExpiresAt" | "amountBaseMinor"> & {
+  holdExpiresAt: Date | null;
+  paymentState: string;
+  amountMinor: number;
+  amountBaseMinor: number | null;
+};
+
+function toFacts({ paymentState, amountMinor, amountBaseMinor, holdExpiresAt, ...row }: FactsRow): CaseFacts {
+  return {
+    ...row,
+    holdExpiresAt: paymentState === "held" ? holdExpiresAt : null,
+    // Without a rate the amount counts as it stands, rather than not at all.
+    amountBaseMinor: amountBaseMinor ?? amountMinor,
+  };
+}
+
+export async function readFacts(db: Executor, ids: readonly string[]): Promise<CaseFacts[]> {
+  if (ids.length === 0) return [];
+  const rows = await db
+    .select(facts)
+    .from(cases)
+    .innerJoin(transactions, eq(transactions.id, cases.transactionId))
+    .where(inArray(cases.id, [...ids]));
+  return rows.map(toFacts);
+}
+
+export type PlacedCase = { facts: CaseFacts; vector: Float64Array };
+
+export async function readPlaced(db: Executor, ids: readonly string[]): Promise<PlacedCase[]> {
+  if (ids.length === 0) return [];
+  const rows = await db
+    .select({ facts, vector: scores.vector })
+    .from(cases)
+    .innerJoin(transactions, eq(transactions.id, cases.transactionId))
+    .innerJoin(scores, eq(scores.id, cases.scoreId))
+    .where(and(inArray(cases.id, [...ids]), inArray(cases.state, [...UNDECIDED_STATES])));
+  return rows.map((row) => ({ facts: toFacts(row.facts), vector: bytesToVector(row.vector) }));
+}
+
+/** Ids of cases that wait for a verdict, behind `afterNumber` in order of arrival. */
+export async function readWaitingIds(
+  db: Executor,
+  afterNumber: number,
+  limit: number,
+): Promise<{ id: string; number: number }[]> {
+  return (
+    db
+      .select({ id: cases.id, number: cases.number })
+      // By number, whatever the statistics say: sorting all waiting cases for every page would be quadratic.
+      .from(cases, { forceIndex: ["cases_number_unique"] })
+      .where(and(gt(cases.number, afterNumber), inArray(cases.state, [...UNDECIDED_STATES])))
+      .orderBy(asc(cases.number))
+      .limit(limit)
+  );
+}
