@@ -2,7 +2,6 @@ import { randomBytes } from "node:crypto";
 import { createConnection } from "mysql2/promise";
 import { afterAll, inject } from "vitest";
 import { createDatabase, type DatabaseHandle } from "@/db/client";
-import { migrateDatabase } from "@/db/migrate";
 
 /** `db` and `url` act as the app's own account; `ownerUrl` may change the schema, as migrations do. */
 export type TestDatabase = DatabaseHandle & { url: string; ownerUrl: string };
@@ -16,15 +15,14 @@ export async function testDatabase(): Promise<TestDatabase> {
   const server = inject("mariadb");
   const url = inSchema(server.url, name);
   const ownerUrl = inSchema(server.ownerUrl, name);
-  await onServer(server.ownerUrl, `CREATE DATABASE ${name}`);
-  await migrateDatabase(ownerUrl);
+  await onServer(server.ownerUrl, [`CREATE DATABASE ${name}`, `USE ${name}`, ...server.schemaStatements]);
   const handle = createDatabase(url);
   let open = true;
   const close = async () => {
     if (!open) return;
     open = false;
     await handle.close();
-    await onServer(server.ownerUrl, `DROP DATABASE ${name}`);
+    await onServer(server.ownerUrl, [`DROP DATABASE ${name}`]);
   };
   afterAll(close);
   return { ...handle, url, ownerUrl, close };
@@ -34,10 +32,10 @@ function inSchema(url: string, name: string): string {
   return Object.assign(new URL(url), { pathname: `/${name}` }).href;
 }
 
-async function onServer(url: string, statement: string): Promise<void> {
+async function onServer(url: string, statements: string[]): Promise<void> {
   const connection = await createConnection(url);
   try {
-    await connection.query(statement);
+    for (const statement of statements) await connection.query(statement);
   } finally {
     await connection.end();
   }

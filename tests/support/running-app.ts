@@ -1,5 +1,6 @@
 import type { TestProject } from "vitest/node";
 import { type AppFacts, startApp } from "./app";
+import { describeTemplate } from "./template";
 
 declare module "vitest" {
   interface ProvidedContext {
@@ -14,6 +15,7 @@ export default async function startSharedApp(project: TestProject) {
   project.provide("app", { url, databaseUrl, ownerUrl, smtpUrl, mailUrl, pid });
   project.provide("smtpUrl", smtpUrl);
   project.provide("mailUrl", mailUrl);
-  project.provide("mariadb", { url: databaseUrl, ownerUrl });
+  const schemaStatements = await describeTemplate(ownerUrl);
+  project.provide("mariadb", { url: databaseUrl, ownerUrl, schemaStatements });
   return app.stop;
 }

@@ -2,10 +2,11 @@ import type { TestProject } from "vitest/node";
 import { throwAwayFolder } from "../../db/server/folders.mjs";
 import { startMailCatcher } from "../../db/server/mail-catcher.mjs";
 import { startMariadb } from "../../db/server/mariadb.mjs";
+import { describeTemplate } from "./template";
 
 declare module "vitest" {
   interface ProvidedContext {
-    mariadb: { url: string; ownerUrl: string };
+    mariadb: { url: string; ownerUrl: string; schemaStatements: string[] };
     smtpUrl: string;
     mailUrl: string;
   }
@@ -15,7 +16,8 @@ declare module "vitest" {
 export default async function startServices(project: TestProject) {
   const { folder, remove } = throwAwayFolder("test");
   const [mariadb, mail] = await Promise.all([startMariadb(folder, { fast: true }), startMailCatcher()]);
-  project.provide("mariadb", { url: mariadb.url, ownerUrl: mariadb.ownerUrl });
+  const schemaStatements = await describeTemplate(mariadb.ownerUrl);
+  project.provide("mariadb", { url: mariadb.url, ownerUrl: mariadb.ownerUrl, schemaStatements });
   project.provide("smtpUrl", mail.smtpUrl);
   project.provide("mailUrl", mail.url);
   return async () => {
