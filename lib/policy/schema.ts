@@ -1,8 +1,10 @@
 import { z } from "zod";
 import { CHANNELS } from "../transactions/codes";
-import { ORDERS } from "./codes";
+import { AT_EXPIRY, ON_HOLD, ORDERS, POLICY_STATES } from "./codes";
 
 const Probability = z.number().min(0).max(1);
+/** Neither 0 nor 1: a line lies somewhere on the axis of evidence. */
+const LineProbability = z.number().min(1e-6).max(0.999999);
 const Minor = z.number().int().min(0).max(Number.MAX_SAFE_INTEGER);
 const Minutes = z
   .number()
@@ -12,17 +14,17 @@ const Minutes = z
 
 /** What a channel can still do with a payment in the hold zone. */
 export const ChannelRule = z.strictObject({
-  onHold: z.enum(["hold", "refuse", "let_go"]),
+  onHold: z.enum(ON_HOLD),
   holdMinutes: Minutes,
-  atExpiry: z.enum(["release", "refuse"]),
+  atExpiry: z.enum(AT_EXPIRY),
 });
 
 export const PolicyTerms = z.strictObject({
   reviewThreshold: z.discriminatedUnion("kind", [
-    z.strictObject({ kind: z.literal("fixed"), probability: Probability }),
+    z.strictObject({ kind: z.literal("fixed"), probability: LineProbability }),
     z.strictObject({ kind: z.literal("capacity"), casesPerDay: z.number().int().min(1).max(1_000_000) }),
   ]),
-  holdThreshold: Probability,
+  holdThreshold: LineProbability,
   /** Prior probability of fraud that an untrained scorer starts from. */
   baseRate: z.number().min(1e-6).max(0.5),
   order: z.enum(ORDERS),
@@ -62,3 +64,66 @@ export const PolicyTerms = z.strictObject({
   ),
 });
 export type PolicyTerms = z.infer<typeof PolicyTerms>;
+
+const Id = z.uuid();
+const Instant = z.iso.datetime();
+const PersonRef = z.strictObject({ id: Id, name: z.string() });
+
+export const ProposeInput = z.strictObject({
+  terms: PolicyTerms,
+  reason: z.string().trim().min(1, "needs a reason").max(2000),
+  /** The newest approved version, whose terms the proposer had before them. */
+  basedOnVersion: z.int().min(1),
+});
+export type ProposeInput = z.infer<typeof ProposeInput>;
+
+export const ApproveInput = z.strictObject({
+  id: Id,
+  /** Moment from which it is in force; at once where it is left out. */
+  effectiveAt: Instant.nullable().default(null),
+});
+export type ApproveInput = z.infer<typeof ApproveInput>;
+
+export const SettleInput = z.strictObject({ id: Id });
+export type SettleInput = z.infer<typeof SettleInput>;
+
+/** One proposal, or the version that it became. People are null where the system acted. */
+export const PolicyRecord = z.strictObject({
+  policyId: Id,
+  version: z.int().nullable(),
+  state: z.enum(POLICY_STATES),
+  terms: PolicyTerms,
+  basedOnVersion: z.int().nullable(),
+  reason: z.string(),
+  proposedBy: PersonRef.nullable(),
+  proposedAt: Instant,
+  settledBy: PersonRef.nullable(),
+  settledAt: Instant.nullable(),
+  effectiveAt: Instant.nullable(),
+});
+export type PolicyRecord = z.infer<typeof PolicyRecord>;
+
+/** Recent arrival scores counted by evidence: bin i holds [i, i + 1) · binDecibans. */
+export const ScoreHistogram = z.strictObject({
+  count: z.int(),
+  days: z.number(),
+  binDecibans: z.number(),
+  bins: z.array(z.strictObject({ bin: z.int(), count: z.int() })),
+});
+export type ScoreHistogram = z.infer<typeof ScoreHistogram>;
+
+export const PolicyView = z.strictObject({
+  inForce: PolicyRecord,
+  /** Where the two lines lie now, in decibans. */
+  reviewDecibans: z.number(),
+  holdDecibans: z.number(),
+  /** Proposals that wait for a second person, oldest first. */
+  pending: z.array(PolicyRecord),
+  /** Everything that was settled, newest first; the first hundred. */
+  history: z.array(PolicyRecord),
+  /** Version a new proposal starts from: the newest approved, in force or about to be. */
+  newestVersion: z.int(),
+  recent: ScoreHistogram,
+  baseCurrency: z.string(),
+});
+export type PolicyView = z.infer<typeof PolicyView>;

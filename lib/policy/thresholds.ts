@@ -9,6 +9,8 @@ import type { PolicyInForce } from "./read";
 import { cutOfRecent, newestScores } from "./recent-scores";
 import type { Thresholds } from "./rules";
 
+/** Newest arrival scores that a cut is taken from. */
+const SCORES_IN_CUT = 20_000;
 /** With fewer scores, a cut would be chance. */
 const FEWEST_SCORES = 200;
 const NEW_SCORES_FOR_A_NEW_CUT = 1_000;
@@ -25,7 +27,7 @@ export async function thresholdsInForce(db: Executor, policy: PolicyInForce, now
   if (wish.kind === "fixed") return withReviewLine(policy, logitOf(wish.probability));
   const cut = await findNewestCut(db, policy.version, now);
   if (cut) return withReviewLine(policy, cut.logit);
-  const recent = await newestScores(db);
+  const recent = await newestScores(db, SCORES_IN_CUT);
   const enough = recent.count >= FEWEST_SCORES;
   return withReviewLine(
     policy,
@@ -47,7 +49,7 @@ export async function refreshCut(
   if (wish.kind === "fixed") return withReviewLine(policy, logitOf(wish.probability));
   const last = await findNewestCut(db, policy.version, now);
   if (last && !(await isStale(db, last, now))) return withReviewLine(policy, last.logit);
-  const recent = await newestScores(db);
+  const recent = await newestScores(db, SCORES_IN_CUT);
   const fromRecent = recent.count >= FEWEST_SCORES;
   const scoreCount = fromRecent ? recent.count : batch.length;
   if (scoreCount < FEWEST_SCORES) return withReviewLine(policy, last?.logit ?? CUT_WITHOUT_SCORES);
