@@ -7,6 +7,7 @@ import { peopleEndpoints } from "./people/endpoints";
 import { platformEndpoints } from "./platform-endpoints";
 import { policyEndpoints } from "./policy/endpoints";
 import { profileEndpoints } from "./profile/endpoints";
+import { trailEndpoints } from "./trail/endpoints";
 import { transactionEndpoints } from "./transactions/endpoints";
 
 /** Every route of the HTTP API: validation, access and the OpenAPI document come from here. */
@@ -15,6 +16,7 @@ export const ENDPOINTS = {
   ...profileEndpoints,
   ...peopleEndpoints,
   ...keyEndpoints,
+  ...trailEndpoints,
   ...transactionEndpoints,
   ...caseEndpoints,
   ...decisionEndpoints,

@@ -11,7 +11,7 @@ import { Notice } from "../ui/notice";
 import { IDLE_MINUTES, useIdle } from "./activity";
 
 /** The session's cookie is renewed this often while the person works. */
-const RENEW_EVERY_MS = 4 * 60_000;
+const RENEW_EVERY_MS = 60_000;
 
 /**
  * Stands over the page when the person was away or the session ended, and asks for the password. What lies beneath
