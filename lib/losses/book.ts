@@ -5,6 +5,7 @@ import { decisions, ledger } from "@/db/schema/cases";
 import { transactions } from "@/db/schema/transactions";
 import type { Typology, Verdict } from "../decisions/codes";
 import type { PolicyTerms } from "../policy/schema";
+import { settleRecoveries } from "./recoveries";
 import { reverseLines, standingOutcomeLines } from "./reverse";
 import { type LedgerLine, ledgerLine, NOTHING_BOOKED } from "./rules";
 
@@ -47,6 +48,7 @@ export async function bookDecision(tx: Tx, booking: DecisionBooking): Promise<Le
     typology: yields ? null : booking.typology,
     detail: { verdict: booking.verdict, paymentState: payment.paymentState, wasPassed },
   });
+  if (!yields) await settleRecoveries(tx, { ...booking, ...payment }, isFraud(booking), booking.bookedAt);
   return line;
 }
 
@@ -84,16 +86,8 @@ export async function bookOutcome(tx: Tx, booking: OutcomeBooking): Promise<Ledg
     typology: booking.typology,
     detail: { verdict: booking.verdict, paymentState: payment.paymentState, wasPassed },
   });
+  await settleRecoveries(tx, { transactionId, ...payment }, isFraud(booking), bookedAt);
   return line;
-}
-
-/** Money that came back on a fraudulent payment, in minor units of the base currency. */
-export async function bookRecovery(
-  tx: Tx,
-  recovery: { outcomeId: string; transactionId: string; recoveredMinor: number; bookedAt: Date },
-): Promise<void> {
-  const { occurredAt } = await paymentOrThrow(tx, recovery.transactionId);
-  await tx.insert(ledger).values({ ...NOTHING_BOOKED, ...recovery, occurredAt });
 }
 
 /**
@@ -112,6 +106,8 @@ export async function reverseBooking(
     .where(and(eq(ledger.decisionId, decisionId), isNull(ledger.reversesId)));
   await reverseLines(tx, rows, bookedAt, keep);
 }
+
+const isFraud = (finding: { verdict: Verdict }) => finding.verdict === "fraudulent";
 
 async function paymentOrThrow(tx: Tx, transactionId: string) {
   const [payment] = await tx

@@ -39,7 +39,8 @@ export async function reverseLines(
   if (reversals.length > 0) await tx.insert(ledger).values(reversals);
 }
 
-async function withoutReversed(tx: Tx, rows: readonly LedgerRow[]): Promise<LedgerRow[]> {
+/** The lines among these that no later line takes back. */
+export async function withoutReversed(tx: Tx, rows: readonly LedgerRow[]): Promise<LedgerRow[]> {
   if (rows.length === 0) return [];
   const taken = await tx
     .select({ id: ledger.reversesId })
