@@ -8,7 +8,7 @@ export type TestDatabase = DatabaseHandle & { url: string; ownerUrl: string };
 
 /**
  * A migrated schema of this test file's own on the run's MariaDB, dropped when the file is done.
- * Call it at the top of a file or in `beforeAll`.
+ * Call it at the top of a file; called in a hook or a test, it has to be closed there.
  */
 export async function testDatabase(): Promise<TestDatabase> {
   const name = `cupel_t_${randomBytes(6).toString("hex")}`;
