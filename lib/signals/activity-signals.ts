@@ -1,0 +1,51 @@
+import { UNIT_MINOR } from "./amount-signals";
+import { ENTITY_KINDS, type EntityKind, WINDOWS } from "./facts";
+import { type Hinge, logScale } from "./scale";
+import { part, plural, roughly, type Signal } from "./signal";
+
+const NEEDED_FIELD: Record<EntityKind, string> = {
+  account: "accountId",
+  card: "cardRef",
+  device: "deviceId",
+  counterparty: "counterpartyId",
+};
+
+/** Typical and high numbers and values by window, 1 h to 30 d: the fixed points of the scales. */
+const TYPICAL_COUNT = [0, 2, 10, 40];
+const HIGH_COUNT = [20, 60, 300, 1_000];
+const TYPICAL_VALUE = [0, 100, 500, 2_000];
+const HIGH_VALUE = [50_000, 100_000, 500_000, 1_000_000];
+
+/** Only the short windows: bursts are what fraud with a stolen card or account looks like. */
+const COUNT_HINGES: Partial<Record<EntityKind, readonly Hinge[]>> = {
+  account: [{ from: 3, to: 10 }],
+  device: [{ from: 3, to: 10 }],
+};
+
+export const activitySignals: readonly Signal[] = ENTITY_KINDS.flatMap((kind) =>
+  WINDOWS.map((window, w): Signal => {
+    return {
+      key: `${kind}_${window.key}`,
+      name: `Payments of the ${kind} in ${window.name}`,
+      sentence: `How many payments, and what value, the same ${kind} had in the ${window.name} before this one.`,
+      needs: [NEEDED_FIELD[kind]],
+      parts: [
+        part(
+          `number of the ${kind}'s payments in ${window.name}`,
+          (facts) => facts.entities[kind]?.counts[w] ?? null,
+          logScale(TYPICAL_COUNT[w] as number, HIGH_COUNT[w] as number),
+          w === 0 ? COUNT_HINGES[kind] : [],
+        ),
+        part(
+          `value of the ${kind}'s payments in ${window.name}`,
+          (facts) => {
+            const minor = facts.entities[kind]?.valuesMinor[w];
+            return minor === undefined ? null : minor / UNIT_MINOR;
+          },
+          logScale(TYPICAL_VALUE[w] as number, HIGH_VALUE[w] as number),
+        ),
+      ],
+      reading: ([count = 0, value = 0]) => `${plural(count, "payment")}, about ${roughly(value)} in all`,
+    };
+  }),
+);
