@@ -83,7 +83,8 @@ export function deskReducer(state: DeskState, event: DeskEvent): DeskState {
       if (state.ready.some((one) => one.caseId === event.case.caseId)) return state;
       return { ...withDraft(state, event.case), ready: [...state.ready, event.case], dry: false };
     case "ran_dry":
-      return { ...state, dry: true };
+      // Only what was put back is left, if anything: it may come again.
+      return { ...state, dry: true, putBack: [] };
     case "may_have_more":
       return { ...state, dry: false };
     case "taken_in_hand":

@@ -1,0 +1,10 @@
+import type { Metadata } from "next";
+import { Desk } from "@/components/desk/desk";
+import { pageContext } from "@/lib/auth/page-context";
+
+export const metadata: Metadata = { title: "Desk" };
+
+export default async function DeskPage() {
+  await pageContext("/desk");
+  return <Desk />;
+}

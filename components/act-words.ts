@@ -1,0 +1,25 @@
+/** Acts of the trail as people read them. An act not listed here reads as its code, in plain words. */
+const ACT_WORDS: Readonly<Record<string, string>> = {
+  "case.opened": "Case opened",
+  "case.claimed": "Taken in hand",
+  "case.released": "Put back",
+  "case.lease_expired": "Claim ran out",
+  "case.assigned": "Assigned",
+  "case.escalated": "Escalated",
+  "case.waiting": "Set aside",
+  "case.returned": "Came back",
+  "case.noted": "Note written",
+  "case.decided": "Decided",
+  "case.lapsed": "Lapsed, undecided",
+  "decision.undone": "Decision taken back",
+  "decision.corrected": "Decision corrected",
+  "transaction.received": "Payment received",
+  "transaction.scored": "Payment scored",
+};
+
+export function actWords(act: string): string {
+  const words = ACT_WORDS[act];
+  if (words) return words;
+  const plain = act.replace(/[._]/g, " ");
+  return plain.charAt(0).toUpperCase() + plain.slice(1);
+}

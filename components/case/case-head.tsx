@@ -1,0 +1,51 @@
+import type { Ref } from "react";
+import type { CaseView } from "@/lib/cases/schema";
+import { Amount } from "../ui/amount";
+import { Time } from "../ui/time";
+import { TimeLeft } from "../ui/time-left";
+import { CASE_KIND_WORDS, CHANNEL_WORDS, PAYMENT_STATE_WORDS, ZONE_WORDS } from "../words";
+
+/** Words for the counterparty: its name where the sender gave one. */
+export function counterpartyOf(transaction: CaseView["transaction"]): string {
+  return transaction.counterpartyName ?? transaction.counterpartyId;
+}
+
+type CaseHeadProps = { view: CaseView; headingRef?: Ref<HTMLHeadingElement>; level?: 1 | 2 };
+
+/** Number, amount and parties of the case, and how long there is. The heading takes the focus when the case comes to hand. */
+export function CaseHead({ view, headingRef, level = 2 }: CaseHeadProps) {
+  const { transaction } = view;
+  const Heading = level === 1 ? "h1" : "h2";
+  return (
+    <div>
+      <Heading
+        ref={headingRef}
+        tabIndex={-1}
+        className="flex flex-wrap items-baseline gap-x-3 text-title font-strong outline-offset-4"
+      >
+        <span>Case {view.number}</span>
+        <span className="text-figure">
+          <Amount amount={transaction.amount} currency={transaction.currency} />
+        </span>
+        <span className="font-plain">
+          {transaction.direction === "incoming" ? "from" : "to"} {counterpartyOf(transaction)}
+        </span>
+      </Heading>
+      <p className="flex flex-wrap gap-x-4 text-small text-soft">
+        <span>{CHANNEL_WORDS[transaction.channel]}</span>
+        <Time at={transaction.occurredAt} />
+        <span>{ZONE_WORDS[view.zone]}</span>
+        {view.kind !== "alert" && <span>{CASE_KIND_WORDS[view.kind]}</span>}
+        <span>
+          Payment {PAYMENT_STATE_WORDS[transaction.paymentState].toLowerCase()}
+          {transaction.holdExpiresAt && (
+            <>
+              , <TimeLeft until={transaction.holdExpiresAt} before="hold ends in" after="hold ended" />
+            </>
+          )}
+        </span>
+        <TimeLeft until={view.dueAt} before="Due in" after="Overdue by" />
+      </p>
+    </div>
+  );
+}

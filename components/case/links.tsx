@@ -1,0 +1,124 @@
+"use client";
+import Link from "next/link";
+import type { EvidenceView, LinkedCase } from "@/lib/cases/schema";
+import { Amount } from "../ui/amount";
+import { Decibans, percentOf } from "../ui/probability";
+import { Time } from "../ui/time";
+import { CASE_STATE_WORDS, CHANNEL_WORDS, VERDICT_WORDS } from "../words";
+import { type LinkGroup, linkGroups } from "./link-groups";
+
+const BY_WORDS: Record<LinkedCase["by"], string> = {
+  account: "Same account",
+  card: "Same card",
+  device: "Same device",
+  counterparty: "Same counterparty",
+};
+
+export type Ticks = { ticked: ReadonlySet<string>; onTick: (transactionId: string, ticked: boolean) => void };
+
+type LinksProps = {
+  links: readonly LinkedCase[];
+  /** Null while the score is hidden: then no link shows one either. */
+  evidence: EvidenceView | null;
+  /** Where payments of the account can be decided in the same act. */
+  ticks?: Ticks;
+};
+
+/** Other payments of the same account, card, device or counterparty, under the signals that look at them. */
+export function Links({ links, evidence, ticks }: LinksProps) {
+  const groups = linkGroups(links, evidence);
+  if (groups.length === 0)
+    return <p className="text-soft">Nothing else shares an account, card, device or counterparty with it.</p>;
+  return groups.map((group) => (
+    <section key={group.by} aria-label={BY_WORDS[group.by]} className="mb-4 last:mb-0">
+      <h4 className="mb-1 flex flex-wrap items-baseline gap-x-3 text-small">
+        <span className="font-strong">{BY_WORDS[group.by]}</span>
+        {group.signals.slice(0, 3).map((signal) => (
+          <span key={signal.key} className="text-soft">
+            {signal.name} <Decibans decibans={signal.decibans} />
+          </span>
+        ))}
+      </h4>
+      <LinkTable group={group} showScore={evidence !== null} {...(ticks && { ticks })} />
+    </section>
+  ));
+}
+
+function LinkTable({ group, showScore, ticks }: { group: LinkGroup; showScore: boolean; ticks?: Ticks }) {
+  return (
+    <div className="overflow-x-auto">
+      <table className="w-full text-left text-small">
+        <caption className="sr-only">{BY_WORDS[group.by]}</caption>
+        <thead className="sr-only">
+          <tr>
+            {ticks && <th scope="col">Decide together</th>}
+            <th scope="col">Case</th>
+            <th scope="col">Time</th>
+            <th scope="col">Amount</th>
+            <th scope="col">Channel</th>
+            <th scope="col">Finding</th>
+            {showScore && <th scope="col">Fraud, %</th>}
+          </tr>
+        </thead>
+        <tbody>
+          {group.links.map((link) => (
+            <LinkRow key={link.transactionId} link={link} showScore={showScore} {...(ticks && { ticks })} />
+          ))}
+        </tbody>
+      </table>
+    </div>
+  );
+}
+
+function LinkRow({ link, showScore, ticks }: { link: LinkedCase; showScore: boolean; ticks?: Ticks }) {
+  const decidable =
+    link.together && link.verdict === null && link.state !== "decided" && link.state !== "lapsed";
+  const name = link.number === null ? link.externalId : `Case ${link.number}`;
+  return (
+    <tr className="border-t border-rule">
+      {ticks && (
+        <td className="w-7 py-1">
+          {decidable && (
+            <input
+              type="checkbox"
+              aria-label={`Decide ${name} together with this case`}
+              checked={ticks.ticked.has(link.transactionId)}
+              onChange={(event) => ticks.onTick(link.transactionId, event.target.checked)}
+              className="block size-4.5 accent-accent"
+            />
+          )}
+        </td>
+      )}
+      <th scope="row" className="py-1 pr-3 font-plain">
+        {link.caseId ? (
+          <Link href={`/cases/${link.caseId}`} className="underline decoration-edge underline-offset-2">
+            {name}
+          </Link>
+        ) : (
+          <span className="figures text-soft">{name}</span>
+        )}
+      </th>
+      <td className="py-1 pr-3">
+        <Time at={link.occurredAt} as="short" />
+      </td>
+      <td className="py-1 pr-3 text-right">
+        <Amount amount={link.amount} currency={link.currency} aligned />
+      </td>
+      <td className="py-1 pr-3">{CHANNEL_WORDS[link.channel]}</td>
+      <td className="py-1 pr-3">{findingOf(link)}</td>
+      {showScore && <td className="figures py-1 text-right">{percentOf(link.probability)}</td>}
+    </tr>
+  );
+}
+
+function findingOf(link: LinkedCase) {
+  if (link.verdict === "fraudulent") {
+    return <span className="font-strong text-ochre-ink">{VERDICT_WORDS.fraudulent}</span>;
+  }
+  if (link.verdict !== null) return <span className="text-verdigris-ink">{VERDICT_WORDS[link.verdict]}</span>;
+  return (
+    <span className="text-soft">
+      {link.state === null ? "Passed, no case" : CASE_STATE_WORDS[link.state]}
+    </span>
+  );
+}

@@ -1,0 +1,149 @@
+"use client";
+import { useCallback, useEffect, useReducer, useRef } from "react";
+import type { CaseView } from "@/lib/cases/schema";
+import { newId } from "@/lib/new-id";
+import { ApiProblem, api } from "../api";
+import { actLine } from "./act-line";
+import {
+  type Act,
+  type DeskEvent,
+  type DeskState,
+  deskReducer,
+  EMPTY_DESK,
+  KEPT_READY,
+  type Sent,
+} from "./desk-state";
+import { movedLine } from "./moved-line";
+import type { Say } from "./quiet-line";
+import { claimAndRead, deliver, problemWords, readCase, stillMine, takeNext } from "./traffic";
+import { useDrafts } from "./use-drafts";
+import { useLeases } from "./use-leases";
+
+export type Desk = {
+  state: DeskState;
+  hand: CaseView | null;
+  commit: (act: Act) => void;
+  takeInHand: (caseId: string, name: string) => void;
+  putBack: () => void;
+  undo: (sent: Sent) => void;
+  typeNote: (caseId: string, note: string) => void;
+  dismiss: (sentId: string) => void;
+  /** A case changed somewhere else: read it again if it is on this Desk. */
+  heardOf: (caseId: string) => void;
+  /** There may be cases again after the server had none. */
+  askAgain: () => void;
+};
+
+/** The Desk's cases and what is on its way to the server. `onMoved` is told when the ranking has changed by own doing. */
+export function useDesk(say: Say, onMoved: () => void): Desk {
+  const [state, dispatch] = useReducer(deskReducer, EMPTY_DESK);
+  const latest = useRef(state);
+  useEffect(() => {
+    latest.current = state;
+  }, [state]);
+  useSupply(state, dispatch, say);
+  const keepDraft = useDrafts(state, say);
+  useLeases(state, dispatch, keepDraft, say);
+
+  const send = useCallback(
+    async (sent: Sent) => {
+      const name = `Case ${sent.case.number}`;
+      try {
+        const answer = await deliver(sent);
+        dispatch({ kind: "accepted", sentId: sent.sentId, undoUntil: answer?.undoUntil ?? null });
+        const moved = answer ? ` ${movedLine(answer.moved)}` : "";
+        say(`${name} is ${actLine(sent.act)}.${moved}`);
+        onMoved();
+        for (const ready of latest.current.ready) void readAgain(ready.caseId, dispatch);
+      } catch (error) {
+        const problem = problemWords(error);
+        const back = await stillMine(sent);
+        dispatch({ kind: "refused", sentId: sent.sentId, problem, stillMine: back });
+        say(`${name} is not ${actLine(sent.act)}: ${problem}.${back ? " It is back in hand." : ""}`, true);
+      }
+    },
+    [say, onMoved],
+  );
+
+  const commit = (act: Act) => {
+    const [hand] = state.ready;
+    if (!hand) return;
+    const sentId = newId();
+    dispatch({ kind: "committed", sentId, act });
+    void send({ sentId, case: hand, act, state: "sending", undoUntil: null, problem: null });
+  };
+
+  const takeInHand = (caseId: string, name: string) => {
+    const ready = state.ready.find((one) => one.caseId === caseId);
+    if (ready) return dispatch({ kind: "taken_in_hand", case: ready });
+    claimAndRead(caseId).then(
+      (found) => dispatch({ kind: "taken_in_hand", case: found }),
+      (error: unknown) => say(`${name} cannot be taken in hand: ${problemWords(error)}.`, true),
+    );
+  };
+
+  const undo = (sent: Sent) => {
+    const name = `Case ${sent.case.number}`;
+    const takenBack = async () => {
+      const answer = await api("POST /api/cases/{id}/undo", { id: sent.case.caseId });
+      dispatch({ kind: "undone", sentId: sent.sentId });
+      dispatch({ kind: "taken_in_hand", case: await readCase(sent.case.caseId) });
+      say(`The decision on case ${sent.case.number} is taken back. ${movedLine(answer?.moved ?? null)}`);
+      onMoved();
+    };
+    takenBack().catch((error: unknown) =>
+      say(`The decision on ${name.toLowerCase()} still stands: ${problemWords(error)}.`, true),
+    );
+  };
+
+  return {
+    state,
+    hand: state.ready[0] ?? null,
+    commit,
+    takeInHand,
+    putBack: () => dispatch({ kind: "put_back" }),
+    undo,
+    typeNote: (caseId, note) => dispatch({ kind: "note_typed", caseId, note }),
+    dismiss: (sentId) => dispatch({ kind: "dismissed", sentId }),
+    heardOf: useCallback((caseId: string) => {
+      if (latest.current.ready.some((one) => one.caseId === caseId)) void readAgain(caseId, dispatch);
+    }, []),
+    askAgain: useCallback(() => dispatch({ kind: "may_have_more" }), []),
+  };
+}
+
+type Dispatch = (event: DeskEvent) => void;
+
+/** Keeps one case in hand and one claimed and loaded at the elbow, so that a key press need not wait for the server. */
+function useSupply(state: DeskState, dispatch: Dispatch, say: Say) {
+  const asking = useRef(false);
+  const { ready, sent, putBack, dry } = state;
+  const wanted = ready.length < KEPT_READY && !dry;
+  useEffect(() => {
+    if (!wanted || asking.current) return;
+    asking.current = true;
+    const onTheirWay = sent.filter((one) => one.state === "sending").map((one) => one.case.caseId);
+    const notThese = [...putBack, ...onTheirWay, ...ready.map((one) => one.caseId)];
+    takeNext(notThese).then(
+      (found) => {
+        asking.current = false;
+        dispatch(found ? { kind: "served", case: found } : { kind: "ran_dry" });
+      },
+      (error: unknown) => {
+        asking.current = false;
+        dispatch({ kind: "ran_dry" });
+        say(`No next case: ${problemWords(error)}.`, true);
+      },
+    );
+  }, [wanted, ready, sent, putBack, dispatch, say]);
+}
+
+/** Brings a case on the Desk up to date; where it has gone from view it is dropped. */
+async function readAgain(caseId: string, dispatch: Dispatch): Promise<void> {
+  try {
+    dispatch({ kind: "read_again", case: await readCase(caseId) });
+  } catch (error) {
+    const gone = error instanceof ApiProblem && (error.status === 403 || error.status === 404);
+    if (gone) dispatch({ kind: "lost", caseId });
+  }
+}
