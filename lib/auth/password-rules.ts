@@ -9,6 +9,8 @@ export const PASSWORD_MAX = 256;
 const LEAST_GUESSES_LOG10 = 9;
 /** The estimate's cost grows with the length; what is common shows within this many characters. */
 const ESTIMATED_LENGTH = 64;
+/** What must be left of a password without the person's own words. */
+const LEAST_OWN_CHARACTERS = 8;
 
 const estimator = new ZxcvbnFactory({ dictionary, graphs: adjacencyGraphs });
 
@@ -20,10 +22,22 @@ export function passwordProblem(password: string, own: readonly string[]): strin
   const length = [...password].length;
   if (length < PASSWORD_MIN) return `needs at least ${PASSWORD_MIN} characters; a few words make a good one`;
   if (length > PASSWORD_MAX) return `has more than ${PASSWORD_MAX} characters`;
-  const words = ["cupel", ...own.flatMap((word) => [word, ...word.split(/[^\p{L}\p{N}]+/u)])];
-  const known = words.filter((word) => word.length >= 3).map((word) => word.toLowerCase());
+  const known = wordsOf(own);
   const { guessesLog10 } = estimator.check(password.slice(0, ESTIMATED_LENGTH), known);
-  return guessesLog10 < LEAST_GUESSES_LOG10
-    ? "is too easy to guess: it repeats or joins common passwords, keys in a row, or your own name"
-    : null;
+  if (guessesLog10 < LEAST_GUESSES_LOG10 || isMadeOf(known, password)) {
+    return "is too easy to guess: it repeats or joins common passwords, keys in a row, or your own name";
+  }
+  return null;
+}
+
+function wordsOf(own: readonly string[]): string[] {
+  const words = ["cupel", ...own.flatMap((word) => [word, ...word.split(/[^\p{L}\p{N}]+/u)])];
+  return words.filter((word) => word.length >= 3).map((word) => word.toLowerCase());
+}
+
+/** Whether little is left once the known words are taken out. */
+function isMadeOf(known: readonly string[], password: string): boolean {
+  const longestFirst = known.toSorted((a, b) => b.length - a.length);
+  const rest = longestFirst.reduce((text, word) => text.replaceAll(word, ""), password.toLowerCase());
+  return [...rest].length < LEAST_OWN_CHARACTERS;
 }
