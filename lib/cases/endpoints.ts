@@ -18,7 +18,7 @@ import {
 } from "./schema";
 
 const Nothing = z.strictObject({});
-const asked = (summary: string, input: z.ZodObject) => ({
+const asked = <Input extends z.ZodObject>(summary: string, input: Input) => ({
   summary,
   may: "desk.work" as const,
   input,

@@ -1,0 +1,52 @@
+import { natsToDecibans, probabilityOf } from "../decibans";
+import type { Evidence } from "../learning/evidence";
+import type { Thresholds } from "../policy/rules";
+import { SIGNAL_SET_VERSION } from "../signals/catalogue";
+import { everyPaymentNats, groupContributions } from "../signals/group";
+import type { EvidenceView } from "./schema";
+
+export type Scored = {
+  evidence: Evidence;
+  vector: Float64Array;
+  missing: Uint8Array;
+  signalSetVersion: number;
+};
+
+/**
+ * Evidence as people read it, in decibans: base rate + one line per signal + what is held back for lack of experience
+ * = total. What the scorer adds to every payment alike counts towards the base rate.
+ */
+export function evidenceView(
+  scored: Scored,
+  thresholds: Thresholds,
+  versions: { scorerVersion: number; policyVersion: number },
+): EvidenceView {
+  const { evidence } = scored;
+  const common = isOfThisSet(scored) ? everyPaymentNats(evidence.contributions) : 0;
+  return {
+    probability: probabilityOf(evidence.logit),
+    totalDecibans: natsToDecibans(evidence.logit),
+    baseRateDecibans: natsToDecibans(evidence.offset + common),
+    signals: isOfThisSet(scored)
+      ? groupContributions(evidence.contributions, scored.vector, scored.missing)
+      : [earlierSignals(evidence)],
+    littleExperienceDecibans: natsToDecibans(evidence.pull),
+    reviewDecibans: natsToDecibans(thresholds.reviewLogit),
+    holdDecibans: natsToDecibans(thresholds.holdLogit),
+    ...versions,
+  };
+}
+
+const isOfThisSet = ({ signalSetVersion }: Scored) => signalSetVersion === SIGNAL_SET_VERSION;
+
+/** The catalogue of another version cannot name its coordinates; their sum still belongs on the balance. */
+function earlierSignals({ contributions }: Evidence) {
+  return {
+    key: "earlier_signals",
+    name: "Signals of an earlier catalogue",
+    reading: "scored before the signals changed",
+    explanation: "The sum of all signals as they were defined when this was scored.",
+    decibans: natsToDecibans(contributions.reduce((sum, nats) => sum + nats, 0)),
+    available: true,
+  };
+}

@@ -1,0 +1,49 @@
+import "server-only";
+import { eq } from "drizzle-orm";
+import type { Executor } from "@/db/client";
+import { bytesToVector } from "@/db/columns";
+import type { decisions } from "@/db/schema/cases";
+import { scores } from "@/db/schema/transactions";
+import { evidenceOf, unpackEvidence } from "../learning/evidence";
+import { readScorerInUse } from "../learning/held-scorer";
+import { policyInForce } from "../policy/read";
+import { thresholdsInForce } from "../policy/thresholds";
+import { evidenceView } from "./evidence-view";
+import type { EvidenceView } from "./schema";
+
+type DecisionRow = Pick<
+  typeof decisions.$inferSelect,
+  "evidence" | "scoreId" | "scorerVersionBefore" | "policyVersion" | "decidedAt"
+>;
+
+/** How the evidence stands now. */
+export async function readEvidenceNow(db: Executor, scoreId: number, now: Date): Promise<EvidenceView> {
+  const score = await readScoreOrThrow(db, scoreId);
+  const { scorer, version } = await readScorerInUse(db);
+  const policy = await policyInForce(db, now);
+  return evidenceView(
+    { ...score, evidence: evidenceOf(scorer, score.vector) },
+    await thresholdsInForce(db, policy, now),
+    { scorerVersion: version, policyVersion: policy.version },
+  );
+}
+
+/** The evidence that was before the person who decided, with the lines as they lay then. */
+export async function readEvidenceShown(db: Executor, decision: DecisionRow): Promise<EvidenceView> {
+  const score = await readScoreOrThrow(db, decision.scoreId);
+  const policy = await policyInForce(db, decision.decidedAt);
+  return evidenceView(
+    { ...score, evidence: unpackEvidence(bytesToVector(decision.evidence)) },
+    await thresholdsInForce(db, policy, decision.decidedAt),
+    { scorerVersion: decision.scorerVersionBefore, policyVersion: decision.policyVersion },
+  );
+}
+
+async function readScoreOrThrow(db: Executor, scoreId: number) {
+  const [row] = await db
+    .select({ vector: scores.vector, missing: scores.missing, signalSetVersion: scores.signalSetVersion })
+    .from(scores)
+    .where(eq(scores.id, scoreId));
+  if (!row) throw new Error(`Score ${scoreId} is not there`);
+  return { ...row, vector: bytesToVector(row.vector), missing: new Uint8Array(row.missing) };
+}

@@ -1,0 +1,30 @@
+import "server-only";
+import { demand } from "../auth/demand";
+import type { Context } from "../context";
+import { natsToDecibans } from "../decibans";
+import { rankingOf } from "./ranking/ranking";
+import type { RugView } from "./schema";
+import { maySee, readerOf } from "./visibility";
+
+/** Finer than a tick on any screen is wide, and a third of the bytes. */
+const TICKS_PER_DECIBAN = 100;
+
+/** Evidence of every waiting case this person may see, in the policy's order. */
+export async function readRug(ctx: Context): Promise<RugView> {
+  demand(ctx, "cases.read");
+  const reader = readerOf(ctx.actor);
+  return rankingOf(ctx.db).read(ctx.now(), (view) => {
+    const evidenceDecibans: number[] = [];
+    for (let index = 0; index < view.size; index++) {
+      if (!maySee(view.caseAt(index), reader)) continue;
+      const decibans = natsToDecibans(view.logitAt(index));
+      evidenceDecibans.push(Math.round(decibans * TICKS_PER_DECIBAN) / TICKS_PER_DECIBAN);
+    }
+    return {
+      version: view.version,
+      reviewDecibans: natsToDecibans(view.thresholds.reviewLogit),
+      holdDecibans: natsToDecibans(view.thresholds.holdLogit),
+      evidenceDecibans,
+    };
+  });
+}
