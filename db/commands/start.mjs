@@ -39,8 +39,8 @@ async function start(session) {
   if (!(await isPortFree(port))) throw new Refusal(`Port ${port} is taken. Set PORT to another one.`);
 
   const fresh = !dev && isBuildFresh(env);
-  await ensurePackages({ forBuilding: !fresh, signal });
   if (!env.DATABASE_URL) await ensureMariadb();
+  await ensurePackages({ forBuilding: !fresh, signal });
 
   const { url, ownerUrl, mariadb } = await openDatabase({
     folder,

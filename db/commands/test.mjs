@@ -15,9 +15,9 @@ import { runSession } from "../server/session.mjs";
  */
 async function test({ signal, onEnd }) {
   checkNode();
-  await ensurePackages({ forBuilding: true, signal });
   await ensureMariadb();
   await ensureChromium();
+  await ensurePackages({ forBuilding: true, signal });
   const { folder, remove } = throwAwayFolder("check");
   onEnd("The check's folder", remove);
   const place = { env: checkEnvironment(process.env), folder, signal };

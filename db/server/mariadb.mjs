@@ -7,6 +7,7 @@ import {
   readFileSync,
   renameSync,
   rmSync,
+  statSync,
   writeFileSync,
 } from "node:fs";
 import { connect } from "node:net";
@@ -178,6 +179,7 @@ function socketPath(database) {
   const key = createHash("sha256").update(database).digest("hex").slice(0, 12);
   const folder = path.join(tmpdir(), `cupel-socket-${process.getuid?.() ?? 0}`);
   mkdirSync(folder, { recursive: true, mode: 0o700 });
+  if (statSync(folder).uid !== process.getuid?.()) throw new Refusal(`${folder} belongs to somebody else.`);
   return path.join(folder, `${key}.sock`);
 }
 
