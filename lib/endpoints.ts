@@ -1,6 +1,7 @@
 import { caseEndpoints } from "./cases/endpoints";
 import { decisionEndpoints } from "./decisions/endpoints";
 import type { EndpointTable } from "./endpoint";
+import { floorEndpoints } from "./floor/endpoints";
 import { keyEndpoints } from "./keys/endpoints";
 import { outcomeEndpoints } from "./outcomes/endpoints";
 import { peopleEndpoints } from "./people/endpoints";
@@ -20,6 +21,7 @@ export const ENDPOINTS = {
   ...transactionEndpoints,
   ...caseEndpoints,
   ...decisionEndpoints,
+  ...floorEndpoints,
   ...policyEndpoints,
   ...outcomeEndpoints,
 } as const satisfies EndpointTable;

@@ -1,0 +1,4 @@
+import { readFloor } from "@/lib/floor/overview";
+import { route } from "@/lib/http";
+
+export const GET = route("GET /api/floor", readFloor);
