@@ -69,7 +69,7 @@ export async function startMariadb(folder, { fast = false, signal, onSpawn } = {
   const port = await rememberedPort(path.join(folder, "mariadb.port"));
   const log = path.join(folder, "mariadb.log");
   const output = openSync(log, "a", 0o600);
-  const service = startService("MariaDB", programs.server, serverOptions({ database, port, fast }), {
+  const service = startService("MariaDB", programs.server, serverOptions({ folder, database, port, fast }), {
     output,
     stopWaitMs: 90_000,
   });
@@ -109,6 +109,7 @@ async function initialise(install, folder, database) {
       "--auth-root-authentication-method=normal",
       "--skip-test-db",
       "--skip-name-resolve",
+      `--tmpdir=${temporaryFolder(folder)}`,
     ];
     const { code, output } = await runToEnd(
       install,
@@ -121,6 +122,16 @@ async function initialise(install, folder, database) {
   } finally {
     rmSync(accounts, { force: true });
   }
+}
+
+/**
+ * A starting server deletes the temporary tables it finds, so that two must not share the system's folder.
+ * @param {string} folder the data folder
+ */
+function temporaryFolder(folder) {
+  const temporary = path.join(folder, "mariadb-tmp");
+  mkdirSync(temporary, { recursive: true });
+  return temporary;
 }
 
 /**
@@ -145,8 +156,8 @@ function asRoot() {
   return process.getuid?.() === 0 ? ["--user=root"] : [];
 }
 
-/** @param {{ database: string, port: number, fast: boolean }} options */
-function serverOptions({ database, port, fast }) {
+/** @param {{ folder: string, database: string, port: number, fast: boolean }} options */
+function serverOptions({ folder, database, port, fast }) {
   const durability = fast
     ? ["--innodb-flush-log-at-trx-commit=0", "--skip-innodb-doublewrite", "--innodb-flush-method=nosync"]
     : ["--innodb-flush-log-at-trx-commit=1"];
@@ -154,6 +165,7 @@ function serverOptions({ database, port, fast }) {
     "--no-defaults",
     ...asRoot(),
     `--datadir=${database}`,
+    `--tmpdir=${temporaryFolder(folder)}`,
     `--socket=${socketPath(database)}`,
     `--port=${port}`,
     "--bind-address=127.0.0.1",
