@@ -9,6 +9,7 @@ import { startMailCatcher } from "../server/mail-catcher.mjs";
 import { ensureMariadb } from "../server/mariadb.mjs";
 import { occupy } from "../server/occupancy.mjs";
 import { checkNode, ensurePackages } from "../server/packages.mjs";
+import { readPeople } from "../server/people.mjs";
 import { isPortFree } from "../server/ports.mjs";
 import { Refusal, runCommand } from "../server/refusal.mjs";
 import { runSession } from "../server/session.mjs";
@@ -66,7 +67,7 @@ async function start(session) {
   occupancy.addChild(app);
   await untilLive(app, appEnv, signal);
   occupancy.note({ appUrl: appEnv.APP_URL, smtpUrl, mailUrl: mail?.url });
-  printWelcome({ appUrl: appEnv.APP_URL ?? "", mailUrl: mail?.url, demo: appEnv.CUPEL_DEMO === "1" });
+  printWelcome({ appUrl: appEnv.APP_URL ?? "", mailUrl: mail?.url, people: await readPeople(url) });
 
   await session.untilStopped();
   console.log("\nStopping …");

@@ -1,6 +1,7 @@
 import { existsSync, rmSync, writeFileSync } from "node:fs";
 import path from "node:path";
 import { startMariadb } from "./mariadb.mjs";
+import { readPeople } from "./people.mjs";
 import { Refusal } from "./refusal.mjs";
 import { runScript } from "./scripts.mjs";
 
@@ -61,9 +62,9 @@ export async function migrate(env, ownerUrl, signal) {
  */
 export async function ensureDemoData({ folder, env, embedded, signal }) {
   if (env.CUPEL_DEMO !== "1") return;
-  const people = await countPeople(env.DATABASE_URL ?? "");
-  if (people > 0) {
-    console.log(`Demo data: nothing made, ${people} people are in the database already.`);
+  const people = await readPeople(env.DATABASE_URL ?? "");
+  if (people.size > 0) {
+    console.log(`Demo data: nothing made, ${people.size} people are in the database already.`);
     return;
   }
   console.log("Making the demo data …");
@@ -71,16 +72,4 @@ export async function ensureDemoData({ folder, env, embedded, signal }) {
   const code = await runScript("db/demo/seed.ts", [], env, signal);
   if (code !== 0) throw new Refusal("The demo data was not made; the reason is above.");
   rmSync(demoMark(folder), { force: true });
-}
-
-/** @param {string} url */
-async function countPeople(url) {
-  const { createConnection } = await import("mysql2/promise");
-  const connection = await createConnection(url);
-  try {
-    const [rows] = await connection.query("SELECT COUNT(*) AS n FROM people");
-    return Number(/** @type {{ n: number }[]} */ (rows)[0]?.n);
-  } finally {
-    await connection.end();
-  }
 }
