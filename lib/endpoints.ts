@@ -1,3 +1,4 @@
+import { auditEndpoints } from "./audit/endpoints";
 import { caseEndpoints } from "./cases/endpoints";
 import { decisionEndpoints } from "./decisions/endpoints";
 import type { EndpointTable } from "./endpoint";
@@ -18,6 +19,7 @@ export const ENDPOINTS = {
   ...peopleEndpoints,
   ...keyEndpoints,
   ...trailEndpoints,
+  ...auditEndpoints,
   ...transactionEndpoints,
   ...caseEndpoints,
   ...decisionEndpoints,

@@ -134,7 +134,7 @@ const instant = (date: Date | null) => date?.toISOString() ?? null;
 
 const personRef = (id: string | null, name: string | null) => (id && name ? { id, name } : null);
 
-function decisionView({ decision, name }: Verdict): z.infer<typeof DecisionView> {
+export function decisionView({ decision, name }: Verdict): z.infer<typeof DecisionView> {
   const { id, kind, personId, verdict, typology, confidence, reason } = decision;
   return {
     decisionId: id,

@@ -14,7 +14,7 @@ export function termChanges(before: PolicyTerms, after: PolicyTerms): TermChange
     .filter(({ from, to }) => from !== to);
 }
 
-function leavesOf(value: object, prefix = ""): [string, Leaf][] {
+export function leavesOf(value: object, prefix = ""): [string, Leaf][] {
   return Object.entries(value).flatMap(([key, inner]): [string, Leaf][] => {
     const path = prefix ? `${prefix}.${key}` : key;
     return typeof inner === "object" && inner !== null ? leavesOf(inner, path) : [[path, inner as Leaf]];
