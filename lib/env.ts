@@ -5,6 +5,8 @@ const Environment = z.object({
   CUPEL_DATA_DIR: z.string().min(1).default(".data"),
   DATABASE_URL: z.url({ protocol: /^(mysql|mariadb)$/ }),
   SMTP_URL: z.url({ protocol: /^smtps?$/ }),
+  /** Sender of every message; without it an address at the host of APP_URL. */
+  MAIL_FROM: z.email().optional(),
   AUTH_SECRET: z.string().min(32, "needs at least 32 characters"),
   APP_URL: z.url({ protocol: /^https?$/ }).default("http://localhost:3000"),
   CUPEL_DEMO: z.enum(["0", "1"]).default("0"),
