@@ -1,8 +1,9 @@
 import { drizzle, type MySql2Database } from "drizzle-orm/mysql2";
 import { createPool, type Pool } from "mysql2/promise";
-import * as schema from "./schema/index.ts";
+import * as schema from "./schema/index";
 
-export type Database = MySql2Database<typeof schema>;
+/** The pool beside it is for the one read that is too large for a query builder: history signals. */
+export type Database = MySql2Database<typeof schema> & { $client: Pool };
 export type Tx = Parameters<Parameters<Database["transaction"]>[0]>[0];
 /** Where a read may run: on its own or inside somebody's transaction. */
 export type Executor = Database | Tx;
