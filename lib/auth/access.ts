@@ -19,7 +19,7 @@ export const CAPABILITIES = {
   "policy.propose": { roles: ["supervisor"], scope: "policy:write" },
   "policy.approve": { roles: ["supervisor", "risk_manager"], scope: "policy:write" },
   "scorer.read": { roles: ["supervisor", "risk_manager", "auditor"], scope: "reports:read" },
-  "losses.read": { roles: ["reviewer", "supervisor", "risk_manager", "auditor"], scope: "reports:read" },
+  "losses.read": { roles: ["supervisor", "risk_manager", "auditor"], scope: "reports:read" },
   "summary.manage": { roles: ["risk_manager"] },
   "trail.own": { roles: ["reviewer", "supervisor", "risk_manager", "auditor"] },
   "trail.read": { roles: ["supervisor", "risk_manager", "auditor"], scope: "reports:read" },

@@ -1,6 +1,6 @@
 import "server-only";
 import { headers } from "next/headers";
-import { redirect, forbidden as renderForbidden } from "next/navigation";
+import { notFound, redirect, forbidden as renderForbidden } from "next/navigation";
 import { cache } from "react";
 import { sharedDatabase } from "@/db/client";
 import type { Context, PersonActor } from "../context";
@@ -41,3 +41,14 @@ export const signedInContext = cache(async (): Promise<PageContext | null> => {
     throw error;
   }
 });
+
+/** What a page reads: a refusal of the read becomes the page's 404 or 403. */
+export async function forPage<T>(reading: Promise<T>): Promise<T> {
+  try {
+    return await reading;
+  } catch (error) {
+    if (error instanceof KnownError && error.code === "not_found") notFound();
+    if (error instanceof KnownError && error.code === "forbidden") renderForbidden();
+    throw error;
+  }
+}
