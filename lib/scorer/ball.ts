@@ -2,6 +2,8 @@ import { factorise, solve } from "./cholesky";
 import { addToDiagonal, multiply } from "./triangle";
 import { dot, lengthOf } from "./vector";
 
+const LENGTH_TOLERANCE = 1e-9;
+
 /** Scales a vector longer than the bound down to it, in place. */
 export function projectOntoBall(mean: Float64Array, bound: number): void {
   const length = lengthOf(mean);
@@ -13,7 +15,8 @@ export function projectOntoBall(mean: Float64Array, bound: number): void {
  * Moves `mean` to the point of the ball ‖θ‖ ≤ bound nearest to it in the norm of A = P⁻¹, P given as a triangle:
  * the projection of the online Newton step (Hazan, Agarwal, Kale 2007).
  * It solves (I + μP) θ = mean for the multiplier μ ≥ 0 at which ‖θ‖ = bound, by Newton on 1/‖θ‖, which climbs
- * to it from μ = 0 without overshooting (Moré, Sorensen 1983). Each round is one factorisation, O(d³).
+ * to it from μ = 0 without overshooting (Moré, Sorensen 1983). Each round is one factorisation, O(d³); one mostly
+ * does. Once the length is right to a billionth, the rest is taken off by scaling.
  */
 export function projectInMetric(mean: Float64Array, triangle: Float64Array, bound: number): void {
   const dimension = mean.length;
@@ -23,7 +26,7 @@ export function projectInMetric(mean: Float64Array, triangle: Float64Array, boun
   let multiplier = 0;
   for (let round = 0; round < 60; round++) {
     const length = lengthOf(point);
-    if (length <= bound * (1 + 1e-14)) break;
+    if (length <= bound * (1 + LENGTH_TOLERANCE)) break;
     multiply(triangle, point, slope);
     if (multiplier > 0) solve(factor, slope);
     multiplier += ((length - bound) / bound) * ((length * length) / dot(point, slope));
