@@ -3,6 +3,7 @@ import { caseEndpoints } from "./cases/endpoints";
 import { decisionEndpoints } from "./decisions/endpoints";
 import type { EndpointTable } from "./endpoint";
 import { floorEndpoints } from "./floor/endpoints";
+import { importEndpoints } from "./imports/endpoints";
 import { keyEndpoints } from "./keys/endpoints";
 import { outcomeEndpoints } from "./outcomes/endpoints";
 import { peopleEndpoints } from "./people/endpoints";
@@ -21,6 +22,7 @@ export const ENDPOINTS = {
   ...trailEndpoints,
   ...auditEndpoints,
   ...transactionEndpoints,
+  ...importEndpoints,
   ...caseEndpoints,
   ...decisionEndpoints,
   ...floorEndpoints,

@@ -173,8 +173,8 @@ export const imports = mysqlTable(
     id: uuid().primaryKey(),
     source: varchar({ length: 64 }).notNull(),
     fileName: varchar({ length: 255 }).notNull(),
-    /** Header in the file → field of ours. */
-    mapping: json<Record<string, string>>()().notNull(),
+    /** Header in the file → field of ours, or null for a column left out. */
+    mapping: json<Record<string, string | null>>()().notNull(),
     state: mysqlEnum(IMPORT_STATES).notNull(),
     personId: uuid().references(() => people.id),
     createdAt: instant().notNull(),
