@@ -39,7 +39,7 @@ export function portFrom(env) {
 }
 
 const ownSettings =
-  /^(PORT|APP_URL|DATABASE_URL|SMTP_URL|AUTH_SECRET|AUTH_TRUST_HOST|NODE_ENV|NEXTAUTH_.*|CUPEL_(?!STREAM|BUILD_DIR).*)$/;
+  /^(PORT|APP_URL|DATABASE_URL|SMTP_URL|AUTH_SECRET|AUTH_TRUST_HOST|NODE_ENV|NEXTAUTH_.*|CUPEL_(?!STREAM|SCORER_SETS|BUILD_DIR).*)$/;
 
 /**
  * The environment of checks and benchmarks: without the person's own settings, so that nothing of theirs is
