@@ -5,6 +5,6 @@ import { pageContext } from "@/lib/auth/page-context";
 export const metadata: Metadata = { title: "Desk" };
 
 export default async function DeskPage() {
-  await pageContext("/desk");
-  return <Desk />;
+  const { actor } = await pageContext("/desk");
+  return <Desk personId={actor.personId} />;
 }

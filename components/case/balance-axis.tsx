@@ -39,13 +39,19 @@ export function BalanceAxis({ thresholds, rug, pointer, instead }: BalanceAxisPr
   );
 }
 
+/** Left of this there is no room for the name before its mark on a narrow screen. */
+const REVIEW_NAME_FROM = -10;
+
 function ThresholdNames({ reviewDecibans, holdDecibans }: Thresholds) {
   return (
     <>
-      <span className="absolute -translate-x-full whitespace-nowrap pr-1.5" style={leftAt(reviewDecibans)}>
+      <span
+        className={`absolute whitespace-nowrap px-1.5 ${reviewDecibans > REVIEW_NAME_FROM ? "-translate-x-full" : ""}`}
+        style={leftAt(reviewDecibans)}
+      >
         review from <span className="figures">{signedDecibans(reviewDecibans)}</span>
       </span>
-      <span className="absolute whitespace-nowrap pl-1.5" style={leftAt(holdDecibans)}>
+      <span className="absolute whitespace-nowrap px-1.5" style={leftAt(holdDecibans)}>
         hold from <span className="figures">{signedDecibans(holdDecibans)}</span>
       </span>
     </>

@@ -10,6 +10,18 @@ export function counterpartyOf(transaction: CaseView["transaction"]): string {
   return transaction.counterpartyName ?? transaction.counterpartyId;
 }
 
+/** One line that names the case above the balance, where a narrow screen has the heading far below. */
+export function CaseLine({ view }: { view: CaseView }) {
+  const { transaction } = view;
+  return (
+    <p aria-hidden="true" className="truncate">
+      <span className="font-strong">Case {view.number}</span>{" "}
+      <Amount amount={transaction.amount} currency={transaction.currency} />{" "}
+      {transaction.direction === "incoming" ? "from" : "to"} {counterpartyOf(transaction)}
+    </p>
+  );
+}
+
 type CaseHeadProps = { view: CaseView; headingRef?: Ref<HTMLHeadingElement>; level?: 1 | 2 };
 
 /** Number, amount and parties of the case, and how long there is. The heading takes the focus when the case comes to hand. */
@@ -17,14 +29,14 @@ export function CaseHead({ view, headingRef, level = 2 }: CaseHeadProps) {
   const { transaction } = view;
   const Heading = level === 1 ? "h1" : "h2";
   return (
-    <div>
+    <div className="border-l-3 border-transparent pl-3 has-focus-visible:border-accent">
       <Heading
         ref={headingRef}
         tabIndex={-1}
-        className="flex flex-wrap items-baseline gap-x-3 text-title font-strong outline-offset-4"
+        className="flex flex-wrap items-baseline gap-x-3 font-strong text-title outline-none"
       >
         <span>Case {view.number}</span>
-        <span className="text-figure">
+        <span className="font-plain text-figure">
           <Amount amount={transaction.amount} currency={transaction.currency} />
         </span>
         <span className="font-plain">

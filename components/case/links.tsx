@@ -55,9 +55,15 @@ function LinkTable({ group, showScore, ticks }: { group: LinkGroup; showScore: b
             <th scope="col">Case</th>
             <th scope="col">Time</th>
             <th scope="col">Amount</th>
-            <th scope="col">Channel</th>
+            <th scope="col" className="max-sm:hidden">
+              Channel
+            </th>
             <th scope="col">Finding</th>
-            {showScore && <th scope="col">Fraud, %</th>}
+            {showScore && (
+              <th scope="col" className="max-sm:hidden">
+                Fraud, %
+              </th>
+            )}
           </tr>
         </thead>
         <tbody>
@@ -104,9 +110,9 @@ function LinkRow({ link, showScore, ticks }: { link: LinkedCase; showScore: bool
       <td className="py-1 pr-3 text-right">
         <Amount amount={link.amount} currency={link.currency} aligned />
       </td>
-      <td className="py-1 pr-3">{CHANNEL_WORDS[link.channel]}</td>
+      <td className="py-1 pr-3 max-sm:hidden">{CHANNEL_WORDS[link.channel]}</td>
       <td className="py-1 pr-3">{findingOf(link)}</td>
-      {showScore && <td className="figures py-1 text-right">{percentOf(link.probability)}</td>}
+      {showScore && <td className="figures py-1 text-right max-sm:hidden">{percentOf(link.probability)}</td>}
     </tr>
   );
 }

@@ -1,6 +1,8 @@
-import type { CSSProperties } from "react";
+"use client";
+import { type CSSProperties, useState } from "react";
 import type { EvidenceView } from "@/lib/cases/schema";
 import { axisPlace } from "../ui/axis-scale";
+import { Button } from "../ui/button";
 import { signedDecibans } from "../ui/probability";
 import { AXIS_INSET, leftAt } from "./balance-axis";
 import { type EvidenceRow, evidenceRows } from "./evidence-rows";
@@ -13,41 +15,50 @@ type SignalBarsProps = {
 
 /** What each signal adds, as bars that all hang from zero on the scale of the axis above. They add up to the total. */
 export function SignalBars({ evidence, most }: SignalBarsProps) {
+  const [all, setAll] = useState(false);
   return (
-    <div className={AXIS_INSET}>
-      <div aria-hidden="true" className="pointer-events-none absolute inset-0">
-        <span className="absolute inset-y-0 border-l border-ink" style={leftAt(0)} />
-        <span
-          className="absolute inset-y-0 border-l border-edge border-dotted"
-          style={leftAt(evidence.reviewDecibans)}
-        />
-        <span
-          className="absolute inset-y-0 border-l border-edge border-dotted"
-          style={leftAt(evidence.holdDecibans)}
-        />
+    <div className={all ? "max-h-[50vh] overflow-y-auto" : ""}>
+      <div className={AXIS_INSET}>
+        <div aria-hidden="true" className="pointer-events-none absolute inset-0">
+          <span className="absolute inset-y-0 border-l border-ink" style={leftAt(0)} />
+          <span
+            className="absolute inset-y-0 border-l border-edge border-dotted"
+            style={leftAt(evidence.reviewDecibans)}
+          />
+          <span
+            className="absolute inset-y-0 border-l border-edge border-dotted"
+            style={leftAt(evidence.holdDecibans)}
+          />
+        </div>
+        <ul aria-label="What the evidence is made of, in decibans">
+          {evidenceRows(evidence, all ? evidence.signals.length : most).map((row) => (
+            <Bar key={row.key} row={row} {...(row.kind === "rest" && { onOpen: () => setAll(true) })} />
+          ))}
+          <Bar
+            row={{
+              key: "total",
+              name: "Total",
+              reading: null,
+              explanation: "Sum of the lines above",
+              decibans: evidence.totalDecibans,
+              kind: "total",
+            }}
+          />
+        </ul>
+        {all && (
+          <Button look="quiet" small className="px-0" onClick={() => setAll(false)}>
+            Only the heaviest
+          </Button>
+        )}
       </div>
-      <ul aria-label="What the evidence is made of, in decibans">
-        {evidenceRows(evidence, most).map((row) => (
-          <Bar key={row.key} row={row} />
-        ))}
-        <Bar
-          row={{
-            key: "total",
-            name: "Total",
-            reading: null,
-            explanation: "Sum of the lines above",
-            decibans: evidence.totalDecibans,
-            kind: "total",
-          }}
-        />
-      </ul>
     </div>
   );
 }
 
 type BarRow = Omit<EvidenceRow, "kind"> & { kind: EvidenceRow["kind"] | "total" };
 
-function Bar({ row }: { row: BarRow }) {
+/** `onOpen` shows what a summed line is made of. */
+function Bar({ row, onOpen }: { row: BarRow; onOpen?: () => void }) {
   const right = row.decibans >= 0;
   const place = axisPlace(row.decibans) * 100;
   const span: CSSProperties = {
@@ -63,7 +74,13 @@ function Bar({ row }: { row: BarRow }) {
       <span
         className={`block truncate pr-14 sm:absolute sm:max-w-[calc(50%-0.75rem)] sm:pr-0 ${right ? "sm:right-[calc(50%+0.5rem)]" : "sm:left-[calc(50%+0.5rem)]"}`}
       >
-        <span className={row.kind === "total" ? "font-strong" : ""}>{row.name}</span>
+        {onOpen ? (
+          <button type="button" onClick={onOpen} className="underline decoration-edge underline-offset-2">
+            {row.name}
+          </button>
+        ) : (
+          <span className={row.kind === "total" ? "font-strong" : ""}>{row.name}</span>
+        )}
         {row.reading && <span className="text-soft">, {row.reading}</span>}
         <span className="sr-only">:</span>
       </span>

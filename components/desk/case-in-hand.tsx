@@ -1,7 +1,7 @@
 "use client";
 import type { RugView } from "@/lib/cases/schema";
 import { BalanceAxis } from "../case/balance-axis";
-import { CaseHead } from "../case/case-head";
+import { CaseHead, CaseLine } from "../case/case-head";
 import { Cautions } from "../case/cautions";
 import { Decisions } from "../case/decisions";
 import { Facts } from "../case/facts";
@@ -47,6 +47,11 @@ export function CaseInHand(props: CaseInHandProps) {
         aria-label="Balance"
         className="flex flex-col gap-1 border-edge border-b pt-1 pb-2 bench:col-span-2"
       >
+        {hand && (
+          <div className="px-3 sm:px-14 bench:hidden">
+            <CaseLine view={hand} />
+          </div>
+        )}
         <BalanceAxis
           thresholds={rug}
           rug={rug?.evidenceDecibans ?? null}
@@ -74,7 +79,9 @@ export function CaseInHand(props: CaseInHandProps) {
               onCommand={commands.run}
               onHelp={() => commands.setDialog("shortcuts")}
             />
-            <div className="min-h-44">{evidence && <SignalBars evidence={evidence} most={BARS} />}</div>
+            <div className="min-h-44">
+              {evidence && <SignalBars key={hand.caseId} evidence={evidence} most={BARS} />}
+            </div>
           </>
         )}
       </section>

@@ -28,18 +28,12 @@ export function CaseTools({ shortcuts, scoreHidden, onCommand, onHelp }: CaseToo
   return (
     <div className={`${AXIS_INSET} flex flex-wrap items-center gap-x-4 gap-y-1`}>
       {words.map(([command, name]) => (
-        <Button
-          key={command}
-          look="quiet"
-          small
-          className="px-0 font-plain"
-          onClick={() => onCommand(command)}
-        >
+        <Button key={command} look="quiet" small className="px-0" onClick={() => onCommand(command)}>
           <KeyCap name={shortcuts.singleKeys ? keyName(shortcuts.bindings[command], layout) : null} />
           {name}
         </Button>
       ))}
-      <Button look="quiet" small className="px-0 font-plain" onClick={onHelp}>
+      <Button look="quiet" small className="px-0" onClick={onHelp}>
         <KeyCap name={shortcuts.singleKeys ? "?" : null} />
         Shortcuts
       </Button>

@@ -81,7 +81,7 @@ export function deskReducer(state: DeskState, event: DeskEvent): DeskState {
   switch (event.kind) {
     case "served":
       if (state.ready.some((one) => one.caseId === event.case.caseId)) return state;
-      return { ...withDraft(state, event.case), ready: [...state.ready, event.case], dry: false };
+      return served(state, event.case);
     case "ran_dry":
       // Only what was put back is left, if anything: it may come again.
       return { ...state, dry: true, putBack: [] };
@@ -146,6 +146,14 @@ export function undoable(state: DeskState, nowMs: number): Sent | null {
 export function previousCase(state: DeskState): string | null {
   const here = new Set(state.ready.slice(0, 1).map((one) => one.caseId));
   return state.visited.findLast((id) => !here.has(id)) ?? null;
+}
+
+/** Behind what is there; more than the Desk keeps, as after a page was loaded anew, goes back. */
+function served(state: DeskState, found: CaseView): DeskState {
+  if (state.ready.length >= MOST_CLAIMED) {
+    return { ...state, toRelease: [...state.toRelease, found.caseId] };
+  }
+  return { ...withDraft(state, found), ready: [...state.ready, found], dry: false };
 }
 
 function committed(state: DeskState, sentId: string, act: Act): DeskState {

@@ -13,11 +13,11 @@ import { useRankedList, useRug } from "./use-ranked-list";
 import { useScoreHidden } from "./use-score-hidden";
 
 /** The reviewer's bench: the axis across the top, the case in hand beneath, the ranked list beside it. */
-export function Desk() {
+export function Desk({ personId }: { personId: string }) {
   const [line, say] = useQuietLine();
   const list = useRankedList();
   const rug = useRug(list);
-  const desk = useDesk(say, list.afterMove);
+  const desk = useDesk(personId, say, list.afterMove);
   const focus = useFocusWish();
   const [scoreHidden, setScoreHidden] = useScoreHidden();
   const [paused, setPaused] = useState(false);
@@ -56,7 +56,7 @@ export function Desk() {
         <div className="flex h-[32rem] min-h-0 flex-col border-rule border-t px-2 bench:h-auto bench:border-l">
           <RankedList
             list={list}
-            handId={hand?.caseId ?? null}
+            ready={state.ready}
             thresholds={showScores ? rug : null}
             onPick={(item) => pick(item.caseId, item.number)}
             onLeave={focus.now}

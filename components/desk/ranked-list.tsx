@@ -3,7 +3,7 @@
 "use client";
 import { useVirtualizer } from "@tanstack/react-virtual";
 import { type KeyboardEvent, useEffect, useRef, useState } from "react";
-import type { QueueItem } from "@/lib/cases/schema";
+import type { CaseView, QueueItem } from "@/lib/cases/schema";
 import type { Thresholds } from "../case/balance-axis";
 import { Button } from "../ui/button";
 import { EmptyState } from "../ui/empty-state";
@@ -15,14 +15,15 @@ import type { RankedList as List } from "./use-ranked-list";
 
 type RankedListProps = {
   list: List;
-  handId: string | null;
+  /** The first is in hand, the others come next. */
+  ready: readonly CaseView[];
   thresholds: Thresholds | null;
   onPick: (item: QueueItem) => void;
   onLeave: () => void;
 };
 
 /** The server's order of waiting cases. Only the rows in view are drawn, however many there are. */
-export function RankedList({ list, handId, thresholds, onPick, onLeave }: RankedListProps) {
+export function RankedList({ list, ready, thresholds, onPick, onLeave }: RankedListProps) {
   return (
     <section aria-label="Waiting cases" className="flex min-h-0 flex-1 flex-col">
       <div className="flex min-h-8 items-center justify-between gap-3 px-2 text-small">
@@ -53,13 +54,13 @@ export function RankedList({ list, handId, thresholds, onPick, onLeave }: Ranked
       ) : list.items.length === 0 && !list.failed ? (
         <EmptyState title="Nothing waits">New cases appear here as they come in.</EmptyState>
       ) : (
-        <Grid {...{ list, handId, thresholds, onPick, onLeave }} />
+        <Grid {...{ list, ready, thresholds, onPick, onLeave }} />
       )}
     </section>
   );
 }
 
-function Grid({ list, handId, thresholds, onPick, onLeave }: RankedListProps) {
+function Grid({ list, ready, thresholds, onPick, onLeave }: RankedListProps) {
   const { items, loadMore } = list;
   const scroller = useRef<HTMLDivElement>(null);
   const presence = useRef({ pointer: false, focus: false });
@@ -141,7 +142,7 @@ function Grid({ list, handId, thresholds, onPick, onLeave }: RankedListProps) {
               item={item}
               rank={index + 1}
               topPx={start}
-              inHand={item.caseId === handId}
+              mine={mineOf(item.caseId, ready)}
               activeColumn={focused && index === place.row ? place.column : null}
               thresholds={thresholds}
               onPick={() => onPick(item)}
@@ -151,4 +152,10 @@ function Grid({ list, handId, thresholds, onPick, onLeave }: RankedListProps) {
       </div>
     </div>
   );
+}
+
+function mineOf(caseId: string, ready: readonly CaseView[]): "in hand" | "next" | null {
+  const place = ready.findIndex((one) => one.caseId === caseId);
+  if (place === 0) return "in hand";
+  return place > 0 ? "next" : null;
 }

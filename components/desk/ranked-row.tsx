@@ -6,12 +6,14 @@ import type { QueueItem } from "@/lib/cases/schema";
 import type { Thresholds } from "../case/balance-axis";
 import { Amount } from "../ui/amount";
 import { ScoreMark } from "../ui/score-mark";
-import { TimeLeft } from "../ui/time-left";
+import { spanWords } from "../ui/span-words";
+import { useNowMs } from "../ui/time-left";
 import { CASE_STATE_WORDS, CHANNEL_WORDS } from "../words";
 
 export const ROW_PX = 46;
 export const COLUMNS = ["Case", "Evidence", "Amount", "Due"] as const;
-export const GRID_TEMPLATE = "grid grid-cols-[minmax(0,1fr)_6rem_minmax(6.5rem,auto)_5rem] gap-x-3 px-2";
+export const GRID_TEMPLATE =
+  "grid grid-cols-[minmax(0,1fr)_3.25rem_6.5rem_4.5rem] gap-x-2 px-2 sm:grid-cols-[minmax(0,1fr)_6rem_7.5rem_5.5rem] sm:gap-x-3";
 
 export const cellId = (caseId: string, column: number) => `ranked-${caseId}-${column}`;
 
@@ -19,14 +21,15 @@ type RankedRowProps = {
   item: QueueItem;
   rank: number;
   topPx: number;
-  inHand: boolean;
+  /** Whether this person works on it just now, or will next. */
+  mine: "in hand" | "next" | null;
   activeColumn: number | null;
   /** Null while scores are hidden or the thresholds are not here yet. */
   thresholds: Thresholds | null;
   onPick: () => void;
 };
 
-export function RankedRow({ item, rank, topPx, inHand, activeColumn, thresholds, onPick }: RankedRowProps) {
+export function RankedRow({ item, rank, topPx, mine, activeColumn, thresholds, onPick }: RankedRowProps) {
   const settled = item.state === "decided" || item.state === "lapsed";
   const cell = (column: number, content: ReactNode, className = "") => (
     <div
@@ -43,9 +46,9 @@ export function RankedRow({ item, rank, topPx, inHand, activeColumn, thresholds,
     <div
       role="row"
       aria-rowindex={rank + 1}
-      aria-selected={inHand}
+      aria-selected={mine === "in hand"}
       onClick={onPick}
-      className={`${GRID_TEMPLATE} absolute inset-x-0 cursor-pointer items-center border-b border-rule text-small hover:bg-raised ${inHand ? "bg-raised shadow-[inset_3px_0_0_var(--color-accent)]" : ""} ${settled ? "opacity-60" : ""}`}
+      className={`${GRID_TEMPLATE} absolute inset-x-0 cursor-pointer items-center border-b border-rule text-small hover:bg-raised ${mine === "in hand" ? "bg-raised shadow-[inset_3px_0_0_var(--color-accent)]" : ""} ${settled ? "opacity-60" : ""}`}
       style={{ height: ROW_PX, transform: `translateY(${topPx}px)` }}
     >
       {cell(
@@ -53,7 +56,7 @@ export function RankedRow({ item, rank, topPx, inHand, activeColumn, thresholds,
         <>
           <span className={`block truncate ${settled ? "line-through" : ""}`}>
             <span className="font-strong tabular-nums">{item.number}</span>{" "}
-            <StateWords item={item} inHand={inHand} />
+            <StateWords item={item} mine={mine} />
           </span>
           <span className="block truncate text-soft">{item.accountId}</span>
         </>,
@@ -74,21 +77,31 @@ export function RankedRow({ item, rank, topPx, inHand, activeColumn, thresholds,
         </>,
         "text-right",
       )}
-      {cell(
-        3,
-        item.holdExpiresAt && item.paymentState === "held" ? (
-          <TimeLeft until={item.holdExpiresAt} before="hold" after="hold over" />
-        ) : (
-          <TimeLeft until={item.dueAt} before="in" after="over" />
-        ),
-        "text-right",
-      )}
+      {cell(3, <DueWords item={item} />, "text-right")}
     </div>
   );
 }
 
-function StateWords({ item, inHand }: { item: QueueItem; inHand: boolean }) {
-  if (inHand) return <span className="text-accent">in hand</span>;
+function DueWords({ item }: { item: QueueItem }) {
+  const held = item.holdExpiresAt !== null && item.paymentState === "held";
+  const nowMs = useNowMs();
+  const until = held && item.holdExpiresAt ? item.holdExpiresAt : item.dueAt;
+  const leftMs = nowMs === null ? null : Date.parse(until) - nowMs;
+  const over = leftMs !== null && leftMs < 0;
+  return (
+    <time dateTime={until} title={`${until.slice(0, 16).replace("T", " ")} UTC`}>
+      <span className={`block whitespace-nowrap tabular-nums ${over ? "font-strong" : ""}`}>
+        {leftMs !== null && spanWords(Math.abs(leftMs))}
+      </span>
+      <span className="block text-soft">
+        {held ? (over ? "hold over" : "hold left") : over ? "overdue" : "left"}
+      </span>
+    </time>
+  );
+}
+
+function StateWords({ item, mine }: Pick<RankedRowProps, "item" | "mine">) {
+  if (mine) return <span className="text-accent">{mine}</span>;
   if (item.claimedBy) return <span className="text-soft">{item.claimedBy.name}</span>;
   if (item.state !== "open")
     return <span className="text-soft">{CASE_STATE_WORDS[item.state].toLowerCase()}</span>;

@@ -25,8 +25,8 @@ export function StatusBar({ line, sending, live, paused, onPause }: StatusBarPro
         </span>
       </p>
       {sending > 0 && <span className="text-soft">{sending} on the way</span>}
-      <span className="text-soft">{paused ? "Live updates paused" : live ? "Live" : "Connecting again"}</span>
-      <Button look="quiet" small className="px-0 font-plain" onClick={() => onPause(!paused)}>
+      <span className="text-soft">{paused ? "Live updates paused" : live ? "Live" : "Connecting"}</span>
+      <Button look="quiet" small className="px-0" onClick={() => onPause(!paused)}>
         {paused ? "Resume live updates" : "Pause live updates"}
       </Button>
     </div>

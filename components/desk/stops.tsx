@@ -22,7 +22,7 @@ export function Stops({ caseNumber, marker, onMarker }: StopsProps) {
     group.current.querySelector<HTMLInputElement>(`input[value="${marker}"]`)?.focus();
   }, [marker]);
   return (
-    <fieldset ref={group} className={`${AXIS_INSET} h-12`}>
+    <fieldset ref={group} className={`${AXIS_INSET} h-12 sm:h-9`}>
       <legend className="sr-only">Finding on case {caseNumber}</legend>
       <span aria-hidden="true" className="absolute inset-x-[10%] top-2 border-t border-edge" />
       {STOPS.map((stop, index) => (

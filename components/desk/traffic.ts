@@ -7,6 +7,12 @@ import type { Sent } from "./desk-state";
 export const takeNext = (notThese: readonly string[]): Promise<CaseView | null> =>
   api("POST /api/queue/next", { notThese: notThese.slice(-10) });
 
+/** Cases this person holds already, as after the page was loaded anew. */
+export async function listHeld(personId: string): Promise<string[]> {
+  const mine = await api("GET /api/queue", { assignee: "me", state: "claimed", limit: 10 });
+  return (mine?.items ?? []).filter((item) => item.claimedBy?.id === personId).map((item) => item.caseId);
+}
+
 export const readCase = (caseId: string) => api("GET /api/cases/{id}", { id: caseId }) as Promise<CaseView>;
 
 export async function claimAndRead(caseId: string): Promise<CaseView> {

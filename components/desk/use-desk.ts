@@ -15,7 +15,7 @@ import {
 } from "./desk-state";
 import { movedLine } from "./moved-line";
 import type { Say } from "./quiet-line";
-import { claimAndRead, deliver, problemWords, readCase, stillMine, takeNext } from "./traffic";
+import { claimAndRead, deliver, listHeld, problemWords, readCase, stillMine, takeNext } from "./traffic";
 import { useDrafts } from "./use-drafts";
 import { useLeases } from "./use-leases";
 
@@ -35,13 +35,13 @@ export type Desk = {
 };
 
 /** The Desk's cases and what is on its way to the server. `onMoved` is told when the ranking has changed by own doing. */
-export function useDesk(say: Say, onMoved: () => void): Desk {
+export function useDesk(personId: string, say: Say, onMoved: () => void): Desk {
   const [state, dispatch] = useReducer(deskReducer, EMPTY_DESK);
   const latest = useRef(state);
   useEffect(() => {
     latest.current = state;
   }, [state]);
-  useSupply(state, dispatch, say);
+  useSupply(personId, state, dispatch, say);
   const keepDraft = useDrafts(state, say);
   useLeases(state, dispatch, keepDraft, say);
 
@@ -115,8 +115,9 @@ export function useDesk(say: Say, onMoved: () => void): Desk {
 type Dispatch = (event: DeskEvent) => void;
 
 /** Keeps one case in hand and one claimed and loaded at the elbow, so that a key press need not wait for the server. */
-function useSupply(state: DeskState, dispatch: Dispatch, say: Say) {
+function useSupply(personId: string, state: DeskState, dispatch: Dispatch, say: Say) {
   const asking = useRef(false);
+  const resumed = useRef(false);
   const { ready, sent, putBack, dry } = state;
   const wanted = ready.length < KEPT_READY && !dry;
   useEffect(() => {
@@ -124,10 +125,16 @@ function useSupply(state: DeskState, dispatch: Dispatch, say: Say) {
     asking.current = true;
     const onTheirWay = sent.filter((one) => one.state === "sending").map((one) => one.case.caseId);
     const notThese = [...putBack, ...onTheirWay, ...ready.map((one) => one.caseId)];
-    takeNext(notThese).then(
+    const supply = async () => {
+      const held = resumed.current ? [] : await listHeld(personId);
+      resumed.current = true;
+      if (held.length === 0) return [await takeNext(notThese)];
+      return Promise.all(held.map(claimAndRead));
+    };
+    supply().then(
       (found) => {
         asking.current = false;
-        dispatch(found ? { kind: "served", case: found } : { kind: "ran_dry" });
+        for (const one of found) dispatch(one ? { kind: "served", case: one } : { kind: "ran_dry" });
       },
       (error: unknown) => {
         asking.current = false;
@@ -135,7 +142,7 @@ function useSupply(state: DeskState, dispatch: Dispatch, say: Say) {
         say(`No next case: ${problemWords(error)}.`, true);
       },
     );
-  }, [wanted, ready, sent, putBack, dispatch, say]);
+  }, [personId, wanted, ready, sent, putBack, dispatch, say]);
 }
 
 /** Brings a case on the Desk up to date; where it has gone from view it is dropped. */

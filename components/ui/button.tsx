@@ -4,14 +4,15 @@ import type { ComponentProps } from "react";
 type Look = "action" | "plain" | "quiet" | "danger";
 
 const LOOKS: Record<Look, string> = {
-  action: "border-accent bg-accent text-on-accent hover:border-accent-strong hover:bg-accent-strong",
-  plain: "border-edge bg-raised text-ink hover:border-ink",
+  action:
+    "font-strong border-accent bg-accent text-on-accent hover:border-accent-strong hover:bg-accent-strong",
+  plain: "font-strong border-edge bg-raised text-ink hover:border-ink",
   quiet: "border-transparent text-ink underline decoration-edge underline-offset-4 hover:decoration-ink",
-  danger: "border-error bg-raised text-error hover:bg-error hover:text-paper",
+  danger: "font-strong border-error bg-raised text-error hover:bg-error hover:text-paper",
 };
 
 const SHAPE =
-  "inline-flex items-center justify-center gap-2 rounded-edge border font-strong leading-none select-none " +
+  "inline-flex items-center justify-center gap-2 rounded-edge border leading-none select-none " +
   "disabled:cursor-not-allowed disabled:opacity-55 aria-disabled:cursor-not-allowed aria-disabled:opacity-55";
 
 function look(kind: Look, small: boolean, className: string): string {

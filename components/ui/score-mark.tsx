@@ -22,7 +22,7 @@ export function ScoreMark({ decibans, probability, reviewDecibans, holdDecibans 
       role="img"
       aria-label={label}
       viewBox={`0 0 ${WIDTH} 16`}
-      className="inline-block h-4 w-24 align-middle"
+      className="inline-block h-4 w-full max-w-24 align-middle"
     >
       <path d={`M3 11.5H${WIDTH - 3}`} className="stroke-edge" strokeWidth="1" />
       <path d={`M${zero} 8.500V14.5`} className="stroke-edge" strokeWidth="1" />

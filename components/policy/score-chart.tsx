@@ -1,0 +1,109 @@
+import type { ScoreHistogram } from "@/lib/policy/schema";
+import { AXIS_DECIBANS, axisPlace } from "../ui/axis-scale";
+import { signedDecibans } from "../ui/probability";
+import { chartBars, csvOf } from "./chart-bars";
+
+export type ChartLine = { decibans: number; name: string; proposed?: boolean };
+
+type ScoreChartProps = { recent: ScoreHistogram; lines: readonly ChartLine[] };
+
+const TICKS = [-30, -20, -10, 0, 10, 20, 30];
+
+/** How the recent scores lie along the axis of evidence, and where the lines cut them. */
+export function ScoreChart({ recent, lines }: ScoreChartProps) {
+  const bars = chartBars(recent);
+  return (
+    <figure>
+      <div className="relative mt-12 h-36 border-b border-edge">
+        <svg
+          role="img"
+          aria-label={`Recent payments by evidence; ${lines.map(lineWords).join(", ")}`}
+          viewBox="0 0 1000 100"
+          preserveAspectRatio="none"
+          className="absolute inset-0 size-full"
+        >
+          {bars.map(({ from, place, width, height }) => (
+            <rect
+              key={from}
+              x={place * 1000}
+              y={100 - height * 100}
+              width={width * 1000}
+              height={height * 100}
+              className="fill-soft"
+            />
+          ))}
+        </svg>
+        {lines.map((line, index) => (
+          <LineMark key={`${line.name}${line.proposed}`} line={line} row={index} />
+        ))}
+      </div>
+      <div aria-hidden="true" className="relative h-6 text-small text-soft">
+        {TICKS.map((tick) => (
+          <span
+            key={tick}
+            className="figures absolute top-1 -translate-x-1/2 first:translate-x-0 last:-translate-x-full"
+            style={{ left: `${axisPlace(tick) * 100}%` }}
+          >
+            {signedDecibans(tick)}
+          </span>
+        ))}
+      </div>
+      <figcaption className="mt-1 text-small text-soft">
+        Evidence in decibans; 0 is even odds. Heights grow with the square root of the count, so that the few
+        high scores show. What lies beyond ±{AXIS_DECIBANS} stands at the ends.
+      </figcaption>
+      <details className="mt-2">
+        <summary className="w-fit text-small underline decoration-edge underline-offset-4">
+          Show as table
+        </summary>
+        <table className="mt-2 text-small">
+          <caption className="sr-only">Recent payments by evidence</caption>
+          <thead>
+            <tr>
+              <th scope="col" className="pr-6 text-left font-strong">
+                Decibans from
+              </th>
+              <th scope="col" className="text-right font-strong">
+                Payments
+              </th>
+            </tr>
+          </thead>
+          <tbody>
+            {bars.map(({ from, count }) => (
+              <tr key={from}>
+                <td className="figures pr-6">{signedDecibans(from)}</td>
+                <td className="figures text-right">{count}</td>
+              </tr>
+            ))}
+          </tbody>
+        </table>
+        <a
+          download="recent-scores.csv"
+          href={`data:text/csv;charset=utf-8,${encodeURIComponent(csvOf(bars))}`}
+          className="mt-2 inline-block text-small underline decoration-edge underline-offset-4"
+        >
+          Download as CSV
+        </a>
+      </details>
+    </figure>
+  );
+}
+
+const lineWords = ({ name, decibans }: ChartLine) => `${name} at ${signedDecibans(decibans)}`;
+
+/** A line with its name above it; proposed lines are dashed, and each name has a row of its own. */
+function LineMark({ line, row }: { line: ChartLine; row: number }) {
+  const place = axisPlace(line.decibans);
+  const side = place > 0.7 ? "right-1" : "left-1";
+  return (
+    <div
+      aria-hidden="true"
+      className={`absolute bottom-0 border-l-2 border-ink ${line.proposed ? "border-dashed" : ""}`}
+      style={{ left: `${place * 100}%`, top: `${-0.6 - (1 - (row % 2)) * 1.2}rem` }}
+    >
+      <span className={`absolute -top-1 ${side} text-small whitespace-nowrap`}>
+        {line.name} <span className="figures">{signedDecibans(line.decibans)}</span>
+      </span>
+    </div>
+  );
+}
