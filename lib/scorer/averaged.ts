@@ -12,9 +12,11 @@ export function withAverage(rule: Rule, dimension: number): Rule {
     ...rule,
     learn(x, label, weight) {
       labels += 1;
-      rule.weights().forEach((value, i) => {
-        average[i] = (average[i] as number) + (value - (average[i] as number)) / labels;
-      });
+      const weights = rule.weights();
+      for (let i = 0; i < dimension; i++) {
+        const mean = average[i] as number;
+        average[i] = mean + ((weights[i] as number) - mean) / labels;
+      }
       return rule.learn(x, label, weight);
     },
     averagedWeights: () => average.slice(),

@@ -73,7 +73,7 @@ export function solveLower(factor: Float64Array, b: Float64Array): void {
 }
 
 /** Solves Lᵀ z = b in place. */
-export function solveUpper(factor: Float64Array, b: Float64Array): void {
+function solveUpper(factor: Float64Array, b: Float64Array): void {
   for (let i = b.length - 1; i >= 0; i--) {
     const row = (i * (i + 1)) / 2;
     const value = (b[i] as number) / (factor[row + i] as number);

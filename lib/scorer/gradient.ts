@@ -2,7 +2,7 @@ import { projectOntoBall } from "./ball";
 import { logistic } from "./logistic";
 import type { ResolvedOptions } from "./options";
 import type { Rule, RuleLearned } from "./rule";
-import { dot } from "./vector";
+import { dot, lengthOf } from "./vector";
 
 /**
  * Projected online gradient descent (Zinkevich, "Online convex programming and generalized infinitesimal gradient
@@ -28,10 +28,7 @@ export function createGradient(options: ResolvedOptions): Rule {
     steps += (rate / 2) * pull * pull * dot(x, x);
     if (weight !== 1) unitWeights = false;
     for (let i = 0; i < dimension; i++) mean[i] = (mean[i] as number) + shift * (x[i] as number);
-    const moved = mean.slice();
-    projectOntoBall(mean, weightBound);
-    const scaled = moved.some((value, i) => value !== mean[i]);
-    const drift = scaled ? moved.map((value, i) => (mean[i] as number) - value) : null;
+    const drift = keepWithin(mean, weightBound);
     return { logit, move: { u: x.slice(), shift, shrink: 0, drift, exact: true } };
   }
 
@@ -55,4 +52,12 @@ export function createGradient(options: ResolvedOptions): Rule {
       return true;
     },
   };
+}
+
+/** Scales the weights back onto the ball; returns by how much they moved, null when they were within. */
+function keepWithin(mean: Float64Array, bound: number): Float64Array | null {
+  if (lengthOf(mean) <= bound) return null;
+  const before = mean.slice();
+  projectOntoBall(mean, bound);
+  return before.map((value, i) => (mean[i] as number) - value);
 }
