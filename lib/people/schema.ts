@@ -8,8 +8,15 @@ const Roles = z.array(z.enum(ROLES)).min(1, "needs at least one role").max(ROLES
 
 export const TimeZone = z.string().refine((zone) => isTimeZone(zone), "is not an IANA time zone");
 
+/** Old and new names alike: what one browser calls Asia/Katmandu is Asia/Kathmandu to another. Offsets are no zones. */
 function isTimeZone(zone: string): boolean {
-  return zone === "UTC" || Intl.supportedValuesOf("timeZone").includes(zone);
+  if (!/^[A-Za-z]/.test(zone)) return false;
+  try {
+    new Intl.DateTimeFormat("en", { timeZone: zone });
+    return true;
+  } catch {
+    return false;
+  }
 }
 
 export const PersonView = z.strictObject({
