@@ -1,11 +1,9 @@
-import type { PolicyTerms } from "./schema";
-
 type Leaf = string | number | boolean;
 /** One term that differs; null where the other version has no such term. */
 export type TermChange = { path: string; from: Leaf | null; to: Leaf | null };
 
-/** The terms that differ between two versions, by their path: "channels.card_remote.onHold". */
-export function termChanges(before: PolicyTerms, after: PolicyTerms): TermChange[] {
+/** The terms that differ between two versions of them, by their path: "channels.card_remote.onHold". */
+export function termChanges(before: object, after: object): TermChange[] {
   const old = new Map(leavesOf(before));
   const fresh = new Map(leavesOf(after));
   const paths = [...new Set([...old.keys(), ...fresh.keys()])];

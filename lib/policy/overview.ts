@@ -4,6 +4,7 @@ import { policies } from "@/db/schema/policies";
 import { demand } from "../auth/demand";
 import type { Context } from "../context";
 import { natsToDecibans } from "../decibans";
+import { minorDigits } from "../money";
 import { readBaseCurrency } from "../transactions/base-currency";
 import { newestApproved, policyInForce } from "./read";
 import { histogramOf, newestScores } from "./recent-scores";
@@ -40,6 +41,6 @@ export async function readPolicy(ctx: Context): Promise<PolicyView> {
     history,
     newestVersion: newest.version,
     recent,
-    baseCurrency,
+    baseCurrency: { code: baseCurrency, minorDigits: minorDigits(baseCurrency) ?? 2 },
   };
 }

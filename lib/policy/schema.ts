@@ -124,6 +124,7 @@ export const PolicyView = z.strictObject({
   /** Version a new proposal starts from: the newest approved, in force or about to be. */
   newestVersion: z.int(),
   recent: ScoreHistogram,
-  baseCurrency: z.string(),
+  /** Costs are in minor units of it. */
+  baseCurrency: z.strictObject({ code: z.string(), minorDigits: z.int() }),
 });
 export type PolicyView = z.infer<typeof PolicyView>;
