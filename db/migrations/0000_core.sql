@@ -1,3 +1,4 @@
+ALTER DATABASE CHARACTER SET utf8mb4 COLLATE utf8mb4_nopad_bin;--> statement-breakpoint
 CREATE TABLE `case_notes` (
 	`id` uuid NOT NULL,
 	`case_id` uuid NOT NULL,
