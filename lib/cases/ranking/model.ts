@@ -37,6 +37,7 @@ export class RankingModel {
   private readonly hinted = new Set<string>();
   private readonly movements = new Map<number, Movement>();
   private pending: Promise<void> | null = null;
+  private owed: Promise<void> | null = null;
   private pollWanted = false;
   private loaded: { cases: WaitingCases; held: HeldScorer } | null = null;
   private policy: { inForce: PolicyInForce; thresholds: Thresholds; readMs: number } | null = null;
@@ -67,6 +68,8 @@ export class RankingModel {
   async read<T>(now: Date, use: (view: RankingView) => T): Promise<T> {
     if (!this.loaded) await this.catchUp();
     if (this.isFrozen && this.view) return use(this.view);
+    // What this process has changed itself is seen by its next read; a failure has been told to whoever changed it.
+    await this.owed?.catch(() => undefined);
     return this.state.take(() => use(this.viewAt(now)));
   }
 
@@ -81,6 +84,7 @@ export class RankingModel {
       this.pending = null;
       return this.bringForward();
     });
+    if (caseIds.length > 0) this.owed = this.pending;
     return this.pending;
   }
 
