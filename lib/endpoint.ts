@@ -10,6 +10,8 @@ export type Endpoint = {
   /** Null where the answer is not JSON: a stream, a file or nothing. */
   output: z.ZodType | null;
   status?: number;
+  /** Further statuses of an answer that is no error: with the same body, or none at 204. */
+  also?: readonly number[];
   /** Media type of the body; `raw` leaves the request's body to the handler. */
   body?: "json" | "raw";
   /** Media type of the answer where it is not JSON. */

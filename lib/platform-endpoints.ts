@@ -22,6 +22,7 @@ export const platformEndpoints = {
     may: "anyone",
     input: Nothing,
     output: Readiness,
+    also: [503],
   },
   "GET /api/metrics": {
     summary: "Figures of this process and of the installation in the Prometheus text format",

@@ -41,7 +41,11 @@ export async function ensureScorerInUse(ctx: Context): Promise<void> {
       });
       await tx
         .insert(signalSets)
-        .values({ version: SIGNAL_SET_VERSION, definition: CATALOGUE.map((signal) => signal.key), createdAt: now })
+        .values({
+          version: SIGNAL_SET_VERSION,
+          definition: CATALOGUE.map((signal) => signal.key),
+          createdAt: now,
+        })
         .onDuplicateKeyUpdate({ set: { version: SIGNAL_SET_VERSION } });
       await appendTrail(ctx, tx, {
         act: "scorer.installed",
