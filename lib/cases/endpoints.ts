@@ -50,6 +50,7 @@ export const caseEndpoints = {
     may: "desk.work",
     input: NextInput,
     output: CaseView,
+    also: [204],
   },
   "GET /api/cases/{id}": {
     summary: "All that the case page shows",
