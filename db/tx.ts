@@ -1,5 +1,5 @@
-import type { Database, Tx } from "./client.ts";
-import { isWorthRetrying } from "./errors.ts";
+import type { Database, Tx } from "./client";
+import { isWorthRetrying } from "./errors";
 
 const ATTEMPTS = 5;
 

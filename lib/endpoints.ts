@@ -5,6 +5,7 @@ import type { EndpointTable } from "./endpoint";
 import { floorEndpoints } from "./floor/endpoints";
 import { importEndpoints } from "./imports/endpoints";
 import { keyEndpoints } from "./keys/endpoints";
+import { lossEndpoints } from "./losses/endpoints";
 import { outcomeEndpoints } from "./outcomes/endpoints";
 import { peopleEndpoints } from "./people/endpoints";
 import { platformEndpoints } from "./platform-endpoints";
@@ -28,6 +29,7 @@ export const ENDPOINTS = {
   ...floorEndpoints,
   ...policyEndpoints,
   ...outcomeEndpoints,
+  ...lossEndpoints,
 } as const satisfies EndpointTable;
 
 export type EndpointKey = keyof typeof ENDPOINTS;

@@ -35,7 +35,8 @@ export class KnownError extends Error {
   }
 }
 
-export const unauthenticated = (message = "Sign in or send a valid key") => new KnownError("unauthenticated", message);
+export const unauthenticated = (message = "Sign in or send a valid key") =>
+  new KnownError("unauthenticated", message);
 export const forbidden = (message = "Your role does not allow this") => new KnownError("forbidden", message);
 export const notFound = (what: string) => new KnownError("not_found", `${what} was not found`);
 export const conflict = (message: string) => new KnownError("conflict", message);

@@ -6,7 +6,10 @@ export function fieldErrors(error: z.ZodError, prefix = ""): FieldError[] {
   return error.issues.flatMap((issue) => {
     const path = [prefix, ...issue.path.map(String)].filter(Boolean).join(".");
     if (issue.code === "unrecognized_keys") {
-      return issue.keys.map((key) => ({ path: [path, key].filter(Boolean).join("."), message: "is not a known field" }));
+      return issue.keys.map((key) => ({
+        path: [path, key].filter(Boolean).join("."),
+        message: "is not a known field",
+      }));
     }
     return [{ path, message: issue.message }];
   });

@@ -1,7 +1,21 @@
 import { code as currencyByCode } from "currency-codes";
 
 /** Gold, test and fund codes of ISO 4217 have no minor unit: nobody pays with them. */
-const WITHOUT_MINOR_UNIT = new Set(["XAG","XAU","XBA","XBB","XBC","XBD","XDR","XPD","XPT","XSU","XTS","XUA","XXX"]);
+const WITHOUT_MINOR_UNIT = new Set([
+  "XAG",
+  "XAU",
+  "XBA",
+  "XBB",
+  "XBC",
+  "XBD",
+  "XDR",
+  "XPD",
+  "XPT",
+  "XSU",
+  "XTS",
+  "XUA",
+  "XXX",
+]);
 
 /** Decimal places of a currency's minor unit (ISO 4217); null where the code is unknown or has none. */
 export function minorDigits(currency: string): number | null {
@@ -31,9 +45,14 @@ export function formatAmount(minor: number, currency: string): string {
   return digits === 0 ? sign + text : `${sign}${text.slice(0, -digits)}.${text.slice(-digits)}`;
 }
 
-/** 1,234,567.89 with thin spaces between groups, for people. */
+/** 1234567.89 with thin spaces between its groups of three and a minus sign, for people. */
 export function displayAmount(minor: number, currency: string): string {
-  const [whole = "", fraction] = formatAmount(minor, currency).split(".");
-  const grouped = whole.replace(/\B(?=(\d{3})+(?!\d))/g, "\u202f");
+  return groupDigits(formatAmount(minor, currency));
+}
+
+/** The same for a decimal string of the API. */
+export function groupDigits(amount: string): string {
+  const [whole = "", fraction] = amount.split(".");
+  const grouped = whole.replace(/\B(?=(\d{3})+(?!\d))/g, "\u202f").replace(/^-/, "−");
   return fraction === undefined ? grouped : `${grouped}.${fraction}`;
 }

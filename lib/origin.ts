@@ -18,5 +18,6 @@ export function refuseForeignOrigin(request: Request, actor: Actor): void {
   }
   const origin = request.headers.get("Origin");
   const host = request.headers.get("Host");
-  if (!origin || !host || new URL(origin).host !== host) throw forbidden("This request came from another site");
+  if (!origin || !host || new URL(origin).host !== host)
+    throw forbidden("This request came from another site");
 }

@@ -6,13 +6,21 @@ import { log } from "./log";
 /** `application/problem+json` of RFC 9457. An unknown error is logged whole and answered with its request id only. */
 export function problemResponse(error: unknown, requestId: string): Response {
   if (error instanceof KnownError) {
-    return problem(error.status, error.message, requestId, {
-      code: error.code,
-      ...(error.errors.length > 0 && { errors: error.errors }),
-    }, error.headers);
+    return problem(
+      error.status,
+      error.message,
+      requestId,
+      {
+        code: error.code,
+        ...(error.errors.length > 0 && { errors: error.errors }),
+      },
+      error.headers,
+    );
   }
   log.error({ requestId, err: error });
-  return problem(500, `Something failed on our side. Quote request ${requestId}.`, requestId, { code: "internal" });
+  return problem(500, `Something failed on our side. Quote request ${requestId}.`, requestId, {
+    code: "internal",
+  });
 }
 
 function problem(
@@ -22,7 +30,13 @@ function problem(
   extensions: Record<string, unknown>,
   headers: Readonly<Record<string, string>> = {},
 ): Response {
-  const body = { title: STATUS_CODES[status], status, detail, instance: `urn:uuid:${requestId}`, ...extensions };
+  const body = {
+    title: STATUS_CODES[status],
+    status,
+    detail,
+    instance: `urn:uuid:${requestId}`,
+    ...extensions,
+  };
   return new Response(JSON.stringify(body), {
     status,
     headers: { ...headers, "Content-Type": "application/problem+json" },

@@ -46,4 +46,5 @@ async function readLimited(request: Request): Promise<Uint8Array> {
   return Buffer.concat(parts, total);
 }
 
-const tooLarge = () => new KnownError("too_large", "The body is larger than 5 MB; send fewer items at a time");
+const tooLarge = () =>
+  new KnownError("too_large", "The body is larger than 5 MB; send fewer items at a time");

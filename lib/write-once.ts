@@ -29,7 +29,11 @@ const COMPLETION_POLL_MS = 10;
  * request that runs at the same time waits on that row and then gets the first one's answer.
  * @throws ReplayedAnswer, KnownError invalid when the key came with another body
  */
-export async function writeOnce<T>(ctx: Context, work: (tx: Tx) => Promise<T>, options: Options = {}): Promise<T> {
+export async function writeOnce<T>(
+  ctx: Context,
+  work: (tx: Tx) => Promise<T>,
+  options: Options = {},
+): Promise<T> {
   const idempotency = ctx.idempotency;
   if (!idempotency) return inTransaction(ctx.db, work);
   const actor = actorKey(ctx.actor);
@@ -77,7 +81,8 @@ async function replay(ctx: Context, mine: ReturnType<typeof and>, requestHash: B
   const until = Date.now() + COMPLETION_WAIT_MS;
   for (;;) {
     const [row] = await ctx.db.select().from(idempotencyKeys).where(mine);
-    if (!row) return new KnownError("conflict", "The first copy of this request did not finish; send it again");
+    if (!row)
+      return new KnownError("conflict", "The first copy of this request did not finish; send it again");
     if (!row.requestHash.equals(requestHash)) {
       const message = "This key was used with another request";
       return new KnownError("invalid", message, { errors: [{ path: "Idempotency-Key", message }] });

@@ -1,5 +1,15 @@
 import { sql } from "drizzle-orm";
-import { check, index, int, mysqlEnum, mysqlTable, primaryKey, tinyint, uniqueIndex, varchar } from "drizzle-orm/mysql-core";
+import {
+  check,
+  index,
+  int,
+  mysqlEnum,
+  mysqlTable,
+  primaryKey,
+  tinyint,
+  uniqueIndex,
+  varchar,
+} from "drizzle-orm/mysql-core";
 import { PERSON_STATES, ROLES, type Scope } from "../../lib/auth/codes";
 import { bytes, instant, json, uuid } from "../columns";
 
@@ -29,7 +39,9 @@ export const people = mysqlTable(
 export const personRoles = mysqlTable(
   "person_roles",
   {
-    personId: uuid().notNull().references(() => people.id),
+    personId: uuid()
+      .notNull()
+      .references(() => people.id),
     role: mysqlEnum(ROLES).notNull(),
     grantedAt: instant().notNull(),
     grantedBy: uuid().references(() => people.id),
@@ -78,7 +90,10 @@ export const idempotencyKeys = mysqlTable(
     complete: tinyint().notNull().default(0),
     createdAt: instant().notNull(),
   },
-  (table) => [primaryKey({ columns: [table.actor, table.key] }), index("idempotency_keys_age").on(table.createdAt)],
+  (table) => [
+    primaryKey({ columns: [table.actor, table.key] }),
+    index("idempotency_keys_age").on(table.createdAt),
+  ],
 );
 
 export const settings = mysqlTable("settings", {

@@ -1,8 +1,18 @@
-import { bigint, double, index, int, mysqlEnum, mysqlTable, primaryKey, text, uniqueIndex } from "drizzle-orm/mysql-core";
-import { POLICY_STATES } from "../../lib/policy/codes.ts";
-import type { PolicyTerms } from "../../lib/policy/schema.ts";
-import { instant, json, uuid } from "../columns.ts";
-import { people } from "./people.ts";
+import {
+  bigint,
+  double,
+  index,
+  int,
+  mysqlEnum,
+  mysqlTable,
+  primaryKey,
+  text,
+  uniqueIndex,
+} from "drizzle-orm/mysql-core";
+import { POLICY_STATES } from "../../lib/policy/codes";
+import type { PolicyTerms } from "../../lib/policy/schema";
+import { instant, json, uuid } from "../columns";
+import { people } from "./people";
 
 export const policies = mysqlTable(
   "policies",

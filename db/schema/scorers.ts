@@ -1,5 +1,16 @@
 import { sql } from "drizzle-orm";
-import { bigint, check, index, int, mysqlEnum, mysqlTable, primaryKey, tinyint, uniqueIndex, varchar } from "drizzle-orm/mysql-core";
+import {
+  bigint,
+  check,
+  index,
+  int,
+  mysqlEnum,
+  mysqlTable,
+  primaryKey,
+  tinyint,
+  uniqueIndex,
+  varchar,
+} from "drizzle-orm/mysql-core";
 import { LABEL_KINDS } from "../../lib/decisions/codes";
 import type { ScorerOptions } from "../../lib/scorer";
 import { bytes, exactDouble, instant, json, uuid } from "../columns";
@@ -33,7 +44,9 @@ export const scorers = mysqlTable(
 export const scorerSnapshots = mysqlTable(
   "scorer_snapshots",
   {
-    scorerId: uuid().notNull().references(() => scorers.id),
+    scorerId: uuid()
+      .notNull()
+      .references(() => scorers.id),
     /** Place of the last label folded in. */
     place: bigint({ mode: "number" }).notNull(),
     state: bytes({}).notNull(),
@@ -51,7 +64,9 @@ export const labelLog = mysqlTable(
     seq: bigint({ mode: "number" }).primaryKey(),
     place: bigint({ mode: "number" }),
     kind: mysqlEnum(LABEL_KINDS).notNull(),
-    transactionId: uuid().notNull().references(() => transactions.id),
+    transactionId: uuid()
+      .notNull()
+      .references(() => transactions.id),
     caseId: uuid().references(() => cases.id),
     decisionId: uuid().references(() => decisions.id),
     outcomeId: uuid(),
@@ -77,6 +92,8 @@ export const labelLog = mysqlTable(
 /** Entities touched by a new label, whose waiting cases get fresh history signals. */
 export const signalRefreshes = mysqlTable("signal_refreshes", {
   id: bigint({ mode: "number" }).primaryKey().autoincrement(),
-  transactionId: uuid().notNull().references(() => transactions.id),
+  transactionId: uuid()
+    .notNull()
+    .references(() => transactions.id),
   createdAt: instant().notNull(),
 });

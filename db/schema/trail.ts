@@ -1,5 +1,5 @@
 import { bigint, index, int, mysqlEnum, mysqlTable, text, varchar } from "drizzle-orm/mysql-core";
-import { bytes, instant, uuid } from "../columns.ts";
+import { bytes, instant, uuid } from "../columns";
 
 /** Append-only: triggers refuse UPDATE and DELETE. Each hash covers the entry and the hash before it. */
 export const trail = mysqlTable(
