@@ -7,6 +7,8 @@ export type ChartLine = { decibans: number; name: string; proposed?: boolean };
 
 type ScoreChartProps = { recent: ScoreHistogram; lines: readonly ChartLine[] };
 
+/** Height of a line's name above the bars. */
+const LINE_NAME_REM = 1.2;
 const TICKS = [-30, -20, -10, 0, 10, 20, 30];
 
 /** How the recent scores lie along the axis of evidence, and where the lines cut them. */
@@ -14,7 +16,10 @@ export function ScoreChart({ recent, lines }: ScoreChartProps) {
   const bars = chartBars(recent);
   return (
     <figure>
-      <div className="relative mt-12 h-36 border-b border-edge">
+      <div
+        className="relative h-36 border-b border-edge"
+        style={{ marginTop: `${lines.length * LINE_NAME_REM + 0.4}rem` }}
+      >
         <svg
           role="img"
           aria-label={`Recent payments by evidence; ${lines.map(lineWords).join(", ")}`}
@@ -34,7 +39,7 @@ export function ScoreChart({ recent, lines }: ScoreChartProps) {
           ))}
         </svg>
         {lines.map((line, index) => (
-          <LineMark key={`${line.name}${line.proposed}`} line={line} row={index} />
+          <LineMark key={line.name} line={line} riseRem={(lines.length - index) * LINE_NAME_REM} />
         ))}
       </div>
       <div aria-hidden="true" className="relative h-6 text-small text-soft">
@@ -91,17 +96,19 @@ export function ScoreChart({ recent, lines }: ScoreChartProps) {
 
 const lineWords = ({ name, decibans }: ChartLine) => `${name} at ${signedDecibans(decibans)}`;
 
-/** A line with its name above it; proposed lines are dashed, and each name has a row of its own. */
-function LineMark({ line, row }: { line: ChartLine; row: number }) {
+type LineMarkProps = { line: ChartLine; riseRem: number };
+
+/** A line with its name above it, each at a height of its own, since lines may lie close; proposed ones are dashed. */
+function LineMark({ line, riseRem }: LineMarkProps) {
   const place = axisPlace(line.decibans);
-  const side = place > 0.7 ? "right-1" : "left-1";
+  const side = place > 0.6 ? "right-1.5" : "left-1.5";
   return (
     <div
       aria-hidden="true"
       className={`absolute bottom-0 border-l-2 border-ink ${line.proposed ? "border-dashed" : ""}`}
-      style={{ left: `${place * 100}%`, top: `${-0.6 - (1 - (row % 2)) * 1.2}rem` }}
+      style={{ left: `${place * 100}%`, top: `-${riseRem}rem` }}
     >
-      <span className={`absolute -top-1 ${side} text-small whitespace-nowrap`}>
+      <span className={`absolute -top-0.5 ${side} text-small whitespace-nowrap`}>
         {line.name} <span className="figures">{signedDecibans(line.decibans)}</span>
       </span>
     </div>
