@@ -11,5 +11,9 @@ export type MailSettings = {
 
 export function mailSettings(): MailSettings {
   const { SMTP_URL, MAIL_FROM, APP_URL } = environment();
-  return { smtpUrl: SMTP_URL, from: MAIL_FROM ?? `cupel@${new URL(APP_URL).hostname}`, appUrl: APP_URL };
+  return {
+    smtpUrl: SMTP_URL,
+    from: MAIL_FROM ?? `cupel@${new URL(APP_URL).hostname}`,
+    appUrl: APP_URL.replace(/\/$/, ""),
+  };
 }

@@ -1,0 +1,188 @@
+import {
+  Body,
+  Column,
+  Container,
+  Head,
+  Heading,
+  Hr,
+  Html,
+  Link,
+  Preview,
+  Row,
+  Section,
+  Text,
+} from "@react-email/components";
+import { render } from "@react-email/render";
+import type { CSSProperties } from "react";
+import type { WeekView } from "../lib/losses/schema";
+import { type SummaryRow, type SummarySection, type SummaryWords, summaryWords } from "./summary-words";
+
+export type WeeklySummaryProps = {
+  view: WeekView;
+  appUrl: string;
+  /** Page on which one click ends the summaries; null in a preview. */
+  unsubscribeUrl: string | null;
+};
+
+export type RenderedMail = { subject: string; html: string; text: string };
+
+/** The weekly summary as mail. Nothing in it is an image, and no colour carries meaning. */
+export async function weeklySummaryMail(props: WeeklySummaryProps): Promise<RenderedMail> {
+  const words = summaryWords(props.view);
+  return {
+    subject: words.subject,
+    html: await render(<WeeklySummary {...props} words={words} />),
+    text: plainText(words, props),
+  };
+}
+
+const ink = "#1f1d1a";
+const soft = "#57534c";
+const ground = "#f6f3ee";
+const accent = "#1f4f86";
+const family = "'Source Sans 3', 'Segoe UI', Helvetica, Arial, sans-serif";
+
+const styles = {
+  body: { margin: 0, backgroundColor: ground, color: ink, fontFamily: family },
+  container: { maxWidth: "560px", padding: "16px" },
+  title: { fontSize: "22px", lineHeight: "28px", margin: "8px 0 4px" },
+  heading: { fontSize: "16px", lineHeight: "22px", margin: "20px 0 4px" },
+  text: { fontSize: "15px", lineHeight: "22px", margin: "4px 0" },
+  note: { fontSize: "13px", lineHeight: "18px", margin: "0 0 4px", color: soft },
+  value: { fontSize: "15px", lineHeight: "22px", margin: "4px 0 0", fontWeight: 700 },
+  caution: { fontSize: "15px", lineHeight: "22px", margin: "12px 0", fontWeight: 700 },
+  link: { color: accent, textDecoration: "underline" },
+  rule: { borderColor: "#cfc8bc", margin: "20px 0 12px" },
+} satisfies Record<string, CSSProperties>;
+
+/** Clients that choose dark colours by themselves keep the contrast; those that ask get a pair of ours. */
+const darkStyles = `
+:root { color-scheme: light dark; supported-color-schemes: light dark; }
+@media (prefers-color-scheme: dark) {
+  .ground { background-color: #1b1a18 !important; color: #ece7df !important; }
+  .ink { color: #ece7df !important; }
+  .soft { color: #b8b1a6 !important; }
+  .accent { color: #9cc4f2 !important; }
+}`;
+
+function WeeklySummary({
+  words,
+  appUrl,
+  unsubscribeUrl,
+  view,
+}: WeeklySummaryProps & { words: SummaryWords }) {
+  return (
+    <Html lang="en-GB">
+      <Head>
+        <meta name="color-scheme" content="light dark" />
+        <meta name="supported-color-schemes" content="light dark" />
+        <title>{words.subject}</title>
+        <style>{darkStyles}</style>
+      </Head>
+      <Preview>{previewOf(words)}</Preview>
+      <Body className="ground" style={styles.body}>
+        <Container style={styles.container}>
+          <Heading as="h1" className="ink" style={styles.title}>
+            {words.title}
+          </Heading>
+          <Text className="ink" style={styles.text}>
+            {words.period}
+          </Text>
+          {words.cautions.map((caution) => (
+            <Text key={caution} className="ink" style={styles.caution}>
+              {caution}
+            </Text>
+          ))}
+          {words.sections.map((section) => (
+            <Figures key={section.heading} section={section} appUrl={appUrl} />
+          ))}
+          <Hr style={styles.rule} />
+          <Text className="ink" style={styles.text}>
+            <Link className="accent" style={styles.link} href={weekUrl(appUrl, view)}>
+              Open this week in Cupel
+            </Link>
+          </Text>
+          {unsubscribeUrl && (
+            <Text className="soft" style={styles.note}>
+              You get this every week because your risk manager put you on the list.{" "}
+              <Link className="accent" style={styles.link} href={unsubscribeUrl}>
+                Stop these summaries
+              </Link>
+            </Text>
+          )}
+        </Container>
+      </Body>
+    </Html>
+  );
+}
+
+function Figures({ section, appUrl }: { section: SummarySection; appUrl: string }) {
+  return (
+    <Section>
+      <Heading as="h2" className="ink" style={styles.heading}>
+        {section.heading}
+      </Heading>
+      {section.rows.length === 0 && (
+        <Text className="ink" style={styles.text}>
+          {section.empty}
+        </Text>
+      )}
+      {section.rows.map((row) => (
+        <Row key={row.label + row.value}>
+          <Column>
+            <Figure row={row} appUrl={appUrl} />
+          </Column>
+        </Row>
+      ))}
+    </Section>
+  );
+}
+
+/** Label, figure and note beneath one another: no column to squeeze in a narrow window. */
+function Figure({ row, appUrl }: { row: SummaryRow; appUrl: string }) {
+  return (
+    <>
+      <Text className="ink" style={styles.value}>
+        {row.path ? (
+          <Link className="accent" style={styles.link} href={appUrl + row.path}>
+            {row.label}
+          </Link>
+        ) : (
+          row.label
+        )}
+        : {row.value}
+      </Text>
+      {row.note && (
+        <Text className="soft" style={styles.note}>
+          {row.note}
+        </Text>
+      )}
+    </>
+  );
+}
+
+function plainText(words: SummaryWords, { appUrl, unsubscribeUrl, view }: WeeklySummaryProps): string {
+  const rows = (section: SummarySection) =>
+    section.rows.length === 0
+      ? [section.empty ?? ""]
+      : section.rows.flatMap((row) => [
+          `${row.label}: ${row.value}`,
+          ...(row.note ? [`  ${row.note}`] : []),
+          ...(row.path ? [`  ${appUrl}${row.path}`] : []),
+        ]);
+  const parts = [
+    [words.title, words.period],
+    ...(words.cautions.length > 0 ? [words.cautions] : []),
+    ...words.sections.map((section) => [section.heading.toUpperCase(), ...rows(section)]),
+    [`Open this week in Cupel: ${weekUrl(appUrl, view)}`],
+    ...(unsubscribeUrl ? [[`Stop these summaries: ${unsubscribeUrl}`]] : []),
+  ];
+  return `${parts.map((lines) => lines.join("\n")).join("\n\n")}\n`;
+}
+
+const weekUrl = (appUrl: string, { week, by }: WeekView) => `${appUrl}/losses?week=${week}&by=${by}`;
+
+function previewOf(words: SummaryWords): string {
+  const net = words.sections[0]?.rows.find((row) => row.label === "Net loss");
+  return net ? `Net loss ${net.value}` : words.period;
+}
