@@ -13,6 +13,7 @@ export const AUTHENTICATIONS = ["strong", "single", "none", "exempt"] as const;
 
 /** What the sender is told to do with the payment. */
 export const ACTIONS = ["pass", "review", "hold"] as const;
+export type Action = (typeof ACTIONS)[number];
 
 export const PAYMENT_STATES = [
   "pending",

@@ -1,0 +1,160 @@
+import "server-only";
+import { setImmediate } from "node:timers/promises";
+import type { Tx } from "@/db/client";
+import { isDuplicate } from "@/db/errors";
+import { demand } from "../auth/demand";
+import { casesChanged } from "../cases/notify";
+import type { Context } from "../context";
+import { readScorerInUse } from "../learning/held-scorer";
+import { policyInForce } from "../policy/read";
+import { appendTrail } from "../trail/append";
+import { writeOnce } from "../write-once";
+import { countArrivals } from "./arrival-days";
+import { findStored } from "./find-stored";
+import { readIntakeSettings } from "./intake-settings";
+import { type Payment, readItem } from "./read-item";
+import { acceptedResult, otherContentResult, rejectedResult } from "./results";
+import type { TransactionResult, TransactionsView } from "./schema";
+import { type ScoredPayment, scorePayments } from "./score-payments";
+import { type ScoredUnder, storePayments } from "./store-payments";
+
+export type Batch = {
+  source: string;
+  /** As sent; every one is checked on its own. */
+  items: readonly unknown[];
+  /** Runs inside the transaction, before its trail entry, so that it commits with the payments or not at all. */
+  alongside?: (tx: Tx, results: readonly TransactionResult[]) => Promise<void>;
+};
+
+/** Two senders of the same identifier at once: the slower one finds the other's payment the next time round. */
+const RACES_AT_MOST = 5;
+const ITEMS_IN_A_ROW = 200;
+
+/**
+ * Takes payments in: checks, scores, zones, and in one transaction stores them, opens cases and says so in the trail.
+ * @returns one result per item, in order; a bad item costs no other
+ */
+export async function receiveTransactions(ctx: Context, batch: Batch): Promise<TransactionResult[]> {
+  return (await receiveBatch(ctx, batch)).results;
+}
+
+/** As `receiveTransactions`, as the answer of the API, which an Idempotency-Key keeps whole. */
+export async function receiveBatch(ctx: Context, batch: Batch): Promise<TransactionsView> {
+  demand(ctx, "intake.send");
+  for (let attempt = 1; ; attempt++) {
+    const prepared = await prepare(ctx, batch);
+    let opened: string[] = [];
+    try {
+      const answer = await writeOnce(ctx, async (tx) => {
+        const { results, caseIds } = await store(ctx, tx, prepared, batch);
+        opened = caseIds;
+        return { results };
+      });
+      casesChanged(opened);
+      return answer;
+    } catch (error) {
+      if (attempt >= RACES_AT_MOST || !isDuplicate(error)) throw error;
+    }
+  }
+}
+
+/** An item's result where it is known already, or its place among the payments to store. */
+type Slot = { result: TransactionResult } | { place: number; isRepeat: boolean };
+type Prepared = { slots: Slot[]; scored: ScoredPayment[]; under: ScoredUnder };
+
+async function prepare(ctx: Context, { source, items }: Batch): Promise<Prepared> {
+  const now = ctx.now();
+  const [settings, policy, held] = await Promise.all([
+    readIntakeSettings(ctx.db, source, now),
+    policyInForce(ctx.db, now),
+    readScorerInUse(ctx.db),
+  ]);
+  const { slots, payments } = await sort(ctx, source, items, settings.exempt, now);
+  const scored = await scorePayments(ctx.db, payments, held, policy, settings.sampleSecret, now);
+  return { slots, scored, under: { policy, scorerVersion: held.version, source, now } };
+}
+
+/** Tells bad items, repeats of stored payments and repeats within the batch from new payments. */
+async function sort(
+  ctx: Context,
+  source: string,
+  items: readonly unknown[],
+  exempt: ReadonlySet<string>,
+  now: Date,
+): Promise<{ slots: Slot[]; payments: Payment[] }> {
+  const read = [];
+  for (const [index, item] of items.entries()) {
+    if (index % ITEMS_IN_A_ROW === ITEMS_IN_A_ROW - 1) await setImmediate();
+    read.push(readItem(item, now, exempt));
+  }
+  const sound = read.flatMap((item) => ("payment" in item ? item.payment.externalId : []));
+  const stored = await findStored(ctx.db, source, sound);
+  const payments: Payment[] = [];
+  const places = new Map<string, number>();
+  const slots = read.map((item): Slot => {
+    if ("errors" in item) return { result: rejectedResult(item.externalId, item.errors) };
+    const { payment } = item;
+    const known = stored.get(payment.externalId);
+    if (known) {
+      const isSame = known.contentHash.equals(payment.contentHash);
+      return { result: isSame ? known.result : otherContentResult(payment.externalId) };
+    }
+    const place = places.get(payment.externalId);
+    if (place === undefined) {
+      places.set(payment.externalId, payments.length);
+      return { place: payments.push(payment) - 1, isRepeat: false };
+    }
+    const isSame = payments[place]?.contentHash.equals(payment.contentHash) ?? false;
+    return isSame ? { place, isRepeat: true } : { result: otherContentResult(payment.externalId) };
+  });
+  return { slots, payments };
+}
+
+async function store(
+  ctx: Context,
+  tx: Tx,
+  { slots, scored, under }: Prepared,
+  { source, alongside }: Batch,
+): Promise<{ results: TransactionResult[]; caseIds: string[] }> {
+  const cases = await storePayments(tx, scored, under);
+  const accepted = scored.map((one) =>
+    acceptedResult("created", {
+      externalId: one.payment.externalId,
+      transactionId: one.id,
+      action: one.action,
+      logit: one.logit,
+      holdExpiresAt: one.holdExpiresAt,
+      caseId: cases.get(one.id) ?? null,
+      policyVersion: under.policy.version,
+      scorerVersion: under.scorerVersion,
+    }),
+  );
+  const results = slots.map((slot) => {
+    if ("result" in slot) return slot.result;
+    const created = accepted[slot.place] as TransactionResult;
+    return slot.isRepeat ? { ...created, status: "duplicate" as const } : created;
+  });
+  await countArrivals(
+    tx,
+    scored.map((one) => ({ occurredAt: one.payment.occurredAt, passed: one.zone === "pass" })),
+  );
+  await alongside?.(tx, results);
+  const count = (status: TransactionResult["status"]) =>
+    results.filter((each) => each.status === status).length;
+  await appendTrail(ctx, tx, {
+    act: "transactions.received",
+    subjectKind: "source",
+    subjectId: source,
+    facts: {
+      created: count("created"),
+      duplicates: count("duplicate"),
+      rejected: count("rejected"),
+      casesOpened: cases.size,
+      firstTransactionId: scored[0]?.id ?? null,
+      lastTransactionId: scored.at(-1)?.id ?? null,
+      policyVersion: under.policy.version,
+      scorerVersion: under.scorerVersion,
+    },
+  });
+  return { results, caseIds: [...cases.values()] };
+}
