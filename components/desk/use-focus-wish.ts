@@ -1,5 +1,5 @@
 "use client";
-import { type RefObject, useRef } from "react";
+import { type RefObject, useCallback, useRef } from "react";
 
 export type FocusWish = {
   heading: RefObject<HTMLHeadingElement | null>;
@@ -15,17 +15,14 @@ export type FocusWish = {
 export function useFocusWish(): FocusWish {
   const heading = useRef<HTMLHeadingElement>(null);
   const wished = useRef(true);
-  const now = () => heading.current?.focus({ preventScroll: true });
-  return {
-    heading,
-    wish: () => {
-      wished.current = true;
-    },
-    now,
-    fulfil: () => {
-      if (!wished.current || !heading.current) return;
-      wished.current = false;
-      now();
-    },
-  };
+  const now = useCallback(() => heading.current?.focus({ preventScroll: true }), []);
+  const wish = useCallback(() => {
+    wished.current = true;
+  }, []);
+  const fulfil = useCallback(() => {
+    if (!wished.current || !heading.current) return;
+    wished.current = false;
+    now();
+  }, [now]);
+  return { heading, wish, now, fulfil };
 }

@@ -1,6 +1,6 @@
 "use client";
 import * as Radix from "@radix-ui/react-dialog";
-import type { ReactNode } from "react";
+import { type ReactNode, useRef } from "react";
 
 type DialogProps = {
   open: boolean;
@@ -20,6 +20,7 @@ type DialogProps = {
 export function Dialog(props: DialogProps) {
   const { open, onOpenChange, title, description, children, footer } = props;
   const { mustAnswer = false, wide = false, opaque = false } = props;
+  const before = useRef<Element | null>(null);
   const hold = mustAnswer ? (event: Event) => event.preventDefault() : undefined;
   return (
     <Radix.Root open={open} onOpenChange={onOpenChange}>
@@ -27,6 +28,14 @@ export function Dialog(props: DialogProps) {
         <Radix.Overlay className={`fixed inset-0 z-40 ${opaque ? "bg-sunk" : "bg-[rgb(20_18_14/0.45)]"}`} />
         <Radix.Content
           {...(description === undefined && { "aria-describedby": undefined })}
+          onOpenAutoFocus={() => {
+            before.current = document.activeElement;
+          }}
+          onCloseAutoFocus={(event) => {
+            // These dialogs are opened by keys as often as by buttons, so there is no trigger to go back to.
+            event.preventDefault();
+            if (before.current instanceof HTMLElement) before.current.focus({ preventScroll: true });
+          }}
           onEscapeKeyDown={hold}
           onPointerDownOutside={hold}
           className={`fixed top-[12vh] left-1/2 z-50 max-h-[80vh] w-[calc(100vw-2rem)] -translate-x-1/2 overflow-y-auto rounded-edge border border-edge bg-paper p-5 shadow-lifted ${wide ? "max-w-3xl" : "max-w-lg"}`}
