@@ -2,7 +2,7 @@
 import Link from "next/link";
 import type { EvidenceView, LinkedCase } from "@/lib/cases/schema";
 import { Amount } from "../ui/amount";
-import { Decibans, percentOf } from "../ui/probability";
+import { Decibans, Probability } from "../ui/probability";
 import { Time } from "../ui/time";
 import { CASE_STATE_WORDS, CHANNEL_WORDS, VERDICT_WORDS } from "../words";
 import { type LinkGroup, linkGroups } from "./link-groups";
@@ -112,7 +112,13 @@ function LinkRow({ link, showScore, ticks }: { link: LinkedCase; showScore: bool
       </td>
       <td className="py-1 pr-3 max-sm:hidden">{CHANNEL_WORDS[link.channel]}</td>
       <td className="py-1 pr-3">{findingOf(link)}</td>
-      {showScore && <td className="figures py-1 text-right max-sm:hidden">{percentOf(link.probability)}</td>}
+      {showScore && (
+        <td className="py-1 text-right max-sm:hidden">
+          <span title="Score when it was last taken">
+            <Probability probability={link.probability} />
+          </span>
+        </td>
+      )}
     </tr>
   );
 }

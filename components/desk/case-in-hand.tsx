@@ -79,14 +79,16 @@ export function CaseInHand(props: CaseInHandProps) {
               onCommand={commands.run}
               onHelp={() => commands.setDialog("shortcuts")}
             />
-            <div className="min-h-44">
-              {evidence && <SignalBars key={hand.caseId} evidence={evidence} most={BARS} />}
-            </div>
+            {evidence && (
+              <div className="min-h-44">
+                <SignalBars key={hand.caseId} evidence={evidence} most={BARS} />
+              </div>
+            )}
           </>
         )}
       </section>
       {hand ? (
-        <div className="min-h-0 overflow-y-auto px-4 py-3 sm:px-6">
+        <div ref={commands.facts} className="min-h-0 overflow-y-auto px-4 py-3 sm:px-6">
           <CaseHead view={hand} headingRef={focus.heading} />
           <div className="mt-3 grid gap-x-8 gap-y-5 2xl:grid-cols-[minmax(0,3fr)_minmax(0,2fr)]">
             <div className="flex min-w-0 flex-col gap-5">

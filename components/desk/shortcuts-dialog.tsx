@@ -40,7 +40,7 @@ export function ShortcutsDialog({ open, onClose, shortcuts, onChange }: Shortcut
       description="Single keys work while the focus is on the case, by their place on the keyboard. Kept in this browser."
       footer={
         <>
-          <Button onClick={() => onChange(DEFAULT_SHORTCUTS)}>Put back as they came</Button>
+          <Button onClick={() => onChange(DEFAULT_SHORTCUTS)}>Back to the defaults</Button>
           <Button look="action" onClick={onClose}>
             Done
           </Button>

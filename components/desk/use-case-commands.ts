@@ -39,10 +39,12 @@ export function useCaseCommands({ desk, focus, say, scoreHidden, setScoreHidden 
   const [shortcuts, setShortcuts] = useShortcuts();
   const links = useRef<HTMLElement>(null);
   const note = useRef<HTMLTextAreaElement>(null);
+  const facts = useRef<HTMLDivElement>(null);
   const appearedMs = useRef(0);
   const { fulfil } = focus;
   useLayoutEffect(() => {
     appearedMs.current = performance.now();
+    if (facts.current) facts.current.scrollTop = 0;
     if (caseId !== null) fulfil();
   }, [caseId, fulfil]);
 
@@ -118,6 +120,7 @@ export function useCaseCommands({ desk, focus, say, scoreHidden, setScoreHidden 
     keys,
     links,
     note,
+    facts,
     finding,
     dialog,
     setDialog,
