@@ -11,10 +11,13 @@ import { detailOf, type Facts } from "./timeline";
 const MOST_ENTRIES = 200;
 const OURSELVES = "Cupel";
 
-type Opened = { id: string; kind: string; zone: string; openedAt: Date };
+type Timed = { id: string; kind: string; zone: string; state: string; openedAt: Date; changedAt: Date };
 
-/** What the trail holds about a case, oldest first, after how it began. */
-export async function readTimeline(db: Executor, opened: Opened): Promise<z.infer<typeof TimelineEntry>[]> {
+/**
+ * What the trail holds about a case, oldest first, between how it began and how it ended by itself: cases are opened
+ * and lapse by the batch, with one entry for all of them.
+ */
+export async function readTimeline(db: Executor, row: Timed): Promise<z.infer<typeof TimelineEntry>[]> {
   const entries = await db
     .select({
       at: trail.at,
@@ -24,7 +27,7 @@ export async function readTimeline(db: Executor, opened: Opened): Promise<z.infe
       facts: trail.facts,
     })
     .from(trail)
-    .where(eq(trail.caseId, opened.id))
+    .where(eq(trail.caseId, row.id))
     .orderBy(asc(trail.seq))
     .limit(MOST_ENTRIES);
   const parsed = entries.map((entry) => ({ ...entry, facts: JSON.parse(entry.facts) as Facts }));
@@ -32,10 +35,10 @@ export async function readTimeline(db: Executor, opened: Opened): Promise<z.infe
   const nameOf = (personId: unknown) => names.get(String(personId)) ?? null;
   return [
     {
-      at: opened.openedAt.toISOString(),
+      at: row.openedAt.toISOString(),
       act: "case.opened",
       by: OURSELVES,
-      detail: `${opened.kind}, zone ${opened.zone}`,
+      detail: `${row.kind}, zone ${row.zone}`,
     },
     ...parsed.map(({ at, act, actorId, onBehalfOf, facts }) => ({
       at: at.toISOString(),
@@ -43,6 +46,9 @@ export async function readTimeline(db: Executor, opened: Opened): Promise<z.infe
       by: nameOf(onBehalfOf ?? actorId) ?? OURSELVES,
       detail: detailOf(act, facts, nameOf),
     })),
+    ...(row.state === "lapsed"
+      ? [{ at: row.changedAt.toISOString(), act: "case.lapsed", by: OURSELVES, detail: null }]
+      : []),
   ];
 }
 

@@ -1,0 +1,164 @@
+import "server-only";
+import { and, asc, eq, inArray, type SQL, sql } from "drizzle-orm";
+import type { Tx } from "@/db/client";
+import { vectorToBytes } from "@/db/columns";
+import { cases } from "@/db/schema/cases";
+import { signalRefreshes } from "@/db/schema/scorers";
+import { scores, transactions } from "@/db/schema/transactions";
+import { inTransaction } from "@/db/tx";
+import { demand } from "../auth/demand";
+import type { Context } from "../context";
+import { readScorerInUse } from "../learning/held-scorer";
+import { policyInForce } from "../policy/read";
+import { zoneOf } from "../policy/rules";
+import { thresholdsInForce } from "../policy/thresholds";
+import { SIGNAL_SET_VERSION } from "../signals/catalogue";
+import { recomputeVectors } from "../signals/recompute";
+import type { SignalVector } from "../signals/vectors";
+import { UNDECIDED_STATES } from "./codes";
+import { casesChanged } from "./notify";
+
+/** Labels whose linked cases are refreshed in one go. */
+const LABELS_IN_BATCH = 20;
+/** A counterparty may have taken part in any number of payments; the newest are looked at. */
+const NEWEST_OF_ENTITY = 2_000;
+const MOST_REFRESHED = 500;
+
+type Linked = { caseId: string; transactionId: string; vector: Buffer };
+
+/**
+ * Gives waiting cases that share an account, card, device or counterparty with a newly labelled payment their history
+ * signals anew, as a further score. What was scored before stays; the case's revision does not rise.
+ * The wish to refresh is written with the label and goes with the new scores, so that a crash in between loses nothing.
+ */
+export async function refreshLinkedCases(ctx: Context, signal: AbortSignal): Promise<void> {
+  demand(ctx, "desk.work");
+  while (!signal.aborted) {
+    const [first] = await ctx.db
+      .select({ id: signalRefreshes.id })
+      .from(signalRefreshes)
+      .orderBy(asc(signalRefreshes.id))
+      .limit(1);
+    if (!first) return;
+    const refreshed = await inTransaction(ctx.db, (tx) => refreshBatch(ctx, tx, first.id));
+    if (refreshed === null) return;
+    casesChanged(refreshed);
+  }
+}
+
+/** @returns the refreshed cases, or null while another server is at it: one at a time, or older signals might win */
+async function refreshBatch(ctx: Context, tx: Tx, firstId: number): Promise<string[] | null> {
+  const wishes = await tx
+    .select()
+    .from(signalRefreshes)
+    .orderBy(asc(signalRefreshes.id))
+    .limit(LABELS_IN_BATCH)
+    .for("update", { skipLocked: true });
+  if (wishes[0]?.id !== firstId) return null;
+  const labelled = [...new Set(wishes.map(({ transactionId }) => transactionId))];
+  const linked = await findLinked(tx, labelled);
+  const vectors = await recomputeVectors(
+    ctx.db,
+    linked.map(({ transactionId }) => transactionId),
+  );
+  const changed = linked.filter(({ transactionId, vector }) => {
+    const fresh = vectors.get(transactionId);
+    return fresh !== undefined && !vectorToBytes(fresh.vector).equals(vector);
+  });
+  await writeScores(ctx, tx, changed, vectors);
+  await tx.delete(signalRefreshes).where(
+    inArray(
+      signalRefreshes.id,
+      wishes.map(({ id }) => id),
+    ),
+  );
+  return changed.map(({ caseId }) => caseId);
+}
+
+/** Waiting cases that share an entity with one of the payments, the newest payments of each entity. */
+async function findLinked(tx: Tx, labelled: readonly string[]): Promise<Linked[]> {
+  if (labelled.length === 0) return [];
+  const payments = await tx
+    .select({
+      accountId: transactions.accountId,
+      cardRef: transactions.cardRef,
+      deviceId: transactions.deviceId,
+      counterpartyId: transactions.counterpartyId,
+    })
+    .from(transactions)
+    .where(inArray(transactions.id, [...labelled]));
+  const keys = new Map<string, SQL>();
+  for (const payment of payments) {
+    for (const column of ["accountId", "cardRef", "deviceId", "counterpartyId"] as const) {
+      const key = payment[column];
+      if (key !== null) keys.set(`${column} ${key}`, newestOf(column, key));
+    }
+  }
+  const rows = await tx
+    .select({ caseId: cases.id, transactionId: cases.transactionId, vector: scores.vector })
+    .from(cases)
+    .innerJoin(scores, eq(scores.id, cases.scoreId))
+    .where(
+      and(
+        sql`${cases.transactionId} in (select id from (${sql.join([...keys.values()], sql` union `)}) linked)`,
+        inArray(cases.state, [...UNDECIDED_STATES]),
+      ),
+    )
+    .limit(MOST_REFRESHED);
+  return rows;
+}
+
+function newestOf(column: "accountId" | "cardRef" | "deviceId" | "counterpartyId", key: string): SQL {
+  return sql`(select id from ${transactions} where ${transactions[column]} = ${key}
+    order by ${transactions.occurredAt} desc limit ${sql.raw(String(NEWEST_OF_ENTITY))})`;
+}
+
+async function writeScores(
+  ctx: Context,
+  tx: Tx,
+  changed: readonly Linked[],
+  vectors: ReadonlyMap<string, SignalVector>,
+): Promise<void> {
+  if (changed.length === 0) return;
+  const now = ctx.now();
+  const policy = await policyInForce(tx, now);
+  const thresholds = await thresholdsInForce(tx, policy, now);
+  const { scorer, version } = await readScorerInUse(tx);
+  const inserted = await tx
+    .insert(scores)
+    .values(
+      changed.map(({ transactionId }) => {
+        const { vector, missing } = vectors.get(transactionId) as SignalVector;
+        const { logit, leverage } = scorer.score(vector);
+        return {
+          transactionId,
+          kind: "refresh" as const,
+          takenAt: now,
+          vector: vectorToBytes(vector),
+          missing: Buffer.from(missing),
+          signalSetVersion: SIGNAL_SET_VERSION,
+          scorerVersion: version,
+          policyVersion: policy.version,
+          logit,
+          leverage,
+          zone: zoneOf(logit, thresholds),
+        };
+      }),
+    )
+    .$returningId();
+  const caseIds = changed.map(({ caseId }) => caseId);
+  await tx
+    .select({ id: cases.id })
+    .from(cases)
+    .where(inArray(cases.id, caseIds))
+    .orderBy(asc(cases.id))
+    .for("update");
+  // One that was decided meanwhile keeps the score its verdict was given on.
+  await tx.execute(sql`
+    update ${cases} join ${scores} on ${scores.transactionId} = ${cases.transactionId}
+    set ${cases.scoreId} = ${scores.id}, ${cases.changedAt} = ${now}
+    where ${inArray(
+      scores.id,
+      inserted.map(({ id }) => id),
+    )} and ${inArray(cases.state, [...UNDECIDED_STATES])}`);
+}
