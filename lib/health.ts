@@ -39,7 +39,8 @@ async function holds(part: string, check: () => Promise<unknown>): Promise<boole
   }
 }
 
-async function refuseOldSchema(db: Database): Promise<void> {
+/** @throws Error while the database lacks migrations that this code needs */
+export async function refuseOldSchema(db: Database): Promise<void> {
   const newest = Math.max(...journal.entries.map((entry) => entry.when));
   const [last] = await db.select().from(applied).orderBy(desc(applied.createdAt)).limit(1);
   if (!last?.createdAt || last.createdAt < newest) throw new Error("The database is behind its migrations");

@@ -1,12 +1,13 @@
 import "server-only";
 import { and, eq } from "drizzle-orm";
 import type { Database } from "@/db/client";
-import { databaseErrno, isDuplicate } from "@/db/errors";
+import { isDuplicate } from "@/db/errors";
 import { jobRuns } from "@/db/schema/cases";
 import type { Context } from "../context";
 import type { Job } from "../job";
 import { log } from "../log";
 import { newId } from "../new-id";
+import { faultOf } from "./fault";
 
 export type JobEnvironment = { db: Database; now: () => Date };
 
@@ -34,7 +35,7 @@ export async function runJob(
     await job.run(ctx, signal);
   } catch (error) {
     log.error({ job: job.name, slot, requestId: ctx.requestId, error: faultOf(error) }, "A job failed");
-    problem = `${error instanceof Error ? error.name : "Error"}; the log has it under ${ctx.requestId}`;
+    problem = `${faultOf(error).name}; the log has it under ${ctx.requestId}`;
   }
   if (slot !== null) {
     await db
@@ -53,11 +54,4 @@ async function claimSlot(db: Database, job: string, slot: string, startedAt: Dat
     if (isDuplicate(error)) return false;
     throw error;
   }
-}
-
-/** Where it happened and what kind it was. The text of a database error repeats the values of its query. */
-function faultOf(error: unknown) {
-  if (!(error instanceof Error)) return { name: typeof error };
-  const frames = error.stack?.split("\n").filter((line) => /^\s+at /.test(line));
-  return { name: error.name, errno: databaseErrno(error), stack: frames?.slice(0, 12).join("\n") };
 }

@@ -1,0 +1,6 @@
+/** Called once when the server starts, before its first request. */
+export async function register(): Promise<void> {
+  if (process.env.NEXT_RUNTIME !== "nodejs") return;
+  const { startServerWork } = await import("./lib/jobs/start");
+  startServerWork();
+}

@@ -1,0 +1,17 @@
+import "server-only";
+import type { Context } from "../context";
+import { refuseOldSchema } from "../health";
+import { ensureScorerInUse } from "../learning/install";
+import { ensureFirstAdministrator } from "../people/first-administrator";
+import { ensureFirstPolicy } from "../policy/install";
+
+/**
+ * What must be there before a server works by itself: the schema it knows, a policy, a scorer, and the administrator
+ * that the environment names. Servers that start together agree. @throws Error that says what is missing
+ */
+export async function prepareInstallation(ctx: Context): Promise<void> {
+  await refuseOldSchema(ctx.db);
+  await ensureFirstPolicy(ctx);
+  await ensureFirstAdministrator(ctx);
+  await ensureScorerInUse(ctx);
+}

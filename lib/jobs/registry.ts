@@ -1,0 +1,9 @@
+import "server-only";
+import { importJobs } from "../imports/jobs";
+import type { Job } from "../job";
+import { lossJobs } from "../losses/jobs";
+import { mailJobs } from "../mail/jobs";
+import { housekeepingJobs } from "./housekeeping";
+
+/** Everything the server does by itself. A domain lists its own in its `jobs.ts`. */
+export const JOBS: readonly Job[] = [...importJobs, ...mailJobs, ...lossJobs, ...housekeepingJobs];
