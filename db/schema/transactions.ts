@@ -189,7 +189,10 @@ export const imports = mysqlTable(
     casesOpened: int().notNull().default(0),
     problem: varchar({ length: 400 }),
     leaseOwner: varchar({ length: 64 }),
+    /** While it is received: until when a next piece must have come. While it is read: until when it is ours. */
     leaseExpiresAt: instant(),
+    /** Times it was taken up since the last batch that was committed. */
+    attempts: int().notNull().default(0),
   },
   (table) => [index("imports_state").on(table.state, table.createdAt)],
 );

@@ -1,0 +1,1 @@
+ALTER TABLE `imports` ADD `attempts` int DEFAULT 0 NOT NULL;
