@@ -1,3 +1,4 @@
+import "server-only";
 import type { Scorer, Step } from "../../scorer";
 import { countMove, type Movement, noMovement } from "./movement";
 import { Breath } from "./turns";
