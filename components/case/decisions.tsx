@@ -1,9 +1,16 @@
+import Link from "next/link";
 import type { CaseView } from "@/lib/cases/schema";
 import { Time } from "../ui/time";
 import { CONFIDENCE_WORDS, DECISION_KIND_WORDS, TYPOLOGY_WORDS, VERDICT_WORDS } from "../words";
 
+type DecisionsProps = {
+  decisions: CaseView["decisions"];
+  /** Each with a link to the record of what was shown with it. */
+  linked?: boolean;
+};
+
 /** Every verdict the case ever had; what no longer stands is struck through and says why. */
-export function Decisions({ decisions }: { decisions: CaseView["decisions"] }) {
+export function Decisions({ decisions, linked = false }: DecisionsProps) {
   if (decisions.length === 0) return <p className="text-soft">Not decided yet.</p>;
   return (
     <ul className="flex flex-col gap-2">
@@ -23,6 +30,17 @@ export function Decisions({ decisions }: { decisions: CaseView["decisions"] }) {
             {decision.undoneAt && (
               <>
                 ; taken back <Time at={decision.undoneAt} />
+              </>
+            )}
+            {linked && (
+              <>
+                {". "}
+                <Link
+                  href={`/trail/decisions/${decision.decisionId}`}
+                  className="underline decoration-edge underline-offset-2"
+                >
+                  As it was made
+                </Link>
               </>
             )}
           </p>

@@ -12,12 +12,18 @@ import { useLiveQueue } from "./use-live-queue";
 import { useRankedList, useRug } from "./use-ranked-list";
 import { useScoreHidden } from "./use-score-hidden";
 
+type DeskProps = {
+  personId: string;
+  /** Asked for by a link: comes to hand first. */
+  wantedCaseId: string | null;
+};
+
 /** The reviewer's bench: the axis across the top, the case in hand beneath, the ranked list beside it. */
-export function Desk({ personId }: { personId: string }) {
+export function Desk({ personId, wantedCaseId }: DeskProps) {
   const [line, say] = useQuietLine();
   const list = useRankedList();
   const rug = useRug(list);
-  const desk = useDesk(personId, say, list.afterMove);
+  const desk = useDesk(personId, wantedCaseId, say, list.afterMove);
   const focus = useFocusWish();
   const [scoreHidden, setScoreHidden] = useScoreHidden();
   const [paused, setPaused] = useState(false);

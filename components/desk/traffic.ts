@@ -7,17 +7,18 @@ import type { Sent } from "./desk-state";
 export const takeNext = (notThese: readonly string[]): Promise<CaseView | null> =>
   api("POST /api/queue/next", { notThese: notThese.slice(-10) });
 
-/** Cases this person holds already, as after the page was loaded anew. */
-export async function listHeld(personId: string): Promise<string[]> {
-  const mine = await api("GET /api/queue", { assignee: "me", state: "claimed", limit: 10 });
-  return (mine?.items ?? []).filter((item) => item.claimedBy?.id === personId).map((item) => item.caseId);
-}
-
 export const readCase = (caseId: string) => api("GET /api/cases/{id}", { id: caseId }) as Promise<CaseView>;
 
 export async function claimAndRead(caseId: string): Promise<CaseView> {
   await api("POST /api/cases/{id}/claim", { id: caseId });
   return readCase(caseId);
+}
+
+/** Cases this person holds already, as after the page was loaded anew, with their leases renewed. @throws ApiProblem */
+export async function readHeld(personId: string): Promise<CaseView[]> {
+  const mine = await api("GET /api/queue", { assignee: "me", state: "claimed", limit: 10 });
+  const held = (mine?.items ?? []).filter((item) => item.claimedBy?.id === personId);
+  return Promise.all(held.map((item) => claimAndRead(item.caseId)));
 }
 
 /** A lost answer is asked for again under the same key: the server gives the one it gave before. */

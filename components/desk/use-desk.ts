@@ -15,7 +15,7 @@ import {
 } from "./desk-state";
 import { movedLine } from "./moved-line";
 import type { Say } from "./quiet-line";
-import { claimAndRead, deliver, listHeld, problemWords, readCase, stillMine, takeNext } from "./traffic";
+import { claimAndRead, deliver, problemWords, readCase, readHeld, stillMine, takeNext } from "./traffic";
 import { useDrafts } from "./use-drafts";
 import { useLeases } from "./use-leases";
 
@@ -35,13 +35,13 @@ export type Desk = {
 };
 
 /** The Desk's cases and what is on its way to the server. `onMoved` is told when the ranking has changed by own doing. */
-export function useDesk(personId: string, say: Say, onMoved: () => void): Desk {
+export function useDesk(personId: string, wantedCaseId: string | null, say: Say, onMoved: () => void): Desk {
   const [state, dispatch] = useReducer(deskReducer, EMPTY_DESK);
   const latest = useRef(state);
   useEffect(() => {
     latest.current = state;
   }, [state]);
-  useSupply(personId, state, dispatch, say);
+  useSupply({ personId, wantedCaseId }, state, dispatch, say);
   const keepDraft = useDrafts(state, say);
   useLeases(state, dispatch, keepDraft, say);
 
@@ -114,8 +114,10 @@ export function useDesk(personId: string, say: Say, onMoved: () => void): Desk {
 
 type Dispatch = (event: DeskEvent) => void;
 
+type SupplyFor = { personId: string; wantedCaseId: string | null };
+
 /** Keeps one case in hand and one claimed and loaded at the elbow, so that a key press need not wait for the server. */
-function useSupply(personId: string, state: DeskState, dispatch: Dispatch, say: Say) {
+function useSupply({ personId, wantedCaseId }: SupplyFor, state: DeskState, dispatch: Dispatch, say: Say) {
   const asking = useRef(false);
   const resumed = useRef(false);
   const { ready, sent, putBack, dry } = state;
@@ -126,10 +128,10 @@ function useSupply(personId: string, state: DeskState, dispatch: Dispatch, say: 
     const onTheirWay = sent.filter((one) => one.state === "sending").map((one) => one.case.caseId);
     const notThese = [...putBack, ...onTheirWay, ...ready.map((one) => one.caseId)];
     const supply = async () => {
-      const held = resumed.current ? [] : await listHeld(personId);
+      if (resumed.current) return [await takeNext(notThese)];
       resumed.current = true;
-      if (held.length === 0) return [await takeNext(notThese)];
-      return Promise.all(held.map(claimAndRead));
+      const first = await firstCases(personId, wantedCaseId, say);
+      return first.length > 0 ? first : [await takeNext(notThese)];
     };
     supply().then(
       (found) => {
@@ -142,7 +144,21 @@ function useSupply(personId: string, state: DeskState, dispatch: Dispatch, say: 
         say(`No next case: ${problemWords(error)}.`, true);
       },
     );
-  }, [personId, wanted, ready, sent, putBack, dispatch, say]);
+  }, [personId, wantedCaseId, wanted, ready, sent, putBack, dispatch, say]);
+}
+
+/** What the Desk opens with: the case a link asked for, and those that this person holds already. */
+async function firstCases(personId: string, wantedCaseId: string | null, say: Say): Promise<CaseView[]> {
+  const wanted: CaseView[] = [];
+  if (wantedCaseId !== null) {
+    try {
+      wanted.push(await claimAndRead(wantedCaseId));
+    } catch (error) {
+      say(`The case you came for cannot be taken in hand: ${problemWords(error)}.`, true);
+    }
+  }
+  const held = await readHeld(personId);
+  return [...wanted, ...held.filter((one) => one.caseId !== wantedCaseId)];
 }
 
 /** Brings a case on the Desk up to date; where it has gone from view it is dropped. */
