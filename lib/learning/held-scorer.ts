@@ -20,12 +20,18 @@ export type HeldScorer = {
 
 /** @throws Error on an installation without a scorer */
 export async function readScorerInUse(db: Executor): Promise<HeldScorer> {
-  return toHeld(await db.select().from(scorers).where(eq(scorers.inUse, 1)).limit(1));
+  return orThrow(await findScorerInUse(db));
+}
+
+export async function findScorerInUse(db: Executor): Promise<HeldScorer | null> {
+  const [row] = await db.select().from(scorers).where(eq(scorers.inUse, 1)).limit(1);
+  return row ? toHeld(row) : null;
 }
 
 /** Locks the scorer in use until the transaction ends. Case rows must be locked before it, the trail's head after. */
 export async function lockScorerInUse(tx: Tx): Promise<HeldScorer> {
-  return toHeld(await tx.select().from(scorers).where(eq(scorers.inUse, 1)).limit(1).for("update"));
+  const [row] = await tx.select().from(scorers).where(eq(scorers.inUse, 1)).limit(1).for("update");
+  return orThrow(row ? toHeld(row) : null);
 }
 
 /** Writes the advanced state back, once, at the end of the learning steps of a transaction. */
@@ -42,9 +48,12 @@ export async function saveScorer(tx: Tx, held: HeldScorer, now: Date): Promise<v
     .where(eq(scorers.id, held.id));
 }
 
-function toHeld(rows: (typeof scorers.$inferSelect)[]): HeldScorer {
-  const [row] = rows;
-  if (!row) throw new Error("No scorer is in use; the installation is not set up");
+function orThrow(held: HeldScorer | null): HeldScorer {
+  if (!held) throw new Error("No scorer is in use; the installation is not set up");
+  return held;
+}
+
+function toHeld(row: typeof scorers.$inferSelect): HeldScorer {
   const { id, name, version, logSeq, signalSetVersion, cumulativeLoss, state } = row;
   return { id, name, version, logSeq, signalSetVersion, cumulativeLoss, scorer: restoreScorer(state) };
 }

@@ -1,8 +1,11 @@
 import "server-only";
+import { setImmediate } from "node:timers/promises";
 import { and, count, desc, eq, gte, max, type SQL, sql } from "drizzle-orm";
 import type { Executor } from "@/db/client";
+import { bytesToVector } from "@/db/columns";
 import { scores, transactions } from "@/db/schema/transactions";
 import { natsToDecibans } from "../decibans";
+import type { Scorer } from "../scorer";
 import { cutBelow, daysSpanned } from "./capacity-cut";
 import type { ScoreHistogram } from "./schema";
 
@@ -57,6 +60,37 @@ export async function cutOfRecent(db: Executor, recent: RecentScores, casesPerDa
     highest.map(({ logit }) => logit),
     wished,
   );
+}
+
+/** Payments above the line that a cut must rest on, so that one of them more or less hardly moves it. */
+const CASES_IN_CUT = 100;
+const FEWEST_RESCORED = 2_000;
+const RESCORED_IN_A_ROW = 200;
+
+/**
+ * As `cutOfRecent`, on the scores that the newest payments would get from the scorer as it is now. Scores given at
+ * arrival lag behind a scorer that learns: while its evidence falls, a cut taken from them yields too few cases.
+ */
+export async function cutByScorer(
+  db: Executor,
+  recent: RecentScores,
+  casesPerDay: number,
+  scorer: Scorer,
+): Promise<number> {
+  const share = Math.min(1, (casesPerDay * (await daysOf(db, recent))) / recent.count);
+  const rows = await db
+    .select({ vector: scores.vector })
+    .from(scores, NEWEST_FIRST)
+    .where(recent.where)
+    .orderBy(desc(scores.takenAt), desc(scores.id))
+    .limit(Math.min(recent.count, Math.max(FEWEST_RESCORED, Math.ceil(CASES_IN_CUT / share))));
+  const logits: number[] = [];
+  for (const [index, row] of rows.entries()) {
+    if (index % RESCORED_IN_A_ROW === RESCORED_IN_A_ROW - 1) await setImmediate();
+    logits.push(scorer.score(bytesToVector(row.vector)).logit);
+  }
+  const wished = Math.round(share * rows.length);
+  return cutBelow(logits.sort((a, b) => b - a).slice(0, wished + 1), wished);
 }
 
 export async function histogramOf(db: Executor, recent: RecentScores): Promise<ScoreHistogram> {

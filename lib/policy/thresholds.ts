@@ -4,9 +4,10 @@ import type { Executor } from "@/db/client";
 import { policyCuts } from "@/db/schema/policies";
 import { scores } from "@/db/schema/transactions";
 import { logitOf } from "../decibans";
+import type { Scorer } from "../scorer";
 import { capacityCut, type ScoredArrival } from "./capacity-cut";
 import type { PolicyInForce } from "./read";
-import { cutOfRecent, newestScores } from "./recent-scores";
+import { cutByScorer, cutOfRecent, newestScores } from "./recent-scores";
 import type { Thresholds } from "./rules";
 
 /** Newest arrival scores that a cut is taken from. */
@@ -36,13 +37,15 @@ export async function thresholdsInForce(db: Executor, policy: PolicyInForce, now
 }
 
 /**
- * As `thresholdsInForce`, after taking a new cut where the last one is ten minutes or a thousand arrivals old.
+ * As `thresholdsInForce`, after taking a new cut by the scorer in use where the last one is ten minutes or a
+ * thousand arrivals old.
  * Intake calls it once a batch before zoning; `batch` stands in while the database has too few scores.
  */
 export async function refreshCut(
   db: Executor,
   policy: PolicyInForce,
   now: Date,
+  scorer: Scorer,
   batch: readonly ScoredArrival[] = [],
 ): Promise<Thresholds> {
   const wish = policy.terms.reviewThreshold;
@@ -54,7 +57,7 @@ export async function refreshCut(
   const scoreCount = fromRecent ? recent.count : batch.length;
   if (scoreCount < FEWEST_SCORES) return withReviewLine(policy, last?.logit ?? CUT_WITHOUT_SCORES);
   const logit = fromRecent
-    ? await cutOfRecent(db, recent, wish.casesPerDay)
+    ? await cutByScorer(db, recent, wish.casesPerDay, scorer)
     : capacityCut(batch, wish.casesPerDay);
   const cut = { logit, scoreCount, lastScoreId: recent.lastScoreId };
   await db

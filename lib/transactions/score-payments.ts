@@ -49,6 +49,7 @@ export async function scorePayments(
     db,
     policy,
     now,
+    held.scorer,
     measured.map(({ logit, payment }) => ({ logit, occurredAt: payment.occurredAt })),
   );
   const chances = await sampleChances(db, payments, policy);

@@ -37,7 +37,7 @@ export async function insertArrivals(db: Database, arrivals: readonly Arrival[])
         transactionId: idOf(index),
         kind: "arrival" as const,
         takenAt: arrival.takenAt,
-        vector: vectorToBytes(Float64Array.of(1)),
+        vector: vectorToBytes(Float64Array.of(arrival.logit)),
         missing: Buffer.alloc(1),
         signalSetVersion: 1,
         scorerVersion: 0,
