@@ -5,7 +5,7 @@ import { ImportDetail, ImportInput, ImportsInput, ImportsView, ImportView } from
 export const importEndpoints = {
   "POST /api/imports": {
     summary:
-      "Takes a CSV file in (multipart: source, mapping, file) and answers at once; it is read in the background",
+      "Takes a CSV file in (multipart: source and mapping, then file) and answers at once; it is read in the background",
     may: "intake.upload",
     input: z.strictObject({}),
     output: ImportView,

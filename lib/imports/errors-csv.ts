@@ -21,6 +21,9 @@ export async function importErrorsCsv(ctx: Context, { id }: ImportInput): Promis
       if (done) controller.close();
       else controller.enqueue(encoder.encode(value));
     },
+    cancel: async () => {
+      await lines.return();
+    },
   });
   return new Response(body, {
     headers: {

@@ -1,5 +1,6 @@
 import "server-only";
 import type { Job } from "../job";
+import { abandonSilentUploads } from "./abandon";
 import { claimImport, LostLease } from "./lease";
 import { runImport } from "./run";
 
@@ -10,6 +11,7 @@ export const importJobs: readonly Job[] = [
     everyMs: 1_000,
     slot: null,
     run: async (ctx, signal) => {
+      await abandonSilentUploads(ctx.db, ctx.now());
       for (;;) {
         const claimed = signal.aborted ? null : await claimImport(ctx.db, ctx.now());
         if (!claimed) return;

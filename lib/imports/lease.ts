@@ -9,7 +9,7 @@ const LEASE_MS = 60_000;
 
 export type ClaimedImport = Pick<
   typeof imports.$inferSelect,
-  "id" | "source" | "mapping" | "rowsDone" | "personId"
+  "id" | "source" | "mapping" | "sizeBytes" | "rowsDone" | "attempts"
 > & { leaseOwner: string };
 
 /** Another server took the import over because this one seemed to have stopped. */
@@ -29,11 +29,12 @@ export async function claimImport(db: Database, now: Date): Promise<ClaimedImpor
       .for("update", { skipLocked: true });
     if (!row) return null;
     const leaseOwner = newId();
+    const attempts = row.attempts + 1;
     await tx
       .update(imports)
-      .set({ state: "running", leaseOwner, leaseExpiresAt: leaseEnd(now) })
+      .set({ state: "running", leaseOwner, leaseExpiresAt: leaseEnd(now), attempts })
       .where(eq(imports.id, row.id));
-    return { ...row, leaseOwner };
+    return { ...row, leaseOwner, attempts };
   });
 }
 
@@ -52,10 +53,10 @@ export async function holdLease(tx: Tx, { id, leaseOwner }: ClaimedImport, now: 
 }
 
 /** For a server that stops: the next one to look goes on at once. */
-export async function giveBack(db: Database, { id, leaseOwner }: ClaimedImport, now: Date): Promise<void> {
+export async function giveBack(db: Database, { id, leaseOwner }: ClaimedImport): Promise<void> {
   await db
     .update(imports)
-    .set({ leaseExpiresAt: now })
+    .set({ state: "queued", leaseOwner: null, leaseExpiresAt: null })
     .where(and(eq(imports.id, id), eq(imports.leaseOwner, leaseOwner)));
 }
 

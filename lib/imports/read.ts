@@ -1,5 +1,5 @@
 import "server-only";
-import { asc, desc, eq, lt } from "drizzle-orm";
+import { and, asc, desc, eq, like, lt, sql } from "drizzle-orm";
 import type { Executor } from "@/db/client";
 import { people } from "@/db/schema/people";
 import { importErrors, imports } from "@/db/schema/transactions";
@@ -10,11 +10,19 @@ import type { ImportDetail, ImportInput, ImportsInput, ImportsView, ImportView }
 
 const FIRST_ERRORS = 200;
 
-export async function listImports(ctx: Context, { cursor, limit }: ImportsInput): Promise<ImportsView> {
+export async function listImports(ctx: Context, input: ImportsInput): Promise<ImportsView> {
   demand(ctx, "intake.read");
+  const { cursor, limit, state, search } = input;
+  const pattern = search ? `%${search.toLowerCase().replace(/[\\%_]/g, "\\$&")}%` : undefined;
   const rows = await importRows(ctx.db)
-    // Ids sort by their time of making.
-    .where(cursor ? lt(imports.id, cursor) : undefined)
+    .where(
+      and(
+        // Ids sort by their time of making.
+        cursor ? lt(imports.id, cursor) : undefined,
+        state && eq(imports.state, state),
+        pattern ? like(sql`lower(${imports.fileName})`, pattern) : undefined,
+      ),
+    )
     .orderBy(desc(imports.id))
     .limit(limit + 1);
   const items = rows.slice(0, limit).map(toView);
@@ -53,11 +61,23 @@ function importRows(db: Executor) {
 }
 
 function toView({ row, by }: { row: typeof imports.$inferSelect; by: string | null }): ImportView {
-  const { personId: _, mapping: __, leaseOwner: ___, leaseExpiresAt: ____, ...rest } = row;
+  const { id, fileName, source, state, sizeBytes, readBytes, problem } = row;
+  const { rowsDone, created, duplicates, rejected, casesOpened } = row;
   return {
-    ...rest,
+    id,
+    fileName,
+    source,
+    state,
     by,
     createdAt: row.createdAt.toISOString(),
     finishedAt: row.finishedAt?.toISOString() ?? null,
+    sizeBytes,
+    readBytes,
+    rowsDone,
+    created,
+    duplicates,
+    rejected,
+    casesOpened,
+    problem,
   };
 }

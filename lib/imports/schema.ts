@@ -1,12 +1,19 @@
 import { z } from "zod";
 import { Id, Instant } from "../cases/schema";
 import { IMPORT_STATES } from "../transactions/codes";
+import { isImportField } from "./fields";
 
 /** Header in the file → field of a transaction, or `attributes.<name>`; null leaves the column out. */
-export const ColumnMapping = z.record(z.string().max(200), z.string().max(100).nullable());
+export const ColumnMapping = z.record(
+  z.string().max(200, "has a header of more than 200 characters"),
+  z
+    .string()
+    .refine(isImportField, "names something that is neither a field of a payment nor attributes.<name>")
+    .nullable(),
+);
 export type ColumnMapping = z.infer<typeof ColumnMapping>;
 
-/** The fields that come with the file in the form. */
+/** The fields of the form, which come before the file. */
 export const UploadFields = z.strictObject({
   source: z
     .string()
@@ -55,6 +62,9 @@ export type ImportsView = z.infer<typeof ImportsView>;
 export const ImportInput = z.strictObject({ id: Id });
 export const ImportsInput = z.strictObject({
   cursor: Id.optional(),
+  state: z.enum(IMPORT_STATES).optional(),
+  /** Part of a file's name. */
+  search: z.string().trim().max(255).optional(),
   limit: z.coerce.number().int().min(1).max(100).default(50),
 });
 export type ImportsInput = z.infer<typeof ImportsInput>;

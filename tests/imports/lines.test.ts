@@ -40,12 +40,12 @@ test("a damaged gzip file says so", async () => {
 });
 
 test("a file made to unpack without end is left before it fills the memory", async () => {
-  const bomb = gzipSync(Buffer.alloc(256 * 1024 ** 2));
-  expect(bomb.byteLength).toBeLessThan(300_000);
+  const bomb = gzipSync(Buffer.alloc(64 * 1024 ** 2));
+  expect(bomb.byteLength).toBeLessThan(70_000);
   await expect(read(bomb, 1024 ** 2)).rejects.toThrow(/unpacks to far more|line of more than 256 KB/);
 });
 
-test("a bomb of short lines is left, too", async () => {
-  const bomb = gzipSync(Buffer.from("aaaa,bbbb\n".repeat(20 * 1024 ** 2)));
+test("a bomb of ordinary lines is left, too", async () => {
+  const bomb = gzipSync(Buffer.from(`${"a".repeat(1_000)},b\n`.repeat(32 * 1024)));
   await expect(read(bomb, 1024 ** 2)).rejects.toThrow("unpacks to far more");
 });
