@@ -3,6 +3,7 @@ import Link from "next/link";
 import type { QueueItem } from "@/lib/cases/schema";
 import type { Thresholds } from "../case/balance-axis";
 import { Amount } from "../ui/amount";
+import { Decibans } from "../ui/probability";
 import { ScoreMark } from "../ui/score-mark";
 import { RowTh, Table, Td, Th } from "../ui/table";
 import { Time } from "../ui/time";
@@ -38,15 +39,20 @@ export function CaseTable({ items, total, lines }: CaseTableProps) {
                 {item.number}
               </Link>
             </RowTh>
-            <Td className="w-28">
+            <Td className="whitespace-nowrap">
               {lines && (
-                <ScoreMark
-                  decibans={item.evidenceDecibans}
-                  probability={item.probability}
-                  reviewDecibans={lines.reviewDecibans}
-                  holdDecibans={lines.holdDecibans}
-                />
+                <span className="mr-2 inline-block w-24">
+                  <ScoreMark
+                    decibans={item.evidenceDecibans}
+                    probability={item.probability}
+                    reviewDecibans={lines.reviewDecibans}
+                    holdDecibans={lines.holdDecibans}
+                  />
+                </span>
               )}
+              <span aria-hidden="true">
+                <Decibans decibans={item.evidenceDecibans} />
+              </span>
             </Td>
             <Td numeric>
               <Amount amount={item.amount} currency={item.currency} aligned />

@@ -60,7 +60,7 @@ export function CaseInHand(props: CaseInHandProps) {
             hand && (hand.evidence === null ? "Score hidden by the policy until the verdict" : "Score hidden")
           }
         />
-        {hand && (
+        {hand ? (
           <>
             <Stops caseNumber={hand.number} marker={finding.marker} onMarker={finding.setMarker} />
             <CommitLane
@@ -85,6 +85,9 @@ export function CaseInHand(props: CaseInHandProps) {
               </div>
             )}
           </>
+        ) : (
+          // As high as what will stand here, so that nothing moves when the case arrives.
+          <div className="h-72" />
         )}
       </section>
       {hand ? (

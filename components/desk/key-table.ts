@@ -54,6 +54,8 @@ export function keyTable(bindings: Bindings): ReadonlyMap<string, Command> {
 
 /** @throws KeyTaken */
 export function rebind(bindings: Bindings, command: Command, code: string): Bindings {
+  const holder = keyTable(bindings).get(code);
+  if (holder && holder !== command) throw new KeyTaken(code, COMMANDS[holder]);
   const changed = { ...bindings, [command]: code };
   keyTable(changed);
   return changed;

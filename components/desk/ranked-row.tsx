@@ -5,6 +5,7 @@ import type { ReactNode } from "react";
 import type { QueueItem } from "@/lib/cases/schema";
 import type { Thresholds } from "../case/balance-axis";
 import { Amount } from "../ui/amount";
+import { Decibans } from "../ui/probability";
 import { ScoreMark } from "../ui/score-mark";
 import { spanWords } from "../ui/span-words";
 import { useNowMs } from "../ui/time-left";
@@ -64,7 +65,17 @@ export function RankedRow({ item, rank, topPx, mine, activeColumn, thresholds, o
       {cell(
         1,
         thresholds ? (
-          <ScoreMark decibans={item.evidenceDecibans} probability={item.probability} {...thresholds} />
+          <>
+            <ScoreMark
+              decibans={item.evidenceDecibans}
+              probability={item.probability}
+              reviewDecibans={thresholds.reviewDecibans}
+              holdDecibans={thresholds.holdDecibans}
+            />
+            <span aria-hidden="true" className="block">
+              <Decibans decibans={item.evidenceDecibans} />
+            </span>
+          </>
         ) : (
           <span className="text-soft">hidden</span>
         ),

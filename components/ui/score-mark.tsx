@@ -25,20 +25,20 @@ export function ScoreMark({ decibans, probability, reviewDecibans, holdDecibans 
       className="inline-block h-4 w-full max-w-24 align-middle"
     >
       <path d={`M3 11.5H${WIDTH - 3}`} className="stroke-edge" strokeWidth="1" />
-      <path d={`M${zero} 8.500V14.5`} className="stroke-edge" strokeWidth="1" />
+      <path d={`M${zero} 8.5V14.5`} className="stroke-edge" strokeWidth="1" />
       <path
-        d={`M${at(reviewDecibans)} 9V16M${at(holdDecibans)} 9V16`}
+        d={`M${at(reviewDecibans)} 8V16M${at(holdDecibans)} 8V16`}
         className="stroke-ink"
         strokeWidth="1"
       />
       <rect
         x={Math.min(zero, pointer)}
-        y="6"
+        y="5"
         width={Math.abs(pointer - zero)}
-        height="3"
+        height="4"
         className={colour}
       />
-      <path d={`M${pointer} 11.500l-3.5 -8h7z`} className={colour} />
+      <rect x={pointer - 1} y="1" width="2" height="10" className={colour} />
     </svg>
   );
 }
