@@ -43,7 +43,7 @@ export async function identifySession(
 const ended = () => unauthenticated("Your session has ended; sign in again");
 
 async function identifyKey(header: string, db: Database, now: Date): Promise<Actor> {
-  const key = /^Bearer ([\x21-\x7e]+)$/.exec(header)?.[1];
+  const key = /^Bearer +([\x21-\x7e]+)$/i.exec(header)?.[1];
   if (!key) throw unauthenticated("Send the key as Authorization: Bearer <key>");
   const [row] = await db
     .select()

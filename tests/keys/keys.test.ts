@@ -29,6 +29,9 @@ test("a key is shown once, kept as a hash, and lets its carrier in until it is r
     source: "core",
     scopes: ["transactions:write"],
   });
+  // RFC 9110, section 11.1: the scheme's name is case-insensitive.
+  const lower = new Headers({ Authorization: `bearer ${secret}` });
+  expect(await identify("http://cupel.test/api", lower, db, new Date())).toMatchObject({ id: key.id });
   const listed = (await listKeys(ctx)).items.find((item) => item.id === key.id);
   expect(listed?.lastUsedAt).not.toBeNull();
   await revokeKey(ctx, { id: key.id });
