@@ -58,7 +58,7 @@ function remotePurchase(chance: Chance, account: Account, day: Date): Payment {
     ipAddress: account.ipAddress,
     counterpartyCountry: chance.hits(0.2) ? chance.pick(COUNTRIES) : "IE",
     authentication: chance.hits(0.75) ? "strong" : "exempt",
-    truth: chance.hits(0.004) ? { verdict: "customer_misuse", typology: null } : GENUINE,
+    truth: chance.hits(0.015) ? { verdict: "customer_misuse", typology: null } : GENUINE,
   };
 }
 

@@ -7,6 +7,7 @@ import { receiveOutcomes } from "@/lib/outcomes/receive";
 import { approvePolicy } from "@/lib/policy/approve";
 import { proposePolicy } from "@/lib/policy/propose";
 import { policyInForce } from "@/lib/policy/read";
+import type { PolicyTerms } from "@/lib/policy/schema";
 import { receiveTransactions } from "@/lib/transactions/receive";
 import { cases, decisions } from "../schema/cases";
 import { summaryRecipients } from "../schema/mail";
@@ -20,9 +21,19 @@ const HOUR_MS = 3_600_000;
 const SOURCE = "core-banking";
 /** Hours of the day at which the payments since the last one have come in. */
 const DELIVERIES = [6, 10, 14, 18, 24];
-const CASES_A_SHIFT = 9;
+const CASES_A_SHIFT = 5;
 const CHARGEBACK_AFTER_DAYS = 11;
-const POLICY_CHANGE_DAY = 12;
+/** By the day of the scenario: proposed by a supervisor, approved by the risk manager. */
+const POLICY_CHANGES: Record<number, { reason: string; terms: Partial<PolicyTerms> }> = {
+  0: {
+    reason: "The first team is small: three reviewers can look at about forty cases a day.",
+    terms: { reviewThreshold: { kind: "capacity", casesPerDay: 36 }, dailyCapacity: 40 },
+  },
+  12: {
+    reason: "A reviewer is back from training; the team can look at more.",
+    terms: { reviewThreshold: { kind: "capacity", casesPerDay: 48 }, dailyCapacity: 52 },
+  },
+};
 
 type Counts = { payments: number; decided: number; waiting: number };
 
@@ -46,7 +57,8 @@ export async function liveMonth(
     const happened = transactions.filter(({ at }) => at <= now);
     for (const { item, truth } of happened) truths.set(item.externalId as string, truth);
     past.push(happened);
-    if (dayNumber === POLICY_CHANGE_DAY) await changePolicy(ctx, clock, team);
+    const change = POLICY_CHANGES[dayNumber];
+    if (change) await changePolicy(ctx, clock, team, change);
     await chargeBack(ctx, clock, past[dayNumber - CHARGEBACK_AFTER_DAYS] ?? []);
     let from = day;
     for (const hour of DELIVERIES) {
@@ -104,15 +116,19 @@ async function chargeBack(ctx: Context, clock: Clock, day: DemoTransaction[]): P
   }
 }
 
-/** Four weeks in, the team has capacity for more: proposed by one supervisor, approved by the risk manager. */
-async function changePolicy(ctx: Context, clock: Clock, team: Team): Promise<void> {
+async function changePolicy(
+  ctx: Context,
+  clock: Clock,
+  team: Team,
+  { reason, terms }: { reason: string; terms: Partial<PolicyTerms> },
+): Promise<void> {
   const [supervisor] = team.supervisor as [PersonActor];
   const [riskManager] = team.risk_manager as [PersonActor];
-  const { terms, version } = await policyInForce(ctx.db, clock.now());
+  const inForce = await policyInForce(ctx.db, clock.now());
   const proposal = await proposePolicy(contextAt(ctx, supervisor, clock), {
-    basedOnVersion: version,
-    reason: "Two reviewers are back from training; the team can look at more.",
-    terms: { ...terms, reviewThreshold: { kind: "capacity", casesPerDay: 110 }, dailyCapacity: 120 },
+    basedOnVersion: inForce.version,
+    reason,
+    terms: { ...inForce.terms, ...terms },
   });
   await approvePolicy(contextAt(ctx, riskManager, clock), { id: proposal.policyId, effectiveAt: null });
 }
@@ -138,17 +154,15 @@ async function handOut(ctx: Context, clock: Clock, team: Team): Promise<void> {
 
 async function subscribe(ctx: Context, team: Team): Promise<void> {
   const readers = [...team.risk_manager, ...team.supervisor.slice(0, 1)];
-  await ctx.db
-    .insert(summaryRecipients)
-    .values(
-      readers.map(({ personId }) => ({
-        personId,
-        weekday: 1,
-        hour: 7,
-        subscribedAt: ctx.now(),
-        changedAt: ctx.now(),
-      })),
-    );
+  await ctx.db.insert(summaryRecipients).values(
+    readers.map(({ personId }) => ({
+      personId,
+      weekday: 1,
+      hour: 7,
+      subscribedAt: ctx.now(),
+      changedAt: ctx.now(),
+    })),
+  );
 }
 
 async function countAll(ctx: Context, payments: number): Promise<Counts> {
