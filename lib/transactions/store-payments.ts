@@ -2,13 +2,12 @@ import "server-only";
 import { and, eq, inArray } from "drizzle-orm";
 import type { Tx } from "@/db/client";
 import { vectorToBytes } from "@/db/columns";
+import { insertRows } from "@/db/insert-rows";
 import { scores, transactions } from "@/db/schema/transactions";
 import { type CaseToOpen, openCases } from "../cases/open";
 import type { PolicyInForce } from "../policy/read";
 import { SIGNAL_SET_VERSION } from "../signals/catalogue";
 import type { ScoredPayment } from "./score-payments";
-
-const ROWS_IN_STATEMENT = 500;
 
 export type ScoredUnder = { policy: PolicyInForce; scorerVersion: number; source: string; now: Date };
 
@@ -22,11 +21,16 @@ export async function storePayments(
   scored: readonly ScoredPayment[],
   under: ScoredUnder,
 ): Promise<Map<string, string>> {
-  for (let from = 0; from < scored.length; from += ROWS_IN_STATEMENT) {
-    const some = scored.slice(from, from + ROWS_IN_STATEMENT);
-    await tx.insert(transactions).values(some.map((one) => transactionRow(one, under)));
-    await tx.insert(scores).values(some.map((one) => scoreRow(one, under)));
-  }
+  await insertRows(
+    tx,
+    transactions,
+    scored.map((one) => transactionRow(one, under)),
+  );
+  await insertRows(
+    tx,
+    scores,
+    scored.map((one) => scoreRow(one, under)),
+  );
   return openCasesFor(tx, scored, under);
 }
 
