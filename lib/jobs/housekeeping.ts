@@ -2,7 +2,8 @@ import "server-only";
 import { lt } from "drizzle-orm";
 import type { Database } from "@/db/client";
 import { jobRuns } from "@/db/schema/cases";
-import { idempotencyKeys } from "@/db/schema/people";
+import { endedSessions, idempotencyKeys } from "@/db/schema/people";
+import { LONGEST_SECONDS } from "../auth/session";
 import { type Job, slotOfMinutes } from "../job";
 
 const HOUR_MS = 60 * 60 * 1000;
@@ -21,11 +22,15 @@ export const housekeepingJobs: readonly Job[] = [
   },
 ];
 
-/** Deletes idempotency keys after a day and the record of job runs after a quarter. */
+/** Deletes idempotency keys after a day, ended sessions once no token can name them, and job runs after a quarter. */
 export async function forgetOldRows(db: Database, now: Date, signal?: AbortSignal): Promise<void> {
   const keysBefore = new Date(now.getTime() - IDEMPOTENCY_KEY_MS);
   await inBatches(signal, () =>
     db.delete(idempotencyKeys).where(lt(idempotencyKeys.createdAt, keysBefore)).limit(BATCH),
+  );
+  const sessionsBefore = new Date(now.getTime() - LONGEST_SECONDS * 1000 - HOUR_MS);
+  await inBatches(signal, () =>
+    db.delete(endedSessions).where(lt(endedSessions.endedAt, sessionsBefore)).limit(BATCH),
   );
   const runsBefore = new Date(now.getTime() - JOB_RUN_MS);
   await inBatches(signal, () => db.delete(jobRuns).where(lt(jobRuns.startedAt, runsBefore)).limit(BATCH));
