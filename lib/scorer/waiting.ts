@@ -58,6 +58,9 @@ export class Waiting {
 
   /** s, as `score` tells it. */
   leverage(slot: number): number {
+    const [only] = this.tracks;
+    // A lone part's own, read where it lies: a whole queue is asked for it to be put in order.
+    if (only && this.tracks.length === 1) return only.leverage[slot] as number;
     return readLeverage(this.reading, this.placesOf(slot));
   }
 

@@ -113,7 +113,8 @@ async function converged(model: RankingModel): Promise<void> {
   }
 }
 
-describe("the ranking in memory", () => {
+// Hundreds of decisions through the database: slow on a busy machine, and nothing here is about time.
+describe("the ranking in memory", { timeout: 240_000 }, () => {
   test("equals a scoring from nothing after hundreds of labels, here and on another server that follows", async () => {
     const here = rankingOf(world.db);
     const there = rankingOf(other.db);

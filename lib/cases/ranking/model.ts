@@ -70,7 +70,7 @@ export class RankingModel {
     if (this.isFrozen && this.view) return use(this.view);
     // What this process has changed itself is seen by its next read; a failure has been told to whoever changed it.
     await this.owed?.catch(() => undefined);
-    return this.state.take(() => use(this.viewAt(now)));
+    return this.state.take(async () => use(await this.viewAt(now)));
   }
 
   /**
@@ -93,10 +93,10 @@ export class RankingModel {
     return this.movements.get(version) ?? null;
   }
 
-  private viewAt(now: Date): RankingView {
+  private async viewAt(now: Date): Promise<RankingView> {
     if (this.view?.isGoodAt(now)) return this.view;
     const { cases, held, policy } = this.present();
-    this.view = new RankingView(cases, held, policy.inForce, policy.thresholds, now);
+    this.view = await RankingView.of(cases, held, policy.inForce, policy.thresholds, now);
     return this.view;
   }
 
@@ -220,7 +220,7 @@ export class RankingModel {
 
   private async computeAnew({ scorer }: HeldScorer): Promise<Movement> {
     const { cases, policy } = this.present();
-    this.viewAt(new Date());
+    await this.viewAt(new Date());
     this.isFrozen = true;
     try {
       return await recompute(cases, scorer, policy.thresholds.holdLogit);

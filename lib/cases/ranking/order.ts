@@ -26,13 +26,19 @@ export type Ranking = {
   goodUntilMs: number;
 };
 
+export type Keys = Omit<Ranking, "order" | "expiring"> & { expiring: readonly number[] };
+
 /**
  * The order of the queue: holds about to expire by amount, then everything else by the policy's order; ties by arrival.
  * - probability: by log-odds;
  * - value at risk: by the expected saving of stopping the payment;
  * - learning value: leverage × p(1 − p), where a verdict teaches the scorer most.
  */
-export function rank(cases: Rankable, terms: PolicyTerms, nowMs: number): Ranking {
+export const rank = (cases: Rankable, terms: PolicyTerms, nowMs: number): Ranking =>
+  inOrder(keysOf(cases, terms, nowMs));
+
+/** The first half of `rank`, for those who let others have their turn before the second. */
+export function keysOf(cases: Rankable, terms: PolicyTerms, nowMs: number): Keys {
   const { count } = cases;
   const keys = new Float64Array(count);
   const expiring: number[] = [];
@@ -49,7 +55,12 @@ export function rank(cases: Rankable, terms: PolicyTerms, nowMs: number): Rankin
     }
     goodUntilMs = Math.min(goodUntilMs, startsMs <= nowMs ? expiresMs : startsMs);
   }
-  return { order: withFirst(expiring, keys), expiring: expiring.length, keys, goodUntilMs };
+  return { keys, expiring, goodUntilMs };
+}
+
+/** The second half of `rank`. */
+export function inOrder({ keys, expiring, goodUntilMs }: Keys): Ranking {
+  return { keys, goodUntilMs, order: withFirst(expiring, keys), expiring: expiring.length };
 }
 
 function orderKey(cases: Rankable, i: number, terms: PolicyTerms): number {

@@ -1,29 +1,42 @@
+import "server-only";
 import type { HeldScorer } from "../../learning/held-scorer";
 import type { PolicyInForce } from "../../policy/read";
 import type { Thresholds } from "../../policy/rules";
-import type { Place, Ranking } from "./order";
+import { inOrder, keysOf, type Place, type Ranking } from "./order";
+import { Breath } from "./turns";
 import type { CaseFacts, WaitingCases } from "./waiting-cases";
 
 /** The waiting cases in their order at one version; index 0 is the best case. */
 export class RankingView {
   readonly version: number;
   readonly logSeq: number;
-  private readonly slots: Uint32Array;
-  private readonly ranking: Ranking;
-  private readonly computedMs: number;
 
-  constructor(
+  private constructor(
     private readonly cases: WaitingCases,
     held: Pick<HeldScorer, "version" | "logSeq">,
     readonly policy: PolicyInForce,
     readonly thresholds: Thresholds,
-    now: Date,
+    private readonly slots: Uint32Array,
+    private readonly ranking: Ranking,
+    private readonly computedMs: number,
   ) {
     this.version = held.version;
     this.logSeq = held.logSeq;
-    this.computedMs = now.getTime();
-    this.slots = cases.slotsByArrival();
-    this.ranking = cases.rank(this.slots, policy.terms, this.computedMs);
+  }
+
+  /** The caller holds off changes until it is made; others have their turn in between. */
+  static async of(
+    cases: WaitingCases,
+    held: Pick<HeldScorer, "version" | "logSeq">,
+    policy: PolicyInForce,
+    thresholds: Thresholds,
+    now: Date,
+  ): Promise<RankingView> {
+    const breath = new Breath();
+    const slots = cases.slotsByArrival();
+    const keys = keysOf(cases.rankable(slots), policy.terms, now.getTime());
+    await breath.take();
+    return new RankingView(cases, held, policy, thresholds, slots, inOrder(keys), now.getTime());
   }
 
   /** The order changes by the clock alone where a hold comes close to its end. */

@@ -1,10 +1,9 @@
 import type { Zone } from "../../policy/codes";
-import type { PolicyTerms } from "../../policy/schema";
 import { createWaiting, type Scorer, type Waiting } from "../../scorer";
 import type { Channel } from "../../transactions/codes";
 import type { CASE_KINDS } from "../codes";
 import type { CaseStanding } from "../rules";
-import { type Ranking, rank } from "./order";
+import type { Rankable } from "./order";
 
 /** What the ranking keeps of a waiting case besides its vector. */
 export type CaseFacts = CaseStanding & {
@@ -88,18 +87,15 @@ export class WaitingCases {
     return Uint32Array.from(this.arrival);
   }
 
-  rank(slots: Uint32Array, terms: PolicyTerms, nowMs: number): Ranking {
-    return rank(
-      {
-        count: slots.length,
-        logit: (i) => this.published[slots[i] as number] as number,
-        leverage: (i) => this.waiting.leverage(slots[i] as number),
-        amountBaseMinor: (i) => this.factsIn(slots[i] as number).amountBaseMinor,
-        holdExpiresAtMs: (i) => this.factsIn(slots[i] as number).holdExpiresAt?.getTime() ?? null,
-      },
-      terms,
-      nowMs,
-    );
+  /** The cases in these slots, for ranking. */
+  rankable(slots: Uint32Array): Rankable {
+    return {
+      count: slots.length,
+      logit: (i) => this.published[slots[i] as number] as number,
+      leverage: (i) => this.waiting.leverage(slots[i] as number),
+      amountBaseMinor: (i) => this.factsIn(slots[i] as number).amountBaseMinor,
+      holdExpiresAtMs: (i) => this.factsIn(slots[i] as number).holdExpiresAt?.getTime() ?? null,
+    };
   }
 
   /** First place in the order of arrival whose number is not below. */
