@@ -1,0 +1,171 @@
+import { spawn } from "node:child_process";
+import { once } from "node:events";
+import path from "node:path";
+import { eq } from "drizzle-orm";
+import { expect, test } from "vitest";
+import { trailHead } from "@/db/schema/trail";
+import { importChunks, imports, transactions } from "@/db/schema/transactions";
+import type { Context } from "@/lib/context";
+import { importJobs } from "@/lib/imports/jobs";
+import { type ClaimedImport, claimImport, LostLease } from "@/lib/imports/lease";
+import { runImport } from "@/lib/imports/run";
+import { testWorld, WORLD_START } from "../support/world";
+import { csv, gzip, row, rows, shown, upload } from "./uploads";
+
+/** A batch of 2,000, and the beginning of another. */
+const ROWS = 2_100;
+
+const world = await testWorld();
+const { db } = world;
+const supervisor = world.ctx(await world.person("supervisor"));
+const runner = (at?: Date) => world.ctx({ kind: "system", job: "imports" }, at);
+const never = new AbortController().signal;
+const stopping = AbortSignal.abort();
+const later = (minutes: number) => new Date(WORLD_START.getTime() + minutes * 60_000);
+
+async function runJobs(ctx: Context, signal = never) {
+  for (const job of importJobs) await job.run(ctx, signal);
+}
+
+async function claimOrThrow(at?: Date): Promise<ClaimedImport> {
+  const claimed = await claimImport(db, at ?? WORLD_START);
+  if (!claimed) throw new Error("There was nothing to claim");
+  return claimed;
+}
+
+/** Each row of the file exactly once, and the counts say so. */
+async function expectWhole(id: string, source: string, count = ROWS) {
+  expect(await shown(supervisor, id)).toMatchObject({
+    state: "done",
+    rowsDone: count,
+    created: count,
+    duplicates: 0,
+    rejected: 0,
+  });
+  const stored = await db.select().from(transactions).where(eq(transactions.source, source));
+  expect(stored).toHaveLength(count);
+  expect(new Set(stored.map((one) => one.externalId)).size).toBe(count);
+}
+
+test("a server that stops gives the import back behind its last batch, and the next one goes on there", async () => {
+  const { id } = await upload(supervisor, gzip(csv(rows(ROWS))), { source: "stopped" });
+  await runImport(runner(), await claimOrThrow(), stopping);
+  expect(await shown(supervisor, id)).toMatchObject({ state: "queued", rowsDone: 2_000, created: 2_000 });
+  await runJobs(runner());
+  await expectWhole(id, "stopped");
+});
+
+test("a server whose lease ran out loses the batch it was at, and its successor reads every row once", async () => {
+  const { id } = await upload(supervisor, csv(rows(ROWS)), { source: "lost" });
+  const quiet = await claimOrThrow();
+  expect(await claimImport(db, later(0.9))).toBeNull();
+  const successor = await claimOrThrow(later(1.1));
+  expect(successor.id).toBe(id);
+  await expect(runImport(runner(), quiet, never)).rejects.toBeInstanceOf(LostLease);
+  expect(await shown(supervisor, id)).toMatchObject({ state: "running", rowsDone: 0, created: 0 });
+  expect(await db.select().from(transactions).where(eq(transactions.source, "lost"))).toEqual([]);
+  await runImport(runner(later(1.1)), successor, never);
+  await expectWhole(id, "lost");
+});
+
+test("a server that lost its lease before the end cannot end the import of its successor", async () => {
+  const { id } = await upload(supervisor, csv(rows(3)), { source: "late" });
+  const quiet = await claimOrThrow();
+  await db
+    .update(imports)
+    .set({ mapping: { amount: null } })
+    .where(eq(imports.id, id));
+  const successor = await claimOrThrow(later(2));
+  await expect(runImport(runner(), { ...quiet, mapping: { amount: null } }, never)).rejects.toBeInstanceOf(
+    LostLease,
+  );
+  expect(await shown(supervisor, id)).toMatchObject({ state: "running", problem: null });
+  await runImport(runner(later(2)), { ...successor, mapping: {} }, never);
+  await expectWhole(id, "late", 3);
+});
+
+test("two servers at the same import at once: each row is in once", async () => {
+  const { id } = await upload(supervisor, csv(rows(ROWS)), { source: "both" });
+  const first = await claimOrThrow();
+  const second = await claimOrThrow(later(2));
+  const ends = await Promise.allSettled([
+    runImport(runner(), first, never),
+    runImport(runner(later(2)), second, never),
+  ]);
+  expect(ends.map(({ status }) => status)).toEqual(["rejected", "fulfilled"]);
+  await expectWhole(id, "both");
+});
+
+test("two servers that look for work at once share the imports out", async () => {
+  const [one, other] = [
+    await upload(supervisor, csv(rows(900)), { source: "share-1" }),
+    await upload(supervisor, csv(rows(900)), { source: "share-2" }),
+  ];
+  await Promise.all([runJobs(runner()), runJobs(runner())]);
+  await expectWhole(one.id, "share-1", 900);
+  await expectWhole(other.id, "share-2", 900);
+});
+
+test("a server killed in the middle of a batch: another one goes on, nothing lost and nothing twice", async () => {
+  const { id } = await upload(supervisor, csv(rows(3 * ROWS)), { source: "killed" });
+  const progress = async () => (await shown(supervisor, id)).rowsDone;
+  const child = startRunner();
+  const exited = once(child, "exit");
+  await expect.poll(progress, { timeout: 60_000, interval: 5 }).toBeGreaterThanOrEqual(2_000);
+  await db.transaction(async (tx) => {
+    // Whoever holds the trail's head keeps every batch from its end.
+    await tx.select().from(trailHead).for("update");
+    child.kill("SIGKILL");
+    expect(await exited).toEqual([null, "SIGKILL"]);
+  });
+  expect(await shown(supervisor, id)).toMatchObject({ state: "running" });
+  expect(await progress()).toBeLessThan(3 * ROWS);
+  const state = async () => {
+    await runJobs(runner(later(2)));
+    return (await shown(supervisor, id)).state;
+  };
+  // The database may still be undoing what the dead server had begun.
+  await expect.poll(state, { timeout: 30_000 }).toBe("done");
+  await expectWhole(id, "killed", 3 * ROWS);
+}, 120_000);
+
+function startRunner() {
+  return spawn(process.execPath, ["--import", "tsx", "tests/imports/import-runner.ts"], {
+    cwd: path.resolve(import.meta.dirname, "../.."),
+    env: {
+      ...process.env,
+      DATABASE_URL: world.url,
+      RUNNER_NOW: WORLD_START.toISOString(),
+      TSX_TSCONFIG_PATH: "db/commands/tsconfig.json",
+    },
+    stdio: "inherit",
+  });
+}
+
+test("a batch that fails by our fault is tried again, and in the end said, with what is in", async () => {
+  const { id } = await upload(supervisor, csv(rows(2_003)), { source: "faulty" });
+  await runImport(runner(), await claimOrThrow(), stopping);
+  for (let attempt = 1; attempt <= 5; attempt++) {
+    const claimed = await claimOrThrow(later(2 * attempt));
+    expect(claimed.attempts).toBe(attempt);
+  }
+  await runJobs(runner(later(20)));
+  expect(await shown(supervisor, id)).toMatchObject({
+    state: "failed",
+    rowsDone: 2_000,
+    created: 2_000,
+    problem: "Reading stopped behind row 2000 by a fault on our side, 5 times",
+  });
+  expect(await db.select().from(importChunks).where(eq(importChunks.importId, id))).toEqual([]);
+});
+
+test("a row error is noted once, however often its batch was begun", async () => {
+  const { id } = await upload(supervisor, csv([row(0), row(1, { amount: "-1.00" })]), { source: "noted" });
+  const quiet = await claimOrThrow();
+  const successor = await claimOrThrow(later(2));
+  await Promise.allSettled([
+    runImport(runner(), quiet, never),
+    runImport(runner(later(2)), successor, never),
+  ]);
+  expect((await shown(supervisor, id)).errors).toMatchObject([{ row: 3, path: "amount" }]);
+});
