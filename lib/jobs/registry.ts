@@ -1,9 +1,18 @@
 import "server-only";
+import { caseJobs } from "../cases/jobs";
 import { importJobs } from "../imports/jobs";
 import type { Job } from "../job";
 import { lossJobs } from "../losses/jobs";
 import { mailJobs } from "../mail/jobs";
+import { policyJobs } from "../policy/jobs";
 import { housekeepingJobs } from "./housekeeping";
 
 /** Everything the server does by itself. A domain lists its own in its `jobs.ts`. */
-export const JOBS: readonly Job[] = [...importJobs, ...mailJobs, ...lossJobs, ...housekeepingJobs];
+export const JOBS: readonly Job[] = [
+  ...caseJobs,
+  ...policyJobs,
+  ...importJobs,
+  ...mailJobs,
+  ...lossJobs,
+  ...housekeepingJobs,
+];

@@ -1,12 +1,13 @@
 import "server-only";
+import { type Job, slotOfMinutes } from "../job";
 import { applyPolicyInForce } from "./take-effect";
 
-const MINUTE_MS = 60_000;
-
-/** Every minute: a version approved for a later moment takes effect when it has come. */
-export const policyTakesEffect = {
-  name: "policy.takes-effect",
-  everyMs: MINUTE_MS,
-  slot: (now: Date) => new Date(Math.floor(now.getTime() / MINUTE_MS) * MINUTE_MS).toISOString(),
-  run: applyPolicyInForce,
-};
+export const policyJobs: readonly Job[] = [
+  {
+    // A version approved for a later moment takes effect when that has come.
+    name: "policy.takes-effect",
+    everyMs: 60_000,
+    slot: slotOfMinutes(1),
+    run: applyPolicyInForce,
+  },
+];
