@@ -46,9 +46,9 @@ export function partInBase(
 export type Standing = { hasLabel: boolean; caseState: string | null };
 
 /**
- * Whether "cleared" may label a payment legitimate. It is the weakest of all labels: any verdict or other outcome
- * that stands is stronger, and where a case waits, the person who decides it is about to know better. A lapsed case
- * waits for nobody.
+ * Whether "cleared" may label a payment legitimate. It is the weakest of all labels: every verdict and every other
+ * outcome that stands is stronger, and where a case waits, the person who decides it is about to know better. A
+ * lapsed case waits for nobody.
  */
 export function mayClear({ hasLabel, caseState }: Standing): boolean {
   return !hasLabel && (caseState === null || caseState === "lapsed");

@@ -6,6 +6,7 @@ import { demand } from "../auth/demand";
 import { casesChanged } from "../cases/notify";
 import type { Context } from "../context";
 import { readScorerInUse } from "../learning/held-scorer";
+import { applyKeptOutcomes, applyKeptOutcomes } from "../outcomes/apply-kept";
 import { policyInForce } from "../policy/read";
 import { appendTrail } from "../trail/append";
 import { writeOnce } from "../write-once";
@@ -138,7 +139,18 @@ async function store(
     tx,
     scored.map((one) => ({ occurredAt: one.payment.occurredAt, passed: one.zone === "pass" })),
   );
+  await applyKeptOutcomes(
+    ctx,
+    tx,
+    scored.map((one) => one.id),
+  );
   await alongside?.(tx, results);
+  // Behind the counts: it may lock the scorer and the trail's head, which come last in every write.
+  await applyKeptOutcomes(
+    ctx,
+    tx,
+    scored.map(({ id }) => id),
+  );
   const count = (status: TransactionResult["status"]) =>
     results.filter((each) => each.status === status).length;
   await appendTrail(ctx, tx, {

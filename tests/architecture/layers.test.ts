@@ -132,6 +132,11 @@ describe("domains", () => {
       "learning",
       "the scorer starts from the policy's base rate, and is run anew when that changes",
     ],
+    [
+      "transactions",
+      "outcomes",
+      "an outcome that came first is applied in the very transaction in which its payment arrives",
+    ],
   ];
 
   test("depend on each other in one direction", () => {

@@ -4,9 +4,7 @@ import { beforeAll, describe, expect, test } from "vitest";
 import { decisions, ledger } from "@/db/schema/cases";
 import { outcomes } from "@/db/schema/outcomes";
 import { bookOutcome, reverseBooking } from "@/lib/losses/book";
-import { weekFigures } from "@/lib/losses/read";
 import { settleRecoveries } from "@/lib/losses/recoveries";
-import { weekView } from "@/lib/losses/view";
 import { newId } from "@/lib/new-id";
 import { DEFAULT_TERMS } from "@/lib/policy/default-terms";
 import { testWorld, type World } from "../support/world";
@@ -31,9 +29,6 @@ let world: World;
 beforeAll(async () => {
   world = await testWorld();
 });
-
-const week = (label: string, by: "transaction" | "booking" = "transaction", now = NEXT_MONDAY, on = world) =>
-  weekFigures(on.db, { week: label, by, timeZone: "UTC", now });
 
 async function linesOf(transactionId: string) {
   return world.db.select().from(ledger).where(eq(ledger.transactionId, transactionId)).orderBy(ledger.id);
@@ -60,68 +55,6 @@ async function recover(transactionId: string, recoversBaseMinor: number, at: Dat
     appliedAt: at,
   });
 }
-
-test("a worked week comes out to the cent in the read, in the view and in basis points", async () => {
-  // Own construction, exact arithmetic; no outside authority is claimed for the figures.
-  const own = await testWorld();
-  const held = { paymentState: "held" as const, action: "hold" as const, occurredAt: WEDNESDAY };
-  const gone = { occurredAt: WEDNESDAY };
-  // 6.5 minutes each.
-  const fraudulent = { verdict: "fraudulent" as const, decidedAt: FRIDAY, handlingSeconds: 390 };
-  const legitimate = { verdict: "legitimate" as const, decidedAt: FRIDAY, handlingSeconds: 390 };
-  for (let i = 0; i < 42; i++) await decidedPayment(own, { amountMinor: 100_00, ...held }, fraudulent);
-  for (let i = 0; i < 20; i++) await decidedPayment(own, { amountMinor: 60_00, ...gone }, fraudulent);
-  const { transactionId } = await decidedPayment(own, { amountMinor: 100_00, ...gone }, fraudulent);
-  for (let i = 0; i < 96; i++) await decidedPayment(own, { amountMinor: 100_00, ...held }, legitimate);
-  for (let i = 0; i < 261; i++) await decidedPayment(own, { amountMinor: 10_00, ...gone }, legitimate);
-  await insertPayment(own, { amountMinor: 996_090_00, action: "pass", ...gone });
-  await own.db.transaction(async (tx) => {
-    await tx.insert(ledger).values({
-      transactionId,
-      outcomeId: newId(),
-      bookedAt: FRIDAY,
-      occurredAt: WEDNESDAY,
-      attemptedMinor: 0,
-      preventedMinor: 0,
-      missedMinor: 0,
-      recoveredMinor: 350_00,
-      falsePositiveMinor: 0,
-      lostMarginMinor: 0,
-      reviewCostMinor: 0,
-    });
-  });
-
-  const figures = await week("2026-W12", "transaction", NEXT_MONDAY, own);
-  const view = weekView(figures, "EUR");
-  expect(view.totals).toMatchObject({
-    settled: "1000000.00",
-    attempted: "5500.00",
-    prevented: "4200.00",
-    gross: "1300.00",
-    recovered: "350.00",
-    net: "950.00",
-    falsePositive: "9600.00",
-    lostMargin: "192.00",
-    reviewCost: "1638.00",
-    totalCost: "2780.00",
-    costPerCase: "3.90",
-    fraudRateBp: 13,
-    netRateBp: 9.5,
-    totalCostBp: 27.8,
-    valueDetection: 0.763636,
-    fraudulent: 63,
-    legitimate: 357,
-  });
-  expect(view.totals.precision).toMatchObject({ share: 0.15, count: 63, of: 420 });
-  // Wilson's interval (1927) for 63 of 420 at 95 %, from the formula in 40-digit decimal arithmetic.
-  expect(view.totals.precision?.low).toBeCloseTo(0.1190305757958668, 6);
-  expect(view.totals.precision?.high).toBeCloseTo(0.18731382756186, 6);
-  expect(view.typologies).toEqual([
-    { typology: "details_theft", findings: 63, attempted: "5500.00", prevented: "4200.00" },
-  ]);
-  expect(view.largest).toHaveLength(3);
-  expect(view.largest.every((one) => one.attempted === "100.00")).toBe(true);
-});
 
 describe("a reversal", () => {
   test("brings every figure of a decision back to nothing", async () => {
@@ -191,27 +124,6 @@ describe("what a finding books", () => {
     const { reviewCostMinor, ...money } = await balanceOf(transactionId);
     expect(reviewCostMinor).toBe(DEFAULT_TERMS.reviewCostMinorPerHour);
     expect(Object.values(money).every((figure) => figure === 0)).toBe(true);
-  });
-
-  test("a payment in a currency without a rate is counted, not valued", async () => {
-    const own = await testWorld();
-    await decidedPayment(
-      own,
-      { amountMinor: 5_000, currency: "KWD", amountBaseMinor: null, occurredAt: WEDNESDAY },
-      { verdict: "fraudulent", decidedAt: FRIDAY, handlingSeconds: 36 },
-    );
-    const { totals, typologies } = await week("2026-W12", "transaction", NEXT_MONDAY, own);
-    expect(totals).toMatchObject({
-      attemptedMinor: 0,
-      settledMinor: 0,
-      reviewCostMinor: 36,
-      payments: 1,
-      unpriced: 1,
-      fraudulent: 1,
-      grossPpm: null,
-      valueDetectionPpm: null,
-    });
-    expect(typologies).toMatchObject([{ findings: 1, attemptedMinor: 0 }]);
   });
 });
 
@@ -303,57 +215,5 @@ describe("outcomes and decisions on one payment", () => {
     expect(await balanceOf(transactionId)).toMatchObject({ recoveredMinor: 4_000 });
     await correct({ transactionId, caseId, decisionId }, "legitimate");
     expect(await balanceOf(transactionId)).toMatchObject({ attemptedMinor: 0, recoveredMinor: 0 });
-  });
-});
-
-describe("which week", () => {
-  test("a late finding belongs to the payment's week in one view and to its booking's in the other", async () => {
-    const own = await testWorld();
-    const facts = { amountMinor: 1_000, occurredAt: WEDNESDAY };
-    await decidedPayment(own, facts, { verdict: "fraudulent", decidedAt: new Date("2026-04-01T00:00:00Z") });
-    const later = new Date("2026-04-10T00:00:00Z");
-    const grossOf = async (label: string, by: "transaction" | "booking") =>
-      (await week(label, by, later, own)).totals.grossMinor;
-    expect(await grossOf("2026-W12", "transaction")).toBe(1_000);
-    expect(await grossOf("2026-W14", "transaction")).toBe(0);
-    expect(await grossOf("2026-W12", "booking")).toBe(0);
-    expect(await grossOf("2026-W14", "booking")).toBe(1_000);
-  });
-
-  test("the week before is taken as it was known at the same age", async () => {
-    const own = await testWorld();
-    const sunday = new Date("2026-03-15T12:00:00Z");
-    const facts = { amountMinor: 500, occurredAt: sunday };
-    await decidedPayment(own, facts, { verdict: "fraudulent", decidedAt: new Date("2026-03-16T06:00:00Z") });
-    await decidedPayment(own, facts, { verdict: "fraudulent", decidedAt: new Date("2026-03-17T06:00:00Z") });
-    const { previous, totals } = await week("2026-W12", "transaction", NEXT_MONDAY, own);
-    expect(totals.attemptedMinor).toBe(0);
-    expect(previous).toMatchObject({ week: "2026-W11", totals: { attemptedMinor: 500, fraudulent: 1 } });
-    expect((await week("2026-W11", "transaction", NEXT_MONDAY, own)).totals.attemptedMinor).toBe(1_000);
-  });
-
-  test("sums of local weeks make up the sum of the payments, none counted twice", async () => {
-    const own = await testWorld();
-    const times = [
-      "2026-03-22T22:30:00Z",
-      "2026-03-22T23:00:00Z",
-      "2026-03-29T21:59:59.999Z",
-      "2026-03-29T22:00:00Z",
-    ];
-    for (const [index, time] of times.entries()) {
-      await insertPayment(own, { amountMinor: 10 ** index, occurredAt: new Date(time) });
-    }
-    const settled = async (label: string) =>
-      (
-        await weekFigures(own.db, {
-          week: label,
-          by: "transaction",
-          timeZone: "Europe/Paris",
-          now: new Date("2026-05-01T00:00:00Z"),
-        })
-      ).totals.settledMinor;
-    expect([await settled("2026-W12"), await settled("2026-W13"), await settled("2026-W14")]).toEqual([
-      1, 110, 1000,
-    ]);
   });
 });

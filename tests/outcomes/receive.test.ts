@@ -1,17 +1,25 @@
-import { eq, sql } from "drizzle-orm";
+import { eq } from "drizzle-orm";
 import { beforeAll, describe, expect, test } from "vitest";
-import { cases, ledger } from "@/db/schema/cases";
 import { outcomes } from "@/db/schema/outcomes";
 import { labelLog } from "@/db/schema/scorers";
 import { trail } from "@/db/schema/trail";
 import { transactions } from "@/db/schema/transactions";
 import type { KeyActor, PersonActor } from "@/lib/context";
 import { correctDecision } from "@/lib/decisions/correct";
-import { decideCase } from "@/lib/decisions/decide";
 import { readScorerInUse } from "@/lib/learning/held-scorer";
 import { newId } from "@/lib/new-id";
 import { receiveOutcomes } from "@/lib/outcomes/receive";
-import { testWorld, type WaitingCase, WORLD_START, type World } from "../support/world";
+import { testWorld, type WaitingCase, type World } from "../support/world";
+import {
+  AMOUNT,
+  decide as decideOn,
+  sender as key,
+  LATER,
+  labelOf as labelOn,
+  moneyOf as moneyOn,
+  sendOutcome,
+  waitingCase,
+} from "./payments";
 
 let world: World;
 let reviewer: PersonActor;
@@ -23,63 +31,13 @@ beforeAll(async () => {
   supervisor = await world.person("supervisor");
 });
 
-const key: KeyActor = { kind: "key", id: newId(), source: "test", scopes: ["outcomes:write"] };
-const LATER = new Date(WORLD_START.getTime() + 7 * 86_400_000);
-const AMOUNT = 12_900;
-
-async function one(payment: WaitingCase | string, more: Record<string, unknown> = {}, actor = key) {
-  const externalId = typeof payment === "string" ? payment : payment.transactionId;
-  const item = {
-    externalId,
-    kind: "chargeback",
-    reasonFamily: "fraud",
-    stage: "opened",
-    occurredAt: LATER.toISOString(),
-    ...more,
-  };
-  const { results } = await receiveOutcomes(world.ctx(actor, LATER), { outcomes: [item] });
-  const [result] = results;
-  if (!result) throw new Error("no result");
-  return result;
-}
-
-async function waiting(options: { held?: boolean } = {}): Promise<WaitingCase> {
-  const [made] = await world.waitingCases(1, { seed: seeds++, amountMinor: AMOUNT, ...options });
-  return made as WaitingCase;
-}
-let seeds = 100;
-
-function decide(on: WaitingCase, verdict: "fraudulent" | "legitimate" | "customer_misuse") {
-  return decideCase(world.ctx(reviewer), {
-    id: on.caseId,
-    verdict,
-    typology: verdict === "fraudulent" ? "details_theft" : null,
-    confidence: "sure",
-    seenVersion: 1,
-    scoreWasHidden: false,
-    together: [],
-  });
-}
-
-async function labelOf({ transactionId }: { transactionId: string }) {
-  const [row] = await world.db.select().from(transactions).where(eq(transactions.id, transactionId));
-  return row?.label ?? null;
-}
-
-async function moneyOf({ transactionId }: { transactionId: string }) {
-  const figure = (column: string) => sql`coalesce(sum(${sql.raw(column)}), 0)`.mapWith(Number);
-  const [row] = await world.db
-    .select({
-      attempted: figure("attempted_minor"),
-      prevented: figure("prevented_minor"),
-      missed: figure("missed_minor"),
-      recovered: figure("recovered_minor"),
-      falsePositive: figure("false_positive_minor"),
-    })
-    .from(ledger)
-    .where(eq(ledger.transactionId, transactionId));
-  return row;
-}
+const one = (...args: Parameters<typeof sendOutcome> extends [World, ...infer Rest] ? Rest : never) =>
+  sendOutcome(world, ...args);
+const waiting = (options?: { held?: boolean }) => waitingCase(world, options);
+const decide = (on: WaitingCase, verdict: "fraudulent" | "legitimate" | "customer_misuse") =>
+  decideOn(world, reviewer, on, verdict);
+const labelOf = (payment: { transactionId: string }) => labelOn(world, payment);
+const moneyOf = (payment: { transactionId: string }) => moneyOn(world, payment);
 
 describe("a fraud outcome", () => {
   test("labels an unreviewed payment, teaches the scorer, books the loss and leaves a trail", async () => {
@@ -181,92 +139,6 @@ describe("a fraud outcome", () => {
   });
 });
 
-describe("money that comes back", () => {
-  test("a dispute won moves money and not the label", async () => {
-    const payment = await waiting();
-    await one(payment);
-    await one(payment, { stage: "won" });
-    expect(await labelOf(payment)).toBe(1);
-    expect(await moneyOf(payment)).toMatchObject({ attempted: AMOUNT, recovered: AMOUNT });
-    const never = await waiting();
-    await one(never, { stage: "won" });
-    expect(await labelOf(never)).toBeNull();
-    expect(await moneyOf(never)).toMatchObject({ attempted: 0, recovered: 0 });
-  });
-
-  test("a recovery counts once there is a loss, in parts and never beyond it", async () => {
-    const payment = await waiting();
-    const recovery = (amount: string, reference: string) =>
-      one(payment, {
-        kind: "recovery",
-        reasonFamily: undefined,
-        stage: undefined,
-        amount,
-        currency: "EUR",
-        reference,
-      });
-    await recovery("50.00", "first");
-    expect(await moneyOf(payment)).toMatchObject({ attempted: 0, recovered: 0 });
-    await one(payment);
-    expect(await moneyOf(payment)).toMatchObject({ attempted: AMOUNT, recovered: 5_000 });
-    await recovery("50.00", "second");
-    expect(await moneyOf(payment)).toMatchObject({ recovered: 10_000 });
-    expect(await recovery("29.01", "third")).toMatchObject({
-      status: "rejected",
-      errors: [{ path: "amount" }],
-    });
-    await recovery("29.00", "fourth");
-    expect(await moneyOf(payment)).toMatchObject({ attempted: AMOUNT, recovered: AMOUNT });
-  });
-
-  test("in a currency without a rate is refused, since nothing could be booked", async () => {
-    const payment = await waiting();
-    const result = await one(payment, { kind: "recovery", amount: "5.000", currency: "KWD" });
-    expect(result).toMatchObject({ status: "rejected", errors: [{ path: "currency" }] });
-  });
-});
-
-describe("cleared", () => {
-  const cleared = { kind: "cleared", reasonFamily: undefined, stage: undefined };
-
-  test("labels a payment legitimate that nobody looks at", async () => {
-    const payment = await waiting();
-    await world.db.update(cases).set({ state: "lapsed" }).where(eq(cases.id, payment.caseId));
-    await one(payment, cleared);
-    expect(await labelOf(payment)).toBe(-1);
-  });
-
-  test("waits for the person who is to decide, and yields to every other finding", async () => {
-    const open = await waiting();
-    await one(open, cleared);
-    expect(await labelOf(open)).toBeNull();
-    const fraud = await waiting();
-    await decide(fraud, "fraudulent");
-    await one(fraud, cleared);
-    expect(await labelOf(fraud)).toBe(1);
-    const misuse = await waiting();
-    await decide(misuse, "customer_misuse");
-    await one(misuse, cleared);
-    expect(await labelOf(misuse)).toBeNull();
-    const disputed = await waiting();
-    await one(disputed);
-    await one(disputed, cleared);
-    expect(await labelOf(disputed)).toBe(1);
-  });
-
-  test("gives way to a fraud outcome that follows, also within one request", async () => {
-    const payment = await waiting();
-    await world.db.update(cases).set({ state: "lapsed" }).where(eq(cases.id, payment.caseId));
-    const base = { externalId: payment.transactionId, occurredAt: LATER.toISOString() };
-    const fraud = { ...base, kind: "customer_report" };
-    await receiveOutcomes(world.ctx(key, LATER), {
-      outcomes: [{ ...base, kind: "cleared" }, fraud, { ...base, kind: "cleared", reference: "again" }],
-    });
-    expect(await labelOf(payment)).toBe(1);
-    expect(await moneyOf(payment)).toMatchObject({ attempted: AMOUNT });
-  });
-});
-
 describe("the same outcome again", () => {
   test("is a duplicate and changes nothing, in one request, in two, and in many at once", async () => {
     const payment = await waiting();
@@ -349,7 +221,8 @@ describe("bad items", () => {
 });
 
 test("only who may send outcomes can", async () => {
-  const sender = (actor: KeyActor | PersonActor) => receiveOutcomes(world.ctx(actor), { outcomes: [{}] });
+  const sender = (actor: KeyActor | PersonActor) =>
+    receiveOutcomes(world.ctx(actor, LATER), { outcomes: [{}] });
   await expect(sender({ ...key, scopes: ["transactions:write"] })).rejects.toThrow("role");
   await expect(sender(reviewer)).rejects.toThrow("role");
   await expect(sender(supervisor)).resolves.toMatchObject({ results: [{ status: "rejected" }] });
