@@ -1,19 +1,21 @@
 import "server-only";
-import { and, asc, between, desc, eq, inArray, ne, sql } from "drizzle-orm";
-import type { z } from "zod";
+import { and, between, desc, eq, inArray, ne, type SQL, sql } from "drizzle-orm";
+import { z } from "zod";
 import type { Executor } from "@/db/client";
 import { cases, decisions } from "@/db/schema/cases";
 import { labelledEntities, scores, transactions } from "@/db/schema/transactions";
 import { probabilityOf } from "../decibans";
 import { formatAmount } from "../money";
 import { UNDECIDED_STATES } from "./codes";
-import type { LinkedCase } from "./schema";
+import { LinkedCase } from "./schema";
 
 type Payment = Pick<
   typeof transactions.$inferSelect,
   "id" | "accountId" | "cardRef" | "deviceId" | "counterpartyId" | "occurredAt"
 >;
 type By = z.infer<typeof LinkedCase>["by"];
+
+const LinkRows = z.array(z.object({ by: LinkedCase.shape.by, id: z.string() }));
 
 const DAY_MS = 86_400_000;
 const TOGETHER_MS = DAY_MS;
@@ -36,9 +38,7 @@ const COLUMNS = {
  */
 export async function readLinks(db: Executor, payment: Payment): Promise<z.infer<typeof LinkedCase>[]> {
   const linked = new Map<string, By>();
-  for (const { by, key } of entitiesOf(payment)) {
-    for (const id of await linkedIds(db, by, key, payment)) if (!linked.has(id)) linked.set(id, by);
-  }
+  for (const { by, id } of await linkedIds(db, payment)) if (!linked.has(id)) linked.set(id, by);
   if (linked.size === 0) return [];
   const rows = await db
     .select({
@@ -88,38 +88,31 @@ function entitiesOf(payment: Payment): { by: By; key: string }[] {
   });
 }
 
-async function linkedIds(db: Executor, by: By, key: string, payment: Payment): Promise<string[]> {
-  const atMs = payment.occurredAt.getTime();
-  const others = and(eq(COLUMNS[by], key), ne(transactions.id, payment.id));
-  const near = (fromMs: number, toMs: number) =>
-    between(transactions.occurredAt, new Date(fromMs), new Date(toMs));
-  const ids = db.select({ id: transactions.id }).from(transactions);
-  const together =
-    by === "account"
-      ? await db
-          .select({ id: transactions.id })
-          .from(transactions)
-          .where(and(others, near(atMs - TOGETHER_MS, atMs + TOGETHER_MS)))
-          .orderBy(asc(transactions.occurredAt))
-          .limit(MOST_TOGETHER)
-      : [];
-  const recent = await ids
-    .where(and(others, near(atMs - PAST_MS, atMs + TOGETHER_MS)))
-    .orderBy(desc(transactions.occurredAt))
-    .limit(MOST_RECENT);
-  const labelled = await db
-    .select({ id: labelledEntities.transactionId })
-    .from(labelledEntities)
-    .where(
-      and(
-        eq(labelledEntities.entityKind, by),
-        eq(labelledEntities.entityKey, key),
-        ne(labelledEntities.transactionId, payment.id),
-      ),
-    )
-    .orderBy(desc(labelledEntities.label), desc(labelledEntities.occurredAt))
-    .limit(MOST_LABELLED);
-  return [...together, ...recent, ...labelled].map(({ id }) => id);
+/** In one statement; each part of it is answered from an index and bounded. */
+async function linkedIds(db: Executor, payment: Payment): Promise<{ by: By; id: string }[]> {
+  const parts = entitiesOf(payment).flatMap(({ by, key }) => [
+    ...(by === "account" ? [nearest(by, key, payment, TOGETHER_MS, MOST_TOGETHER)] : []),
+    nearest(by, key, payment, PAST_MS, MOST_RECENT),
+    labelled(by, key, payment),
+  ]);
+  const [rows] = await db.execute(sql.join(parts, sql` union all `));
+  return LinkRows.parse(rows);
+}
+
+function nearest(by: By, key: string, { id, occurredAt }: Payment, beforeMs: number, limit: number): SQL {
+  const atMs = occurredAt.getTime();
+  const during = between(transactions.occurredAt, new Date(atMs - beforeMs), new Date(atMs + TOGETHER_MS));
+  return sql`(select ${by} as ${sql.identifier("by")}, id from ${transactions}
+    where ${and(eq(COLUMNS[by], key), ne(transactions.id, id), during)}
+    order by ${transactions.occurredAt} desc limit ${limit})`;
+}
+
+/** Fraud first. */
+function labelled(by: By, key: string, { id }: Payment): SQL {
+  const { entityKind, entityKey, transactionId, label, occurredAt } = labelledEntities;
+  return sql`(select ${by}, ${transactionId} from ${labelledEntities}
+    where ${and(eq(entityKind, by), eq(entityKey, key), ne(transactionId, id))}
+    order by ${label} desc, ${occurredAt} desc limit ${MOST_LABELLED})`;
 }
 
 /** A label that an outcome brought, where nobody gave a verdict. */

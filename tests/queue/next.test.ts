@@ -3,6 +3,7 @@ import { and, eq, inArray } from "drizzle-orm";
 import { beforeAll, describe, expect, test } from "vitest";
 import { createDatabase } from "@/db/client";
 import { cases } from "@/db/schema/cases";
+import { policies } from "@/db/schema/policies";
 import { trail } from "@/db/schema/trail";
 import { transactions } from "@/db/schema/transactions";
 import { takeNextCase } from "@/lib/cases/next";
@@ -12,6 +13,7 @@ import { stopRanking } from "@/lib/cases/ranking/ranking";
 import { releaseCase } from "@/lib/cases/release";
 import type { CaseView } from "@/lib/cases/schema";
 import type { PersonActor } from "@/lib/context";
+import { DEFAULT_TERMS } from "@/lib/policy/default-terms";
 import { ReplayedAnswer } from "@/lib/write-once";
 import { testWorld, type WaitingCase, WORLD_START, type World } from "../support/world";
 
@@ -23,6 +25,9 @@ let seed = 1;
 
 beforeAll(async () => {
   world = await testWorld();
+  // A line that need not be worked out from the scores for every case shown.
+  const terms = { ...DEFAULT_TERMS, reviewThreshold: { kind: "fixed" as const, probability: 0.1 } };
+  await world.db.update(policies).set({ terms }).where(eq(policies.version, 1));
   return () => stopRanking(world.db);
 });
 
