@@ -1,6 +1,7 @@
 import "server-only";
 import { setTimeout as sleep } from "node:timers/promises";
 import { sharedDatabase } from "@/db/client";
+import { rankingOf } from "../cases/ranking/ranking";
 import { environment } from "../env";
 import { log } from "../log";
 import { newId } from "../new-id";
@@ -23,6 +24,8 @@ export function startServerWork(): void {
   const scheduler = whenPrepared(async () => {
     const actor = { kind: "system" as const, job: "start" };
     await prepareInstallation({ db, now, actor, requestId: newId(), idempotency: null });
+    // Loaded before the first reviewer asks for the queue.
+    rankingOf(db);
     return startScheduler({ db, now }, JOBS);
   }, ended.signal);
   process.once("SIGTERM", () => {
