@@ -14,6 +14,8 @@ const baseURL = `http://localhost:${port}`;
 export default defineConfig({
   testDir: "e2e",
   outputDir: "test-results",
+  // Maps `@/` and stands in for `server-only`, as for commands.
+  tsconfig: "db/commands/tsconfig.json",
   workers: 2,
   retries: 0,
   forbidOnly: true,
