@@ -6,7 +6,7 @@ import { demand } from "../auth/demand";
 import { casesChanged } from "../cases/notify";
 import type { Context } from "../context";
 import { readScorerInUse } from "../learning/held-scorer";
-import { applyKeptOutcomes, applyKeptOutcomes } from "../outcomes/apply-kept";
+import { applyKeptOutcomes } from "../outcomes/apply-kept";
 import { policyInForce } from "../policy/read";
 import { appendTrail } from "../trail/append";
 import { writeOnce } from "../write-once";
@@ -138,11 +138,6 @@ async function store(
   await countArrivals(
     tx,
     scored.map((one) => ({ occurredAt: one.payment.occurredAt, passed: one.zone === "pass" })),
-  );
-  await applyKeptOutcomes(
-    ctx,
-    tx,
-    scored.map((one) => one.id),
   );
   await alongside?.(tx, results);
   // Behind the counts: it may lock the scorer and the trail's head, which come last in every write.
