@@ -4,12 +4,16 @@ import type { Tx } from "@/db/client";
 import { cases } from "@/db/schema/cases";
 import { demandPerson } from "../auth/demand";
 import type { Context } from "../context";
+import { forbidden } from "../errors";
+import { policyInForce } from "../policy/read";
 import { appendTrail } from "../trail/append";
 import { writeOnce } from "../write-once";
 import { changeCase, type LockedCase, lockCaseOrThrow, lockRoomForClaim, stateView } from "./locked-case";
 import { casesChanged } from "./notify";
-import { type CaseChange, claim } from "./rules";
+import { type CaseChange, claim, isPick } from "./rules";
 import type { CaseStateView } from "./schema";
+
+const PICKING_IS_OFF = "Your team takes the next case; picking from the list is switched off";
 
 /** Claims a case for ten minutes; its holder renews the lease with the same call. */
 export async function claimCase(ctx: Context, input: { id: string }): Promise<CaseStateView> {
@@ -18,6 +22,8 @@ export async function claimCase(ctx: Context, input: { id: string }): Promise<Ca
     const now = ctx.now();
     const row = await lockCaseOrThrow(tx, input.id);
     const change = claim(row, person, now);
+    const { terms } = await policyInForce(tx, now);
+    if (terms.takeNextOnly && isPick(row, person)) throw forbidden(PICKING_IS_OFF);
     if (row.claimedBy === person.personId) return stateView(await renew(tx, row, change, now));
     await lockRoomForClaim(tx, person.personId, now);
     const claimed = await changeCase(tx, row, change, now);

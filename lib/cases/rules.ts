@@ -55,6 +55,11 @@ export function isTakeable(row: CaseStanding, asker: Asker, now: Date): boolean 
   return free && holderOf(row, now) === null && isFor(row, asker);
 }
 
+/** Whether taking this case would be a free choice from the list, which a policy can forbid to reviewers. */
+export function isPick(row: CaseStanding, asker: Asker): boolean {
+  return !isSupervisor(asker) && row.assignedTo !== asker.personId && row.claimedBy !== asker.personId;
+}
+
 /** @throws KnownError conflict, forbidden */
 export function claim(row: CaseStanding, asker: Asker, now: Date): CaseChange {
   const refusal = closed(row);

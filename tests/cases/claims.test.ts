@@ -1,6 +1,7 @@
 import { eq } from "drizzle-orm";
 import { beforeAll, describe, expect, test } from "vitest";
 import { caseNotes, cases, noteDrafts } from "@/db/schema/cases";
+import { policies } from "@/db/schema/policies";
 import { trail } from "@/db/schema/trail";
 import { transactions } from "@/db/schema/transactions";
 import { assignCase } from "@/lib/cases/assign";
@@ -13,6 +14,7 @@ import { MOST_CLAIMS } from "@/lib/cases/rules";
 import { saveDraft } from "@/lib/cases/save-draft";
 import { setCaseWaiting } from "@/lib/cases/wait";
 import type { PersonActor } from "@/lib/context";
+import { DEFAULT_TERMS } from "@/lib/policy/default-terms";
 import { testWorld, type WaitingCase, WORLD_START, type World } from "../support/world";
 
 let world: World;
@@ -96,6 +98,27 @@ describe("a claim", () => {
     await expect(releaseCase(world.ctx(tove), { id })).rejects.toMatchObject(refused("conflict"));
     expect(await releaseCase(world.ctx(supervisor), { id })).toMatchObject({ state: "open", revision: 3 });
     expect(await actsOf(id)).toEqual(["case.claimed", "case.released"]);
+  });
+
+  test("by choice from the list is refused to reviewers where the policy has them take the next case", async () => {
+    const set = (takeNextOnly: boolean) =>
+      world.db
+        .update(policies)
+        .set({ terms: { ...DEFAULT_TERMS, takeNextOnly } })
+        .where(eq(policies.version, 1));
+    const [free, assigned, held] = [await oneCase(), await oneCase(), await oneCase()];
+    await claimCase(world.ctx(mira), { id: held });
+    await assignCase(world.ctx(supervisor), { id: assigned, personId: mira.personId });
+    await set(true);
+    try {
+      await expect(claimCase(world.ctx(mira), { id: free })).rejects.toMatchObject(refused("forbidden"));
+      expect((await claimCase(world.ctx(mira), { id: assigned })).state).toBe("claimed");
+      expect((await claimCase(world.ctx(mira, minutes(12)), { id: held })).state).toBe("claimed");
+      expect((await claimCase(world.ctx(supervisor), { id: free })).state).toBe("claimed");
+    } finally {
+      await set(false);
+    }
+    for (const id of [free, assigned, held]) await releaseCase(world.ctx(supervisor), { id });
   });
 
   test("on a case that is not there answers so", async () => {
