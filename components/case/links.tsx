@@ -22,23 +22,26 @@ type LinksProps = {
   evidence: EvidenceView | null;
   /** Where payments of the account can be decided in the same act. */
   ticks?: Ticks;
+  /** Of the headings, one below that of the part this stands in. */
+  level?: 3 | 4;
 };
 
 /** Other payments of the same account, card, device or counterparty, under the signals that look at them. */
-export function Links({ links, evidence, ticks }: LinksProps) {
+export function Links({ links, evidence, ticks, level = 4 }: LinksProps) {
+  const Heading = level === 3 ? "h3" : "h4";
   const groups = linkGroups(links, evidence);
   if (groups.length === 0)
     return <p className="text-soft">Nothing else shares an account, card, device or counterparty with it.</p>;
   return groups.map((group) => (
     <section key={group.by} aria-label={BY_WORDS[group.by]} className="mb-4 last:mb-0">
-      <h4 className="mb-1 flex flex-wrap items-baseline gap-x-3 text-small">
-        <span className="font-strong">{BY_WORDS[group.by]}</span>
+      <div className="mb-1 flex flex-wrap items-baseline gap-x-3 text-small">
+        <Heading className="font-strong">{BY_WORDS[group.by]}</Heading>
         {group.signals.slice(0, 3).map((signal) => (
           <span key={signal.key} className="text-soft">
             {signal.name} <Decibans decibans={signal.decibans} />
           </span>
         ))}
-      </h4>
+      </div>
       <LinkTable group={group} showScore={evidence !== null} {...(ticks && { ticks })} />
     </section>
   ));

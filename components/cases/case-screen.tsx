@@ -63,7 +63,7 @@ export function CaseScreen({ initial, ...rights }: CaseRights & { initial: CaseV
         title="Links"
         lead="Other payments that share something with it, under the signals that look at them."
       >
-        <Links links={view.links} evidence={view.evidence} />
+        <Links links={view.links} evidence={view.evidence} level={3} />
       </Section>
       <Section title="Notes">
         <div className="flex max-w-[70ch] flex-col gap-4">

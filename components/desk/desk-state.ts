@@ -124,12 +124,9 @@ export function deskReducer(state: DeskState, event: DeskEvent): DeskState {
         ),
       };
     case "read_again":
-      return {
-        ...state,
-        ready: state.ready.map((one) => (one.caseId === event.case.caseId ? event.case : one)),
-      };
+      return readAgain(event.case.mine ? state : lost(state, event.case.caseId), event.case);
     case "lost":
-      return { ...state, ready: state.ready.filter((one) => one.caseId !== event.caseId), dry: false };
+      return lost(state, event.caseId);
     case "released":
       return { ...state, toRelease: state.toRelease.filter((id) => !event.caseIds.includes(id)) };
   }
@@ -154,6 +151,18 @@ function served(state: DeskState, found: CaseView): DeskState {
     return { ...state, toRelease: [...state.toRelease, found.caseId] };
   }
   return { ...withDraft(state, found), ready: [...state.ready, found], dry: false };
+}
+
+/** From the elbow a case goes unseen; in hand it stays before the person, who is told that it is no longer theirs. */
+function lost(state: DeskState, caseId: string): DeskState {
+  const [hand, ...rest] = state.ready;
+  if (hand?.caseId === caseId)
+    return { ...state, ready: [{ ...hand, mine: false, claimedBy: null }, ...rest] };
+  return { ...state, ready: state.ready.filter((one) => one.caseId !== caseId), dry: false };
+}
+
+function readAgain(state: DeskState, found: CaseView): DeskState {
+  return { ...state, ready: state.ready.map((one) => (one.caseId === found.caseId ? found : one)) };
 }
 
 function committed(state: DeskState, sentId: string, act: Act): DeskState {

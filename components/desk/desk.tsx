@@ -31,6 +31,7 @@ export function Desk({ personId, wantedCaseId }: DeskProps) {
   const { noteQueue, noteCase } = list;
   const live = useLiveQueue({
     paused,
+    onOpen: useCallback(() => heardOf(null), [heardOf]),
     onQueue: useCallback(
       (queue: { version: number; total: number }) => {
         noteQueue(queue);
@@ -56,7 +57,6 @@ export function Desk({ personId, wantedCaseId }: DeskProps) {
   return (
     <div className="flex flex-col bench:h-[calc(100dvh-2.8125rem)]">
       <h1 className="sr-only">Desk</h1>
-      <Refusals sent={state.sent} onDismiss={desk.dismiss} />
       <div className="grid min-h-0 flex-1 grid-cols-1 bench:grid-cols-[minmax(0,1fr)_30rem] bench:grid-rows-[auto_minmax(0,1fr)]">
         <CaseInHand {...{ desk, rug, focus, say, scoreHidden, setScoreHidden }} />
         <div className="flex h-[32rem] min-h-0 flex-col border-rule border-t px-2 bench:h-auto bench:border-l">
@@ -69,6 +69,7 @@ export function Desk({ personId, wantedCaseId }: DeskProps) {
           />
         </div>
       </div>
+      <Refusals sent={state.sent} onDismiss={desk.dismiss} />
       <StatusBar
         line={line}
         sending={state.sent.filter((one) => one.state === "sending").length}

@@ -155,7 +155,7 @@ function Grid({ list, ready, thresholds, onPick, onLeave }: RankedListProps) {
 }
 
 function mineOf(caseId: string, ready: readonly CaseView[]): "in hand" | "next" | null {
-  const place = ready.findIndex((one) => one.caseId === caseId);
+  const place = ready.findIndex((one) => one.caseId === caseId && one.mine);
   if (place === 0) return "in hand";
   return place > 0 ? "next" : null;
 }

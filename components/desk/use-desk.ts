@@ -3,6 +3,7 @@ import { useCallback, useEffect, useReducer, useRef } from "react";
 import type { CaseView } from "@/lib/cases/schema";
 import { newId } from "@/lib/new-id";
 import { ApiProblem, api } from "../api";
+import { CASE_STATE_WORDS } from "../words";
 import { actLine } from "./act-line";
 import {
   type Act,
@@ -28,8 +29,8 @@ export type Desk = {
   undo: (sent: Sent) => void;
   typeNote: (caseId: string, note: string) => void;
   dismiss: (sentId: string) => void;
-  /** A case changed somewhere else: read it again if it is on this Desk. */
-  heardOf: (caseId: string) => void;
+  /** A case may have changed somewhere else (null: any of them): read it again if it is on this Desk. */
+  heardOf: (caseId: string | null) => void;
   /** There may be cases again after the server had none. */
   askAgain: () => void;
 };
@@ -54,7 +55,7 @@ export function useDesk(personId: string, wantedCaseId: string | null, say: Say,
         const moved = answer ? ` ${movedLine(answer.moved)}` : "";
         say(`${name} is ${actLine(sent.act)}.${moved}`);
         onMoved();
-        for (const ready of latest.current.ready) void readAgain(ready.caseId, dispatch);
+        for (const ready of latest.current.ready) void readAgain(ready, dispatch, say);
       } catch (error) {
         const problem = problemWords(error);
         const back = await stillMine(sent);
@@ -105,9 +106,14 @@ export function useDesk(personId: string, wantedCaseId: string | null, say: Say,
     undo,
     typeNote: (caseId, note) => dispatch({ kind: "note_typed", caseId, note }),
     dismiss: (sentId) => dispatch({ kind: "dismissed", sentId }),
-    heardOf: useCallback((caseId: string) => {
-      if (latest.current.ready.some((one) => one.caseId === caseId)) void readAgain(caseId, dispatch);
-    }, []),
+    heardOf: useCallback(
+      (caseId: string | null) => {
+        for (const ready of latest.current.ready) {
+          if (caseId === null || ready.caseId === caseId) void readAgain(ready, dispatch, say);
+        }
+      },
+      [say],
+    ),
     askAgain: useCallback(() => dispatch({ kind: "may_have_more" }), []),
   };
 }
@@ -161,12 +167,19 @@ async function firstCases(personId: string, wantedCaseId: string | null, say: Sa
   return [...wanted, ...held.filter((one) => one.caseId !== wantedCaseId)];
 }
 
-/** Brings a case on the Desk up to date; where it has gone from view it is dropped. */
-async function readAgain(caseId: string, dispatch: Dispatch): Promise<void> {
+/** Brings a case on the Desk up to date, and says so where it is no longer this person's. */
+async function readAgain(seen: CaseView, dispatch: Dispatch, say: Say): Promise<void> {
+  const gone = (why: string) =>
+    seen.mine && say(`Case ${seen.number} is no longer in your hands: ${why}.`, true);
   try {
-    dispatch({ kind: "read_again", case: await readCase(caseId) });
+    const now = await readCase(seen.caseId);
+    dispatch({ kind: "read_again", case: now });
+    if (!now.mine)
+      gone(now.claimedBy ? `${now.claimedBy.name} has it` : CASE_STATE_WORDS[now.state].toLowerCase());
   } catch (error) {
-    const gone = error instanceof ApiProblem && (error.status === 403 || error.status === 404);
-    if (gone) dispatch({ kind: "lost", caseId });
+    // Without an answer the case stays as it was seen; a commit will find out.
+    if (!(error instanceof ApiProblem) || error.status === 0 || error.status >= 500) return;
+    dispatch({ kind: "lost", caseId: seen.caseId });
+    gone("it went to somebody else");
   }
 }

@@ -17,10 +17,12 @@ const fresh = (caseId: string | null): Weighing => ({
   ticked: new Set(),
 });
 
-/** Marker, typology and ticked links of the case in hand; every other case finds them centred and empty. */
+/** Marker, typology and ticked links of the case in hand; whatever comes to hand finds them centred and empty. */
 export function useFinding(caseId: string | null) {
   const [kept, setKept] = useState(() => fresh(caseId));
   const now = kept.caseId === caseId ? kept : fresh(caseId);
+  // Also when a case comes back that was in hand before: Enter must not commit what was weighed then.
+  if (now !== kept) setKept(now);
   const change = (part: Partial<Weighing>) => setKept({ ...now, ...part });
   return {
     marker: now.marker,

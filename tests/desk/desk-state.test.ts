@@ -193,9 +193,18 @@ describe("what the server says meanwhile", () => {
     expect(state.ready[1]).toMatchObject({ revision: 9, claimExpiresAt: "2026-03-02T09:30:00.000Z" });
   });
 
+  it("drops a lost case from the elbow, and leaves one in hand before the person as no longer theirs", () => {
+    const state = deskAfter(EMPTY_DESK, served("a"), served("b"));
+    expect(ids(deskAfter(state, { kind: "lost", caseId: "b" }))).toEqual(["a"]);
+    const inHand = deskAfter(state, { kind: "lost", caseId: "a" });
+    expect(ids(inHand)).toEqual(["a", "b"]);
+    expect(inHand.ready[0]?.mine).toBe(false);
+    const taken = deskAfter(state, { kind: "read_again", case: caseOf("b", { mine: false }) });
+    expect(ids(taken)).toEqual(["a"]);
+  });
+
   it("ignores news of a case that has left the Desk", () => {
     const state = deskAfter(EMPTY_DESK, served("a"));
     expect(deskAfter(state, { kind: "read_again", case: caseOf("z") }).ready).toEqual(state.ready);
-    expect(ids(deskAfter(state, { kind: "lost", caseId: "a" }))).toEqual([]);
   });
 });
