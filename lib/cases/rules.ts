@@ -34,7 +34,7 @@ export function holderOf(row: CaseStanding, now: Date): string | null {
 }
 
 /** Where a case goes that nobody holds any more: to everybody, or back to the supervisors. */
-const unheldState = (escalatedAt: Date | null): CaseState => (escalatedAt ? "escalated" : "open");
+export const unheldState = (escalatedAt: Date | null): CaseState => (escalatedAt ? "escalated" : "open");
 
 /** Why a case in this state takes no further act; null while it still waits for a verdict. */
 function closed(row: CaseStanding): KnownError | null {

@@ -1,6 +1,5 @@
 import type { Role } from "../auth/codes";
 import type { CaseState } from "../cases/codes";
-import { LEASE_MINUTES } from "../cases/codes";
 import type { Verdict } from "./codes";
 
 export type DecidableCase = {
@@ -59,5 +58,3 @@ export function undoUntil(decidedAt: Date, undoMinutes: number, holdExpiresAt: D
   const byHold = holdExpiresAt ? holdExpiresAt.getTime() - 60_000 : Number.POSITIVE_INFINITY;
   return new Date(Math.max(decidedAt.getTime(), Math.min(byPolicy, byHold)));
 }
-
-export const leaseEnd = (now: Date): Date => new Date(now.getTime() + LEASE_MINUTES * 60_000);

@@ -5,6 +5,7 @@ import { cases, decisions } from "@/db/schema/cases";
 import { signalRefreshes } from "@/db/schema/scorers";
 import { demandPerson } from "../auth/demand";
 import { applyLearned } from "../cases/after-decision";
+import { leaseEnd, unheldState } from "../cases/rules";
 import type { Context, PersonActor } from "../context";
 import { conflict, ruleBroken } from "../errors";
 import { lockScorerInUse, saveScorer } from "../learning/held-scorer";
@@ -14,7 +15,6 @@ import { type Replacement, replaceLabels } from "../learning/replace";
 import { reverseBooking } from "../losses/book";
 import { appendTrail } from "../trail/append";
 import { completeAnswer, writeOnce } from "../write-once";
-import { leaseEnd } from "./rules";
 import type { RelearnView } from "./schema";
 import { findLastDecision, lockAct, type StandingDecision } from "./standing";
 
@@ -120,7 +120,7 @@ async function takeBack(
             claimedAt: now,
             claimExpiresAt: leaseEnd(now),
           }
-        : { state: "open" as const }),
+        : { state: unheldState(caseRow.escalatedAt) }),
       revision: sql`${cases.revision} + 1`,
       changedAt: now,
     })
