@@ -11,9 +11,6 @@ test("a whole shift goes by keyboard alone, from the sign-in on", async ({ page,
   test.setTimeout(120_000);
   const pointerUse = await countPointerUse(page);
   const desk = new DeskPage(page);
-  // Two payments of one account to decide together at the end, and work for everything before that.
-  const [first, second] = await office.openCases(suspiciousPayments(2));
-  if (!first || !second) throw new Error("Two cases were opened");
   for (let account = 0; account < 4; account++) await office.openCases(suspiciousPayments(2, "card_present"));
 
   await test.step("signs in from the start page", async () => {
@@ -121,6 +118,8 @@ test("a whole shift goes by keyboard alone, from the sign-in on", async ({ page,
   });
 
   await test.step("decides what links to a case in the same act", async () => {
+    const [first, second] = await office.openCases(suspiciousPayments(2));
+    if (!first || !second) throw new Error("Two cases were opened");
     hand = await desk.open(first.caseId);
     expect(hand.caseId).toBe(first.caseId);
     await press(page, "d");

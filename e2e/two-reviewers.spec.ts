@@ -79,12 +79,8 @@ test.describe("when a case is taken away meanwhile", () => {
     await press(page, "f");
     await page.keyboard.type(note);
     await press(page, "Escape", "ArrowRight", "1");
-    await office.asSupervisor(`/api/cases/${opened.caseId}/assign`, { personId: null });
-    await office.asSupervisor(`/api/cases/${opened.caseId}/decision`, {
-      verdict: "legitimate",
-      confidence: "sure",
-      seenVersion: await office.revisionOf(opened.caseId),
-    });
+    await office.assign([opened], null);
+    await office.decide(opened, "legitimate");
     await desk.settle();
     await press(page, "Enter");
 
@@ -138,12 +134,20 @@ test.describe("when a case is taken away meanwhile", () => {
     if (!opened) throw new Error("A case was opened");
     const page = await openAs(person);
     const desk = new DeskPage(page);
-    await desk.open(opened.caseId);
+    const hand = await desk.open(opened.caseId);
     await expect(page.getByText("Live", { exact: true })).toBeVisible();
     await press(page, "f");
     await page.keyboard.type(note);
     await office.assign([opened], another);
-    await expect(desk.status).toContainText(`Case ${opened.number}`);
-    await expect.poll(() => readDraft(db, opened.caseId)).toBe(note);
+    await expect(desk.status).toContainText(`Case ${opened.number} is no longer in your hands`);
+    await expect(desk.note).toBeFocused();
+    await expect(desk.note).toHaveValue(note);
+    await press(page, "Escape", "ArrowLeft");
+    await desk.settle();
+    await press(page, "Enter");
+    await expect(desk.status).toContainText("No longer in your hands.");
+    expect(await findDecision(db, opened.caseId)).toBeNull();
+    await press(page, "e");
+    await desk.nextAfter(hand);
   });
 });

@@ -1,5 +1,6 @@
 import { expect, type Locator, type Page } from "@playwright/test";
 import { press } from "./keyboard";
+import { textOf } from "./text";
 
 export type InHand = { caseId: string; number: number };
 
@@ -30,7 +31,7 @@ export class DeskPage {
   async inHand(): Promise<InHand> {
     await expect(this.heading).toBeFocused();
     const caseId = await this.hand.getAttribute("data-case-id");
-    const number = Number((await this.heading.locator("span").first().innerText()).replace("Case ", ""));
+    const number = Number((await textOf(this.heading.locator("span").first())).replace("Case ", ""));
     return { caseId: caseId as string, number };
   }
 

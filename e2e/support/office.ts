@@ -4,6 +4,7 @@ import type { Database } from "@/db/client";
 import { cases } from "@/db/schema/cases";
 import type { Role, Scope } from "@/lib/auth/codes";
 import type { PersonActor } from "@/lib/context";
+import type { Typology, Verdict } from "@/lib/decisions/codes";
 import { addKey } from "@/lib/keys/add";
 import { newId } from "@/lib/new-id";
 import type { TransactionsView } from "@/lib/transactions/schema";
@@ -50,9 +51,11 @@ export class Office {
     }));
   }
 
-  async revisionOf(caseId: string): Promise<number> {
-    const [row] = await this.db.select({ revision: cases.revision }).from(cases).where(eq(cases.id, caseId));
-    return row?.revision as number;
+  /** A supervisor decides a case, whoever has it. */
+  async decide({ caseId }: OpenedCase, verdict: Verdict, typology: Typology | null = null): Promise<void> {
+    const [row] = await this.db.select().from(cases).where(eq(cases.id, caseId));
+    const finding = { verdict, typology, confidence: "sure" };
+    await this.asSupervisor(`/api/cases/${caseId}/decision`, { ...finding, seenVersion: row?.revision });
   }
 
   async assign(opened: readonly OpenedCase[], person: Person | null): Promise<void> {
