@@ -16,6 +16,7 @@ export const PAGES = {
   "/intake/[id]": { may: "intake.read", name: "Import" },
   "/people": { may: "people.read", name: "People" },
   "/profile": { may: "account.own", name: "Profile" },
+  "/unsubscribe/[token]": { may: "anyone", name: "Weekly summaries" },
 } as const satisfies Record<string, { may: Capability | "anyone"; name: string }>;
 
 export type PagePath = keyof typeof PAGES;

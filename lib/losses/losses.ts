@@ -14,5 +14,18 @@ export async function readLosses(ctx: Context, input: LossesInput): Promise<Week
 }
 
 export async function lastCompleteWeek(ctx: Context): Promise<string> {
-  return shiftWeek(weekOf(ctx.now(), await readReportingZone(ctx.db)), -1);
+  return shiftWeek(await runningWeek(ctx), -1);
+}
+
+export type WeeksAround = { previous: string; next: string | null; running: string };
+
+/** Neighbours of a week for the way back and forth; nothing is known of weeks that have not begun. */
+export async function weeksAround(ctx: Context, week: string): Promise<WeeksAround> {
+  const running = await runningWeek(ctx);
+  // Labels of equal length: the later week is the greater text.
+  return { previous: shiftWeek(week, -1), next: week < running ? shiftWeek(week, 1) : null, running };
+}
+
+async function runningWeek(ctx: Context): Promise<string> {
+  return weekOf(ctx.now(), await readReportingZone(ctx.db));
 }
