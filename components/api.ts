@@ -94,19 +94,21 @@ async function answerOf({ path, init }: ApiRequest): Promise<Response> {
     return await fetch(path, init);
   } catch (error) {
     if (init.signal?.aborted) throw error;
-    throw new ApiProblem(0, "no_answer", "No answer from the server. Check the connection and try again.");
+    throw noAnswer();
   }
 }
 
 async function problemOf(response: Response): Promise<ApiProblem> {
-  const type = response.headers.get("Content-Type") ?? "";
-  if (!type.includes("json"))
-    return new ApiProblem(response.status, "unknown", `The server answered ${response.status}.`);
-  const body = (await response.json()) as { code?: string; detail?: string; errors?: FieldProblem[] };
-  return new ApiProblem(
-    response.status,
-    body.code ?? "unknown",
-    body.detail ?? `The server answered ${response.status}.`,
-    body.errors ?? [],
-  );
+  return problemFrom(response.status, response.headers.get("Content-Type"), await response.text());
+}
+
+export const noAnswer = () =>
+  new ApiProblem(0, "no_answer", "No answer from the server. Check the connection and try again.");
+
+/** What an answer that is no success says. */
+export function problemFrom(status: number, contentType: string | null, text: string): ApiProblem {
+  const plain = `The server answered ${status}.`;
+  if (!contentType?.includes("json")) return new ApiProblem(status, "unknown", plain);
+  const body = JSON.parse(text) as { code?: string; detail?: string; errors?: FieldProblem[] };
+  return new ApiProblem(status, body.code ?? "unknown", body.detail ?? plain, body.errors ?? []);
 }

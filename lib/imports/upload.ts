@@ -11,11 +11,11 @@ import { newId } from "../new-id";
 import { appendTrail } from "../trail/append";
 import { holdsCardNumber } from "../transactions/card-number";
 import { abandonUpload, uploadLeaseEnd } from "./abandon";
+import { LARGEST_FILE_BYTES, LARGEST_FILE_WORDS } from "./limits";
 import { BrokenOff, type FormFields, type FormFile, readForm } from "./multipart";
 import { readImportOrThrow } from "./read";
 import { type ImportView, UploadFields } from "./schema";
 
-const LARGEST_FILE_BYTES = 512 * 1024 ** 2;
 const CHUNK_BYTES = 1024 ** 2;
 
 /**
@@ -103,7 +103,10 @@ async function storeChunks(ctx: Context, importId: string, file: FormFile): Prom
     if (held >= CHUNK_BYTES) await flush();
   }
   if (file.truncated)
-    throw new KnownError("too_large", "The file is larger than 512 MB; compress it with gzip or split it");
+    throw new KnownError(
+      "too_large",
+      `The file is larger than ${LARGEST_FILE_WORDS}; compress it with gzip or split it`,
+    );
   await flush();
   if (sizeBytes === 0) throw invalid([{ path: "file", message: "is empty" }]);
 }
