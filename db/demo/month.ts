@@ -21,17 +21,17 @@ const HOUR_MS = 3_600_000;
 const SOURCE = "core-banking";
 /** Hours of the day at which the payments since the last one have come in. */
 const DELIVERIES = [6, 10, 14, 18, 24];
-const CASES_A_SHIFT = 5;
+const CASES_A_SHIFT = 3;
 const CHARGEBACK_AFTER_DAYS = 11;
 /** By the day of the scenario: proposed by a supervisor, approved by the risk manager. */
 const POLICY_CHANGES: Record<number, { reason: string; terms: Partial<PolicyTerms> }> = {
   0: {
-    reason: "The first team is small: three reviewers can look at about forty cases a day.",
-    terms: { reviewThreshold: { kind: "capacity", casesPerDay: 36 }, dailyCapacity: 40 },
+    reason: "The first team is small: three reviewers can look at about twenty-five cases a day.",
+    terms: { reviewThreshold: { kind: "capacity", casesPerDay: 24 }, dailyCapacity: 28 },
   },
   12: {
     reason: "A reviewer is back from training; the team can look at more.",
-    terms: { reviewThreshold: { kind: "capacity", casesPerDay: 48 }, dailyCapacity: 52 },
+    terms: { reviewThreshold: { kind: "capacity", casesPerDay: 30 }, dailyCapacity: 34 },
   },
 };
 

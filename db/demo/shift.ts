@@ -83,7 +83,9 @@ function findingOf(chance: Chance, truth: Truth): Truth {
 function togetherOf(view: CaseView, verdict: Truth["verdict"], truthOf: (externalId: string) => Truth) {
   if (verdict !== "fraudulent") return [];
   return view.links
-    .filter((link) => link.together && link.verdict === null && link.caseId !== view.caseId)
+    .filter(
+      (link) => link.together && link.verdict === null && (link.state === null || link.state === "open"),
+    )
     .slice(0, 6)
     .map((link) => ({ transactionId: link.transactionId, ...truthOf(link.externalId) }));
 }

@@ -18,6 +18,8 @@ type By = z.infer<typeof LinkedCase>["by"];
 const LinkRows = z.array(z.object({ by: LinkedCase.shape.by, id: z.string() }));
 
 const DAY_MS = 86_400_000;
+/** An escalated case is its supervisor's to decide, by itself. */
+const DECIDABLE_STATES = UNDECIDED_STATES.filter((state) => state !== "escalated");
 const TOGETHER_MS = DAY_MS;
 const PAST_MS = 30 * DAY_MS;
 /** Payments of the account that can be decided in the same act. */
@@ -71,7 +73,7 @@ export async function readLinks(db: Executor, payment: Payment): Promise<z.infer
     together:
       transaction.accountId === payment.accountId &&
       Math.abs(transaction.occurredAt.getTime() - payment.occurredAt.getTime()) <= TOGETHER_MS &&
-      (state === null || UNDECIDED_STATES.some((undecided) => undecided === state)),
+      (state === null || DECIDABLE_STATES.some((decidable) => decidable === state)),
   }));
 }
 
