@@ -50,8 +50,17 @@ export function Links({ links, evidence, ticks, level = 4 }: LinksProps) {
 function LinkTable({ group, showScore, ticks }: { group: LinkGroup; showScore: boolean; ticks?: Ticks }) {
   return (
     <div className="overflow-x-auto">
-      <table className="w-full text-left text-small">
+      <table className="w-full table-fixed text-left text-small">
         <caption className="sr-only">{BY_WORDS[group.by]}</caption>
+        <colgroup>
+          {ticks && <col className="w-7" />}
+          <col className="w-24 sm:w-32" />
+          <col className="w-24 sm:w-28" />
+          <col className="w-28 sm:w-40" />
+          <col className="max-sm:hidden" />
+          <col />
+          {showScore && <col className="w-20 max-sm:hidden" />}
+        </colgroup>
         <thead className="sr-only">
           <tr>
             {ticks && <th scope="col">Decide together</th>}

@@ -82,7 +82,6 @@ function Bar({ row, onOpen }: { row: BarRow; onOpen?: () => void }) {
           <span className={row.kind === "total" ? "font-strong" : ""}>{row.name}</span>
         )}
         {row.reading && <span className="text-soft">, {row.reading}</span>}
-        <span className="sr-only">:</span>
       </span>
       <span
         aria-hidden="true"

@@ -26,7 +26,7 @@ export function CaseFilters({ filters, setFilters, filtered }: CaseFiltersProps)
   return (
     <search>
       <form onSubmit={search} className="mb-5 flex flex-wrap items-end gap-3">
-        <Field label="Number, reference or account" className="w-56">
+        <Field label="Number, reference or account" className="w-full sm:w-56">
           <Input
             key={filters.search}
             name="search"
@@ -99,7 +99,7 @@ type PickProps = {
 
 function Pick({ label, value, onPick, children }: PickProps) {
   return (
-    <Field label={label} className="w-40">
+    <Field label={label} className="w-[calc(50%-0.375rem)] sm:w-40">
       <Select value={value ?? ""} onChange={(event) => onPick(event.target.value)}>
         <option value="">Any</option>
         {children}
