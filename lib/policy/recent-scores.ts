@@ -67,6 +67,9 @@ const CASES_IN_CUT = 100;
 const FEWEST_RESCORED = 2_000;
 const RESCORED_IN_A_ROW = 200;
 
+/** The scorer and the version of its state. */
+export type ScorerInUse = { scorer: Scorer; version: number };
+
 /**
  * As `cutOfRecent`, on the scores that the newest payments would get from the scorer as it is now. Scores given at
  * arrival lag behind a scorer that learns: while its evidence falls, a cut taken from them yields too few cases.
@@ -75,8 +78,10 @@ export async function cutByScorer(
   db: Executor,
   recent: RecentScores,
   casesPerDay: number,
-  scorer: Scorer,
+  { scorer, version }: ScorerInUse,
 ): Promise<number> {
+  // Nothing learned since the oldest of them, as during an import: they are its scores already.
+  if ((await oldestVersion(db, recent)) === version) return cutOfRecent(db, recent, casesPerDay);
   const share = Math.min(1, (casesPerDay * (await daysOf(db, recent))) / recent.count);
   const rows = await db
     .select({ vector: scores.vector })
@@ -91,6 +96,17 @@ export async function cutByScorer(
   }
   const wished = Math.round(share * rows.length);
   return cutBelow(logits.sort((a, b) => b - a).slice(0, wished + 1), wished);
+}
+
+/** Versions only grow, so all of the scores are of the oldest one's or later. */
+async function oldestVersion(db: Executor, recent: RecentScores): Promise<number | undefined> {
+  const [oldest] = await db
+    .select({ version: scores.scorerVersion })
+    .from(scores, NEWEST_FIRST)
+    .where(recent.where)
+    .orderBy(scores.takenAt)
+    .limit(1);
+  return oldest?.version;
 }
 
 export async function histogramOf(db: Executor, recent: RecentScores): Promise<ScoreHistogram> {

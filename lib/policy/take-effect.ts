@@ -32,7 +32,7 @@ export async function applyPolicyInForce(ctx: Context): Promise<void> {
 /** An installation that is still being set up has no scorer, and no scores to take a cut from either. */
 async function takeCut(db: Executor, policy: PolicyInForce, now: Date): Promise<void> {
   const held = await findScorerInUse(db);
-  if (held) await refreshCut(db, policy, now, held.scorer);
+  if (held) await refreshCut(db, policy, now, held);
 }
 
 async function hasOtherBaseRate(db: Executor, policy: PolicyInForce): Promise<boolean> {

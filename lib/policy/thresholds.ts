@@ -4,10 +4,9 @@ import type { Executor } from "@/db/client";
 import { policyCuts } from "@/db/schema/policies";
 import { scores } from "@/db/schema/transactions";
 import { logitOf } from "../decibans";
-import type { Scorer } from "../scorer";
 import { capacityCut, type ScoredArrival } from "./capacity-cut";
 import type { PolicyInForce } from "./read";
-import { cutByScorer, cutOfRecent, newestScores } from "./recent-scores";
+import { cutByScorer, cutOfRecent, newestScores, type ScorerInUse } from "./recent-scores";
 import type { Thresholds } from "./rules";
 
 /** Newest arrival scores that a cut is taken from. */
@@ -45,7 +44,7 @@ export async function refreshCut(
   db: Executor,
   policy: PolicyInForce,
   now: Date,
-  scorer: Scorer,
+  held: ScorerInUse,
   batch: readonly ScoredArrival[] = [],
 ): Promise<Thresholds> {
   const wish = policy.terms.reviewThreshold;
@@ -57,7 +56,7 @@ export async function refreshCut(
   const scoreCount = fromRecent ? recent.count : batch.length;
   if (scoreCount < FEWEST_SCORES) return withReviewLine(policy, last?.logit ?? CUT_WITHOUT_SCORES);
   const logit = fromRecent
-    ? await cutByScorer(db, recent, wish.casesPerDay, scorer)
+    ? await cutByScorer(db, recent, wish.casesPerDay, held)
     : capacityCut(batch, wish.casesPerDay);
   const cut = { logit, scoreCount, lastScoreId: recent.lastScoreId };
   await db

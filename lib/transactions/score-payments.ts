@@ -49,7 +49,7 @@ export async function scorePayments(
     db,
     policy,
     now,
-    held.scorer,
+    held,
     measured.map(({ logit, payment }) => ({ logit, occurredAt: payment.occurredAt })),
   );
   const chances = await sampleChances(db, payments, policy);
