@@ -1,5 +1,6 @@
 import type { Metadata } from "next";
 import { redirect } from "next/navigation";
+import { Mark } from "@/components/shell/mark";
 import { SignInForm } from "@/components/sign-in/sign-in-form";
 import { Page, PageHead } from "@/components/ui/section";
 import { localPath } from "@/lib/auth/asked-path";
@@ -16,7 +17,11 @@ export default async function SignInPage({ searchParams }: SignInPageProps) {
   if (await signedInContext()) redirect(onward);
   return (
     <Page>
-      <PageHead title="Sign in" />
+      <p className="mb-6 flex items-center gap-2 border-b border-rule pb-3 font-strong tracking-wide">
+        <Mark />
+        Cupel
+      </p>
+      <PageHead title="Sign in" lead="Payment-fraud alerts, weighed and decided." />
       <SignInForm from={onward} demoSignIns={listDemoSignIns()} />
     </Page>
   );

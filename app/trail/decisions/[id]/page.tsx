@@ -4,13 +4,15 @@ import { silentSignals } from "@/components/case/evidence-rows";
 import { SignalBars } from "@/components/case/signal-bars";
 import { DecisionFacts } from "@/components/trail/decision-facts";
 import { EntryTable } from "@/components/trail/entry-table";
-import { PolicyUsed } from "@/components/trail/policy-terms";
+import { PolicyUsed } from "@/components/trail/policy-used";
 import { Notice } from "@/components/ui/notice";
 import { Page, PageHead, Section } from "@/components/ui/section";
 import { readDecisionRecord } from "@/lib/audit/decision-record";
 import { DecisionRecordInput } from "@/lib/audit/schema";
 import { forPage, pageContext } from "@/lib/auth/page-context";
 import { notFound } from "@/lib/errors";
+import { minorDigits } from "@/lib/money";
+import { readBaseCurrency } from "@/lib/transactions/base-currency";
 
 export const metadata: Metadata = { title: "Decision" };
 
@@ -21,6 +23,7 @@ export default async function DecisionPage({ params }: { params: Promise<{ id: s
     input.success ? readDecisionRecord(ctx, input.data) : Promise.reject(notFound("This decision")),
   );
   const { evidence } = record;
+  const code = await readBaseCurrency(ctx.db);
   const silent = silentSignals(evidence);
   return (
     <Page wide>
@@ -57,7 +60,7 @@ export default async function DecisionPage({ params }: { params: Promise<{ id: s
         />
       </Section>
       <Section title="The policy it fell under">
-        <PolicyUsed policy={record.policy} />
+        <PolicyUsed policy={record.policy} currency={{ code, minorDigits: minorDigits(code) ?? 2 }} />
       </Section>
       <Section title="The trail of the case">
         <EntryTable caption="All that happened to the case, oldest first" entries={record.entries} />

@@ -1,10 +1,12 @@
-import { leavesOf } from "@/lib/policy/changes";
 import type { PolicyRecord } from "@/lib/policy/schema";
+import type { Currency } from "../policy/term-values";
+import { TermsInForce } from "../policy/terms-in-force";
 import { Time } from "../ui/time";
-import { FactList } from "./fact-list";
 
-/** The policy a decision fell under: its lines, who stood for it, and every term. */
-export function PolicyUsed({ policy }: { policy: PolicyRecord }) {
+type PolicyUsedProps = { policy: PolicyRecord; currency: Currency };
+
+/** The policy a decision fell under: since when, who stood for it, and every term. */
+export function PolicyUsed({ policy, currency }: PolicyUsedProps) {
   return (
     <>
       <p>
@@ -19,8 +21,8 @@ export function PolicyUsed({ policy }: { policy: PolicyRecord }) {
       </p>
       <p className="text-soft">{policy.reason}</p>
       <details className="mt-2">
-        <summary className="text-small">All terms</summary>
-        <FactList facts={Object.fromEntries(leavesOf(policy.terms))} />
+        <summary className="mb-3 text-small">All terms</summary>
+        <TermsInForce terms={policy.terms} currency={currency} />
       </details>
     </>
   );
