@@ -12,7 +12,7 @@ export function termChanges(before: object, after: object): TermChange[] {
     .filter(({ from, to }) => from !== to);
 }
 
-export function leavesOf(value: object, prefix = ""): [string, Leaf][] {
+function leavesOf(value: object, prefix = ""): [string, Leaf][] {
   return Object.entries(value).flatMap(([key, inner]): [string, Leaf][] => {
     const path = prefix ? `${prefix}.${key}` : key;
     return typeof inner === "object" && inner !== null ? leavesOf(inner, path) : [[path, inner as Leaf]];
