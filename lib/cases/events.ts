@@ -52,7 +52,7 @@ function follow(feed: Feed, sender: EventSender, missed: readonly CaseNews[]): (
     const news = await model.read(feed.ctx.now(), (view) => ({
       logSeq: view.logSeq,
       version: view.version,
-      total: feed.reader.seesAll ? view.size : countVisible(view, feed.reader),
+      total: view.countSeenBy(feed.reader, null),
     }));
     sender.send("queue", news.logSeq, { version: news.version, total: news.total });
   };
@@ -83,16 +83,6 @@ function newsFor({ changes }: RankingEvent, reader: Reader): CaseNews[] {
   );
   if (visible.length > MOST_NAMED) return [];
   return visible.map(({ caseId, state }) => ({ caseId, state }));
-}
-
-function countVisible(
-  view: { size: number; arrivedAt: (position: number) => Parameters<typeof maySee>[0] },
-  reader: Reader,
-) {
-  let count = 0;
-  for (let position = 0; position < view.size; position++)
-    if (maySee(view.arrivedAt(position), reader)) count += 1;
-  return count;
 }
 
 function lastSeen(headers: Headers): number | null {

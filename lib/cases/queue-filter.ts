@@ -1,19 +1,24 @@
 import type { CaseFacts } from "./ranking/waiting-cases";
 import type { QueueInput } from "./schema";
-import { maySee, type Reader } from "./visibility";
+import type { Reader } from "./visibility";
 
 type Filter = Pick<QueueInput, "zone" | "channel" | "state" | "assignee" | "search">;
+export type Matcher = (facts: CaseFacts) => boolean;
 
-/** Whether a case belongs on the list that this reader asked for. */
-export function matcherOf(filter: Filter, reader: Reader): (facts: CaseFacts) => boolean {
-  const search = filter.search?.toLowerCase() || null;
+/** Whether a case belongs on the list as it was asked for; null where nothing was asked for. */
+export function matcherOf(
+  { zone, channel, state, assignee, search }: Filter,
+  reader: Reader,
+): Matcher | null {
+  const searched = search?.toLowerCase() || null;
+  if ([zone, channel, state, assignee, searched].every((part) => part === undefined || part === null))
+    return null;
   return (facts) =>
-    (filter.zone === undefined || facts.zone === filter.zone) &&
-    (filter.channel === undefined || facts.channel === filter.channel) &&
-    (filter.state === undefined || facts.state === filter.state) &&
-    maySee(facts, reader) &&
-    isAssigned(facts, filter.assignee, reader) &&
-    (search === null || isFound(facts, search));
+    (zone === undefined || facts.zone === zone) &&
+    (channel === undefined || facts.channel === channel) &&
+    (state === undefined || facts.state === state) &&
+    isAssigned(facts, assignee, reader) &&
+    (searched === null || isFound(facts, searched));
 }
 
 function isAssigned(facts: CaseFacts, assignee: Filter["assignee"], reader: Reader): boolean {

@@ -24,9 +24,10 @@ const claimer = alias(people, "claimer");
 export async function listQueue(ctx: Context, input: QueueInput): Promise<QueueView> {
   demand(ctx, "cases.read");
   const now = ctx.now();
-  const matches = matcherOf(input, readerOf(ctx.actor));
+  const reader = readerOf(ctx.actor);
+  const matches = matcherOf(input, reader);
   const after = input.cursor === undefined ? null : placeOf(input.cursor);
-  const page = await rankingOf(ctx.db).read(now, (view) => pageOf(view, matches, after, input.limit));
+  const page = await rankingOf(ctx.db).read(now, (view) => pageOf(view, reader, matches, after, input.limit));
   const { version, total, next } = page;
   return { version, total, items: await readItems(ctx.db, page.cases, now), next };
 }

@@ -4,7 +4,7 @@ import type { Context } from "../context";
 import { natsToDecibans } from "../decibans";
 import { rankingOf } from "./ranking/ranking";
 import type { RugView } from "./schema";
-import { maySee, readerOf } from "./visibility";
+import { readerOf } from "./visibility";
 
 /** Finer than a tick on any screen is wide, and a third of the bytes. */
 const TICKS_PER_DECIBAN = 100;
@@ -16,7 +16,7 @@ export async function readRug(ctx: Context): Promise<RugView> {
   return rankingOf(ctx.db).read(ctx.now(), (view) => {
     const evidenceDecibans: number[] = [];
     for (let index = 0; index < view.size; index++) {
-      if (!maySee(view.caseAt(index), reader)) continue;
+      if (!view.isSeenAt(index, reader)) continue;
       const decibans = natsToDecibans(view.logitAt(index));
       evidenceDecibans.push(Math.round(decibans * TICKS_PER_DECIBAN) / TICKS_PER_DECIBAN);
     }

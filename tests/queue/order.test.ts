@@ -23,10 +23,7 @@ const rankable = (items: readonly Item[]): Rankable => ({
   logit: (i) => (items[i] as Item).logit,
   leverage: (i) => items[i]?.leverage ?? 1,
   amountBaseMinor: (i) => items[i]?.amount ?? 100,
-  holdExpiresAtMs: (i) => {
-    const ends = items[i]?.holdEndsInMinutes ?? null;
-    return ends === null ? null : NOW_MS + ends * MINUTE_MS;
-  },
+  holdEndMs: (i) => NOW_MS + (items[i]?.holdEndsInMinutes ?? Number.POSITIVE_INFINITY) * MINUTE_MS,
 });
 
 const named = (items: readonly Item[], terms: PolicyTerms) =>

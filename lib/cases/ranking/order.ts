@@ -11,8 +11,8 @@ export type Rankable = {
   /** s = x·Px of the scorer: how little experience there is with a vector like this. */
   leverage: (i: number) => number;
   amountBaseMinor: (i: number) => number;
-  /** End of a hold that stands, in ms; null where nothing is held. */
-  holdExpiresAtMs: (i: number) => number | null;
+  /** End of a hold that stands, in ms; Infinity where nothing is held. */
+  holdEndMs: (i: number) => number;
 };
 
 export type Ranking = {
@@ -46,8 +46,8 @@ export function keysOf(cases: Rankable, terms: PolicyTerms, nowMs: number): Keys
   let goodUntilMs = Number.POSITIVE_INFINITY;
   for (let i = 0; i < count; i++) {
     keys[i] = orderKey(cases, i, terms);
-    const expiresMs = cases.holdExpiresAtMs(i);
-    if (expiresMs === null || expiresMs <= nowMs) continue;
+    const expiresMs = cases.holdEndMs(i);
+    if (expiresMs === Number.POSITIVE_INFINITY || expiresMs <= nowMs) continue;
     const startsMs = expiresMs - windowMs;
     if (startsMs <= nowMs) {
       keys[i] = cases.amountBaseMinor(i);

@@ -2,7 +2,8 @@ import "server-only";
 import type { HeldScorer } from "../../learning/held-scorer";
 import type { PolicyInForce } from "../../policy/read";
 import type { Thresholds } from "../../policy/rules";
-import { inOrder, keysOf, type Place, type Ranking } from "./order";
+import type { Reader } from "../visibility";
+import { inOrder, isBehind, keysOf, type Place, type Ranking } from "./order";
 import { Breath } from "./turns";
 import type { CaseFacts, WaitingCases } from "./waiting-cases";
 
@@ -63,18 +64,51 @@ export class RankingView {
     return this.cases.published[this.slotAt(index)] as number;
   }
 
-  placeAt(index: number): Place {
-    const position = this.ranking.order[index] as number;
-    return {
-      expiring: index < this.ranking.expiring,
-      key: this.ranking.keys[position] as number,
-      number: this.caseAt(index).number,
-    };
+  isSeenAt(index: number, reader: Reader): boolean {
+    return this.cases.isSeenBy(this.slotAt(index), reader);
   }
 
-  /** By arrival, oldest first. */
-  arrivedAt(position: number): CaseFacts {
-    return this.cases.factsIn(this.slots[position] as number);
+  placeAt(index: number): Place {
+    const position = this.ranking.order[index] as number;
+    const { number } = this.caseAt(index);
+    return { expiring: index < this.expiring, key: this.ranking.keys[position] as number, number };
+  }
+
+  /** How many cases a reader may see, of those that match. */
+  countSeenBy(reader: Reader, matches: ((facts: CaseFacts) => boolean) | null): number {
+    if (reader.seesAll && !matches) return this.size;
+    let count = 0;
+    for (const slot of this.slots) {
+      if (this.cases.isSeenBy(slot, reader) && (!matches || matches(this.cases.factsIn(slot)))) count += 1;
+    }
+    return count;
+  }
+
+  /** Samples by arrival, oldest first. */
+  *samples(): Iterable<CaseFacts> {
+    const { isSample } = this.cases.columns;
+    for (const slot of this.slots) if (isSample[slot] === 1) yield this.cases.factsIn(slot);
+  }
+
+  /** Cases whose deadline lies before a time, by arrival; `atMs` is asked anew for each. */
+  *dueBefore(atMs: () => number): Iterable<CaseFacts> {
+    const { dueMs } = this.cases.columns;
+    for (const slot of this.slots) if ((dueMs[slot] as number) < atMs()) yield this.cases.factsIn(slot);
+  }
+
+  /** Cases assigned to a person that are no holds about to expire, best first. */
+  assignedTo(personId: string): CaseFacts[] {
+    const inFront = new Set(this.ranking.order.subarray(0, this.expiring));
+    const placed: { facts: CaseFacts; place: Place }[] = [];
+    for (const caseId of this.cases.assignedTo(personId)) {
+      const position = this.cases.positionOf(caseId);
+      if (position === undefined || inFront.has(position)) continue;
+      const facts = this.cases.factsIn(this.slots[position] as number);
+      const key = this.ranking.keys[position] as number;
+      placed.push({ facts, place: { expiring: false, key, number: facts.number } });
+    }
+    placed.sort((a, b) => (isBehind(a.place, b.place) ? 1 : -1));
+    return placed.map(({ facts }) => facts);
   }
 
   find(caseId: string): { facts: CaseFacts; logit: number } | null {

@@ -3,6 +3,8 @@ import { createWaiting, type Scorer, type Waiting } from "../../scorer";
 import type { Channel } from "../../transactions/codes";
 import type { CASE_KINDS } from "../codes";
 import type { CaseStanding } from "../rules";
+import { maySee, type Reader } from "../visibility";
+import { Columns } from "./columns";
 import type { Rankable } from "./order";
 
 /** What the ranking keeps of a waiting case besides its vector. */
@@ -29,10 +31,12 @@ export class WaitingCases {
   readonly waiting: Waiting;
   /** Log-odds by slot as last published; what readers see while the scores are being brought forward. */
   published = new Float64Array(0);
+  readonly columns = new Columns();
   private readonly facts: (CaseFacts | undefined)[] = [];
   private readonly slots = new Map<string, number>();
   /** Slots in order of arrival. */
   private readonly arrival: number[] = [];
+  private readonly assigned = new Map<string, Set<string>>();
 
   constructor(scorer: Scorer, capacityHint = 0) {
     this.waiting = createWaiting(scorer.dimension, capacityHint, scorer.reading().parts.length);
@@ -56,6 +60,21 @@ export class WaitingCases {
     return this.facts[slot] as CaseFacts;
   }
 
+  /** Ids of the cases assigned to a person. */
+  assignedTo(personId: string): Iterable<string> {
+    return this.assigned.get(personId) ?? [];
+  }
+
+  /** How many cases arrived before it; undefined for one that does not wait. */
+  positionOf(caseId: string): number | undefined {
+    const facts = this.find(caseId);
+    return facts && this.arrivalIndex(facts.number);
+  }
+
+  isSeenBy(slot: number, reader: Reader): boolean {
+    return reader.seesAll || this.columns.isEverybodys[slot] === 1 || maySee(this.factsIn(slot), reader);
+  }
+
   /** Takes a case in, or its new vector, at the scorer's present state. Errors: DimensionError, NotFiniteError. */
   place(facts: CaseFacts, vector: Float64Array, scorer: Scorer): void {
     const present = this.slots.get(facts.id);
@@ -63,7 +82,7 @@ export class WaitingCases {
     if (present !== undefined) this.waiting.replace(slot, vector, scorer);
     else this.arrival.splice(this.arrivalIndex(facts.number), 0, slot);
     this.slots.set(facts.id, slot);
-    this.facts[slot] = facts;
+    this.setFacts(slot, facts);
     if (slot >= this.published.length) this.growPublished(slot + 1);
     this.published[slot] = this.waiting.logit(slot);
   }
@@ -71,7 +90,7 @@ export class WaitingCases {
   /** Everything but the vector. */
   update(facts: CaseFacts): void {
     const slot = this.slots.get(facts.id);
-    if (slot !== undefined) this.facts[slot] = facts;
+    if (slot !== undefined) this.setFacts(slot, facts);
   }
 
   remove(caseId: string): void {
@@ -80,7 +99,7 @@ export class WaitingCases {
     this.arrival.splice(this.arrivalIndex(this.factsIn(slot).number), 1);
     this.waiting.remove(slot);
     this.slots.delete(caseId);
-    this.facts[slot] = undefined;
+    this.setFacts(slot, undefined);
   }
 
   slotsByArrival(): Uint32Array {
@@ -93,9 +112,20 @@ export class WaitingCases {
       count: slots.length,
       logit: (i) => this.published[slots[i] as number] as number,
       leverage: (i) => this.waiting.leverage(slots[i] as number),
-      amountBaseMinor: (i) => this.factsIn(slots[i] as number).amountBaseMinor,
-      holdExpiresAtMs: (i) => this.factsIn(slots[i] as number).holdExpiresAt?.getTime() ?? null,
+      amountBaseMinor: (i) => this.columns.amountBaseMinor[slots[i] as number] as number,
+      holdEndMs: (i) => this.columns.holdEndMs[slots[i] as number] as number,
     };
+  }
+
+  private setFacts(slot: number, facts: CaseFacts | undefined): void {
+    const before = this.facts[slot];
+    if (before?.assignedTo) this.assigned.get(before.assignedTo)?.delete(before.id);
+    this.facts[slot] = facts;
+    if (!facts) return;
+    this.columns.set(slot, facts);
+    if (facts.assignedTo === null) return;
+    const theirs = this.assigned.get(facts.assignedTo) ?? new Set();
+    this.assigned.set(facts.assignedTo, theirs.add(facts.id));
   }
 
   /** First place in the order of arrival whose number is not below. */
