@@ -43,7 +43,7 @@ export function AssignBar({ selected, items, people, onClear, onDone }: AssignBa
   const none = selected.length === 0;
   const person = people.find(({ id }) => id === personId);
   return (
-    <div className="sticky top-0 z-10 mb-2 border-y border-rule bg-paper py-2">
+    <div className="top-0 z-10 mb-2 border-y border-rule bg-paper py-2 md:sticky">
       <div className="flex flex-wrap items-end gap-2">
         <p aria-live="polite" className="min-h-9 content-center pr-2 tabular-nums">
           {none ? "No case chosen" : `${cases(selected.length)} chosen`}

@@ -94,10 +94,10 @@ export function CaseRows({ items, selection, sorting, busy }: CaseRowsProps) {
               <With item={item} />
             </Td>
             <Td>
-              <TimeLeft until={item.dueAt} before="in" after="overdue by" />
+              <TimeLeft until={item.dueAt} before="" after="overdue by" />
             </Td>
             <Td>
-              {item.holdExpiresAt ? <TimeLeft until={item.holdExpiresAt} before="in" after="ended" /> : "–"}
+              {item.holdExpiresAt ? <TimeLeft until={item.holdExpiresAt} before="" after="ended" /> : "–"}
             </Td>
             <Td>
               <Time at={item.openedAt} as="short" />

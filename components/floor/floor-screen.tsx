@@ -48,7 +48,6 @@ export function FloorScreen({ view, list }: FloorScreenProps) {
       </PageHead>
       <FloorFigures view={view} />
       <div aria-live="polite">{said && <Notice className="mb-5">{said}</Notice>}</div>
-      <CasesSection list={list} people={view.people} onDone={done} />
       <Section title="People" lead="Everybody who decides cases, and today's verdicts since midnight.">
         {view.people.length === 0 ? (
           <EmptyState title="Nobody decides cases yet">
@@ -64,6 +63,7 @@ export function FloorScreen({ view, list }: FloorScreenProps) {
           {channels.length > 0 && <WhereTable by="channel" title="Channel" rows={channels} />}
         </div>
       </Section>
+      <CasesSection list={list} people={view.people} onDone={done} />
     </Page>
   );
 }

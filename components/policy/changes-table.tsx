@@ -1,6 +1,9 @@
 import type { TermChange } from "@/lib/policy/changes";
 import { RowTh, Table, Td, Th } from "../ui/table";
 import { type Currency, sayValue, termAt } from "./term-values";
+import { TERM_GROUPS } from "./terms";
+
+const PLACES = new Map(TERM_GROUPS.flatMap(({ terms }) => terms).map(({ path }, place) => [path, place]));
 
 type ChangesTableProps = {
   changes: readonly TermChange[];
@@ -8,12 +11,14 @@ type ChangesTableProps = {
   /** Over the columns: "In force", "Version 3". */
   before: string;
   after: string;
+  /** Tells this table from others of its kind on the screen: "proposal 2". */
+  of: string;
 };
 
 /** Every term that differs, old beside new. */
-export function ChangesTable({ changes, currency, before, after }: ChangesTableProps) {
+export function ChangesTable({ changes, currency, before, after, of }: ChangesTableProps) {
   return (
-    <Table caption={`What changes: ${before} beside ${after}`} captionHidden>
+    <Table caption={`What changes, ${of}`} captionHidden>
       <thead>
         <tr>
           <Th>Term</Th>
@@ -22,7 +27,7 @@ export function ChangesTable({ changes, currency, before, after }: ChangesTableP
         </tr>
       </thead>
       <tbody>
-        {changes.map(({ path, from, to }) => {
+        {inFormOrder(changes).map(({ path, from, to }) => {
           const term = termAt(path);
           return (
             <tr key={path}>
@@ -35,4 +40,10 @@ export function ChangesTable({ changes, currency, before, after }: ChangesTableP
       </tbody>
     </Table>
   );
+}
+
+/** As the form has them, so that what belongs together stands together. */
+function inFormOrder(changes: readonly TermChange[]): TermChange[] {
+  const place = ({ path }: TermChange) => PLACES.get(path) ?? PLACES.size;
+  return changes.toSorted((a, b) => place(a) - place(b));
 }

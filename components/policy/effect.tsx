@@ -1,44 +1,75 @@
 import { decibansToNats, probabilityOf } from "@/lib/decibans";
+import { costMinimalProbability, costsOf } from "@/lib/policy/costs";
 import { type Projection, project } from "@/lib/policy/projection";
 import type { PolicyTerms, ScoreHistogram } from "@/lib/policy/schema";
+import { countText } from "../ui/count";
 import { percentOf, signedDecibans } from "../ui/probability";
 import { RowTh, Table, Td, Th } from "../ui/table";
+import { type Currency, minorToText } from "./term-values";
 
-export type Lines = Pick<PolicyTerms, "reviewThreshold" | "holdThreshold">;
+type EffectProps = {
+  recent: ScoreHistogram;
+  currency: Currency;
+  now: PolicyTerms;
+  proposed: PolicyTerms;
+  before: string;
+  /** Tells this table from others of its kind on the screen: "proposal 2". */
+  of: string;
+};
 
-type EffectProps = { recent: ScoreHistogram; now: Lines; proposed: Lines; before: string };
+/** Payments in major units for which it is said from when on stopping them pays. */
+const EXAMPLE_AMOUNTS = [100, 1000];
 
-/** What the lines would have made of the recent payments, in force beside proposed. */
-export function Effect({ recent, now, proposed, before }: EffectProps) {
+/** What the terms would have made of the recent payments, in force beside proposed. */
+export function Effect({ recent, currency, now, proposed, before, of }: EffectProps) {
   const old = project(now, recent);
   const fresh = project(proposed, recent);
   if (!old || !fresh) return <p className="text-soft">Too few recent payments to project the effect from.</p>;
   return (
-    <Table
-      caption={`Projected on the ${recent.count} payments of the last 14 days, by their scores at arrival`}
-    >
-      <thead>
-        <tr>
-          <Th>Projected effect</Th>
-          <Th numeric>{before}</Th>
-          <Th numeric>Proposed</Th>
-        </tr>
-      </thead>
-      <tbody>
-        <EffectRow name="Cases a day" old={perDay(old.alertsPerDay)} fresh={perDay(fresh.alertsPerDay)} />
-        <EffectRow
-          name="of them held or refused"
-          old={perDay(old.holdsPerDay)}
-          fresh={perDay(fresh.holdsPerDay)}
-        />
-        <EffectRow
-          name="Review line"
-          old={line(old, "reviewDecibans")}
-          fresh={line(fresh, "reviewDecibans")}
-        />
-        <EffectRow name="Hold line" old={line(old, "holdDecibans")} fresh={line(fresh, "holdDecibans")} />
-      </tbody>
-    </Table>
+    <div>
+      <Table caption={`Projected effect, ${of}`} captionHidden>
+        <thead>
+          <tr>
+            <Th>Projected effect</Th>
+            <Th numeric>{before}</Th>
+            <Th numeric>Proposed</Th>
+          </tr>
+        </thead>
+        <tbody>
+          <EffectRow name="Cases a day" old={perDay(old.alertsPerDay)} fresh={perDay(fresh.alertsPerDay)} />
+          <EffectRow
+            name="above the hold line"
+            old={perDay(old.holdsPerDay)}
+            fresh={perDay(fresh.holdsPerDay)}
+          />
+          <EffectRow
+            name="Review line, decibans"
+            old={line(old, "reviewDecibans")}
+            fresh={line(fresh, "reviewDecibans")}
+          />
+          <EffectRow
+            name="Hold line, decibans"
+            old={line(old, "holdDecibans")}
+            fresh={line(fresh, "holdDecibans")}
+          />
+          {EXAMPLE_AMOUNTS.map((amount) => {
+            const minor = amount * 10 ** currency.minorDigits;
+            return (
+              <EffectRow
+                key={amount}
+                name={`Stopping ${minorToText(minor, currency.minorDigits)} ${currency.code} pays from`}
+                old={paysFrom(now, minor)}
+                fresh={paysFrom(proposed, minor)}
+              />
+            );
+          })}
+        </tbody>
+      </Table>
+      <p className="mt-2 text-small text-soft">
+        Projected on the {countText(recent.count)} payments of the last 14 days, by their scores at arrival.
+        Stopping pays where a legitimate payment stopped costs less than the fraud it prevents.
+      </p>
+    </div>
   );
 }
 
@@ -56,10 +87,16 @@ function EffectRow({ name, old, fresh }: { name: string; old: string; fresh: str
   );
 }
 
-export const perDay = (cases: number): string => (cases < 10 ? cases.toFixed(1) : String(Math.round(cases)));
+export const perDay = (cases: number): string =>
+  cases < 10 ? cases.toFixed(1) : countText(Math.round(cases));
 
 export const probabilityWords = (decibans: number): string =>
   `${percentOf(probabilityOf(decibansToNats(decibans)))} %`;
 
 const line = (projection: Projection, key: "reviewDecibans" | "holdDecibans") =>
-  `${signedDecibans(projection[key])} decibans, ${probabilityWords(projection[key])}`;
+  `${signedDecibans(projection[key])} (${probabilityWords(projection[key])})`;
+
+function paysFrom(terms: PolicyTerms, amountMinor: number): string {
+  const probability = costMinimalProbability(costsOf(terms, amountMinor));
+  return probability === null ? "–" : `${percentOf(probability)} %`;
+}

@@ -85,6 +85,7 @@ function Changes({ record, base, view }: ChangesProps) {
         changes={changes}
         currency={view.baseCurrency}
         before={`Version ${base.version}`}
+        of={record.version === null ? `proposal of ${record.proposedAt}` : `version ${record.version}`}
         after={record.version === null ? "Proposed" : `Version ${record.version}`}
       />
     </details>

@@ -1,5 +1,6 @@
 import { project } from "@/lib/policy/projection";
 import type { PolicyView } from "@/lib/policy/schema";
+import { countText } from "../ui/count";
 import { Figure, FigureRow } from "../ui/figure";
 import { signedDecibans } from "../ui/probability";
 import { Time } from "../ui/time";
@@ -14,8 +15,8 @@ export function PolicyFigures({ view }: { view: PolicyView }) {
   return (
     <FigureRow>
       <Figure
-        label="In force"
-        value={`Version ${inForce.version}`}
+        label="Version in force"
+        value={inForce.version}
         note={
           inForce.effectiveAt && (
             <>
@@ -45,7 +46,7 @@ export function PolicyFigures({ view }: { view: PolicyView }) {
         value={projection ? perDay(projection.alertsPerDay) : "–"}
         note={projection ? `of them ${perDay(projection.holdsPerDay)} above the hold line` : tooFew}
       />
-      <Figure label="Capacity" value={terms.dailyCapacity} unit="a day" />
+      <Figure label="Capacity" value={countText(terms.dailyCapacity)} unit="a day" />
     </FigureRow>
   );
 }

@@ -81,10 +81,11 @@ export function PolicyScreen({ view, personId, mayPropose, mayApprove }: PolicyS
           </EmptyState>
         ) : (
           <div className="flex flex-col gap-4">
-            {pending.map((proposal) => (
+            {pending.map((proposal, index) => (
               <WaitingProposal
                 key={proposal.policyId}
                 proposal={proposal}
+                place={index + 1}
                 newestVersion={newestVersion}
                 base={newest.terms}
                 recent={recent}

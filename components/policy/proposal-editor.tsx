@@ -70,7 +70,7 @@ export function ProposalEditor({ view, base, start, onLines, onDone, onCancel }:
           <fieldset key={group.title} className="border-t border-rule pt-4">
             <legend className="float-left w-full font-strong">{group.title}</legend>
             <p className="clear-both mb-3 text-small text-soft">{group.lead}</p>
-            <div className="grid items-start gap-x-8 gap-y-4 sm:grid-cols-2 lg:grid-cols-3">
+            <div className="grid items-end gap-x-8 gap-y-4 sm:grid-cols-2 lg:grid-cols-3">
               {group.terms
                 .filter((term) => isUsed(term, draft))
                 .map((term) => (
@@ -98,8 +98,16 @@ export function ProposalEditor({ view, base, start, onLines, onDone, onCancel }:
                 currency={currency}
                 before={`Version ${newestVersion}`}
                 after="Proposed"
+                of="your proposal"
               />
-              <Effect recent={view.recent} now={base} proposed={terms} before={`Version ${newestVersion}`} />
+              <Effect
+                recent={view.recent}
+                currency={currency}
+                now={base}
+                proposed={terms}
+                before={`Version ${newestVersion}`}
+                of="your proposal"
+              />
             </div>
           )}
           <Field

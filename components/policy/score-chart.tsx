@@ -10,6 +10,7 @@ type ScoreChartProps = { recent: ScoreHistogram; lines: readonly ChartLine[] };
 /** Height of a line's name above the bars. */
 const LINE_NAME_REM = 1.2;
 const TICKS = [-30, -20, -10, 0, 10, 20, 30];
+const tickText = (tick: number) => (tick > 0 ? `+${tick}` : `${tick}`.replace("-", "−"));
 
 /** How the recent scores lie along the axis of evidence, and where the lines cut them. */
 export function ScoreChart({ recent, lines }: ScoreChartProps) {
@@ -49,7 +50,7 @@ export function ScoreChart({ recent, lines }: ScoreChartProps) {
             className="figures absolute top-1 -translate-x-1/2 first:translate-x-0 last:-translate-x-full"
             style={{ left: `${axisPlace(tick) * 100}%` }}
           >
-            {signedDecibans(tick)}
+            {tickText(tick)}
           </span>
         ))}
       </div>

@@ -14,6 +14,8 @@ import type { Currency } from "./term-values";
 
 type WaitingProposalProps = {
   proposal: PolicyRecord;
+  /** Its place among those that wait, from 1. */
+  place: number;
   /** The newest version and its terms, which the proposal would replace. */
   newestVersion: number;
   base: PolicyTerms;
@@ -28,7 +30,7 @@ type Asking = "approve" | "decline" | "withdraw" | null;
 
 /** A proposal with its reason, its differences and its effect, before those who may settle it. */
 export function WaitingProposal(props: WaitingProposalProps) {
-  const { proposal, newestVersion, base, recent, currency, personId, mayApprove, onDone } = props;
+  const { proposal, place, newestVersion, base, recent, currency, personId, mayApprove, onDone } = props;
   const [asking, setAsking] = useState<Asking>(null);
   const isOwn = proposal.proposedBy?.id === personId;
   const isStale = proposal.basedOnVersion !== newestVersion;
@@ -57,8 +59,16 @@ export function WaitingProposal(props: WaitingProposalProps) {
           currency={currency}
           before={`Version ${newestVersion}`}
           after="Proposed"
+          of={`proposal ${place}`}
         />
-        <Effect recent={recent} now={base} proposed={terms} before={`Version ${newestVersion}`} />
+        <Effect
+          recent={recent}
+          currency={currency}
+          now={base}
+          proposed={terms}
+          before={`Version ${newestVersion}`}
+          of={`proposal ${place}`}
+        />
       </div>
       <div className="flex flex-wrap items-center gap-2">
         {mayApprove && !isOwn && !isStale && (

@@ -7,7 +7,6 @@ import { newId } from "../new-id";
 import { appendTrail } from "../trail/append";
 import { writeOnce } from "../write-once";
 import { termChanges } from "./changes";
-import { termsFaults } from "./consistency";
 import { newestApproved } from "./read";
 import { policyRecordOrThrow } from "./records";
 import type { PolicyRecord, ProposeInput } from "./schema";
@@ -15,9 +14,6 @@ import type { PolicyRecord, ProposeInput } from "./schema";
 /** Puts new terms, or those of an earlier version again, before a second person. Nothing changes until then. */
 export async function proposePolicy(ctx: Context, input: ProposeInput): Promise<PolicyRecord> {
   const person = demandPerson(ctx, "policy.propose");
-  const faults = termsFaults(input.terms);
-  if (faults.length > 0)
-    throw invalid(faults.map(({ path, message }) => ({ path: `terms.${path}`, message })));
   return writeOnce(ctx, async (tx) => {
     const base = await newestApproved(tx);
     if (base.version !== input.basedOnVersion)

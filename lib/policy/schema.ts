@@ -1,6 +1,7 @@
 import { z } from "zod";
 import { CHANNELS } from "../transactions/codes";
 import { AT_EXPIRY, ON_HOLD, ORDERS, POLICY_STATES } from "./codes";
+import { termsFaults } from "./consistency";
 
 const Probability = z.number().min(0).max(1);
 /** Neither 0 nor 1: a line lies somewhere on the axis of evidence. */
@@ -69,8 +70,15 @@ const Id = z.uuid();
 const Instant = z.iso.datetime();
 const PersonRef = z.strictObject({ id: Id, name: z.string() });
 
+/** Terms whose fields also go together; each fault is named by the field to change. */
+const ConsistentTerms = PolicyTerms.superRefine((terms, context) => {
+  for (const { path, message } of termsFaults(terms)) {
+    context.addIssue({ code: "custom", path: path.split("."), message });
+  }
+});
+
 export const ProposeInput = z.strictObject({
-  terms: PolicyTerms,
+  terms: ConsistentTerms,
   reason: z.string().trim().min(1, "needs a reason").max(2000),
   /** The newest approved version, whose terms the proposer had before them. */
   basedOnVersion: z.int().min(1),

@@ -1,8 +1,9 @@
 import { expect, test } from "vitest";
+import { fieldErrors } from "@/lib/field-errors";
 import { termChanges } from "@/lib/policy/changes";
 import { termsFaults } from "@/lib/policy/consistency";
 import { DEFAULT_TERMS } from "@/lib/policy/default-terms";
-import type { PolicyTerms } from "@/lib/policy/schema";
+import { type PolicyTerms, ProposeInput } from "@/lib/policy/schema";
 
 const paths = (changed: Partial<PolicyTerms>) =>
   termsFaults({ ...DEFAULT_TERMS, ...changed }).map(({ path }) => path);
@@ -83,4 +84,21 @@ test("differences are named by path, also where a threshold changes its kind", (
     { path: "reviewThreshold.probability", from: null, to: 0.2 },
   ]);
   expect(termChanges(after, after)).toEqual([]);
+});
+
+test("a proposal is told everything that is wrong with it at once, field by field", () => {
+  const terms = { ...DEFAULT_TERMS, falsePositiveCostMinor: 0, holdThreshold: 0.005 };
+  const parsed = ProposeInput.safeParse({ terms, reason: "  ", basedOnVersion: 1 });
+  expect(parsed.success ? [] : fieldErrors(parsed.error)).toEqual([
+    { path: "terms.baseRate", message: expect.stringContaining("hold threshold") },
+    { path: "terms.falsePositiveCostMinor", message: expect.stringContaining("above 0") },
+    { path: "reason", message: "needs a reason" },
+  ]);
+  const strange = { ...DEFAULT_TERMS, dailyCapacity: 1.5, colour: "red", order: "by taste" };
+  const refused = ProposeInput.safeParse({ terms: strange, reason: "Why not", basedOnVersion: 1 });
+  expect((refused.success ? [] : fieldErrors(refused.error)).map(({ path }) => path).sort()).toEqual([
+    "terms.colour",
+    "terms.dailyCapacity",
+    "terms.order",
+  ]);
 });
