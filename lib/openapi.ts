@@ -1,7 +1,7 @@
 import { STATUS_CODES } from "node:http";
 import { z } from "zod";
 import packageJson from "../package.json";
-import { CAPABILITIES } from "./auth/access";
+import { CAPABILITIES, scopesFor } from "./auth/access";
 import { type Endpoint, type EndpointTable, pathParameters } from "./endpoint";
 
 type JsonSchema = Record<string, unknown>;
@@ -139,10 +139,9 @@ function success({ output, status, also = [], produces }: Endpoint): JsonSchema 
 /** Either way in, where both are open; the list beside a key is the scope that it needs. */
 function security({ may }: Endpoint): JsonSchema[] {
   if (may === "anyone") return [];
-  const grant: { roles: readonly string[]; scope?: string } = CAPABILITIES[may];
   return [
-    ...(grant.roles.length > 0 ? [{ session: [] }] : []),
-    ...(grant.scope ? [{ key: [grant.scope] }] : []),
+    ...(CAPABILITIES[may].roles.length > 0 ? [{ session: [] }] : []),
+    ...scopesFor(may).map((scope) => ({ key: [scope] })),
   ];
 }
 

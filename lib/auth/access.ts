@@ -1,16 +1,26 @@
 import type { Role, Scope } from "./codes";
 
-type Grant = { roles: readonly Role[]; scope?: Scope };
+type Grant = {
+  roles: readonly Role[];
+  /** Lets a machine's key in. */
+  scope?: Scope;
+  /** Scopes that include it, because their own acts begin with it. */
+  also?: readonly Scope[];
+};
 
 const everyone: readonly Role[] = ["reviewer", "supervisor", "risk_manager", "auditor", "administrator"];
 
 /**
  * The one matrix of who may do what. Endpoints and pages name a capability; nothing else grants.
- * `scope` lets a machine's key in; scopes that act for a person carry that person's roles as well.
+ * Scopes that act for a person carry that person's roles as well.
  */
 export const CAPABILITIES = {
   "account.own": { roles: everyone },
-  "cases.read": { roles: ["reviewer", "supervisor", "risk_manager", "auditor"], scope: "cases:read" },
+  "cases.read": {
+    roles: ["reviewer", "supervisor", "risk_manager", "auditor"],
+    scope: "cases:read",
+    also: ["cases:decide"],
+  },
   "desk.work": { roles: ["reviewer", "supervisor"], scope: "cases:decide" },
   "case.correct": { roles: ["supervisor"], scope: "cases:decide" },
   "case.assign": { roles: ["supervisor"], scope: "cases:decide" },
@@ -47,12 +57,15 @@ export function rolesMay(roles: readonly Role[], capability: Capability): boolea
   return roles.some((role) => grantOf(capability).roles.includes(role));
 }
 
-export function scopesMay(scopes: readonly Scope[], capability: Capability): boolean {
-  const { scope } = grantOf(capability);
-  return scope !== undefined && scopes.includes(scope);
+/** Scopes of a key that let it in. */
+export function scopesFor(capability: Capability): readonly Scope[] {
+  const { scope, also = [] } = grantOf(capability);
+  return scope ? [scope, ...also] : also;
 }
 
-export function isPersonal(capability: Capability): boolean {
-  const { scope } = grantOf(capability);
-  return scope !== undefined && PERSONAL_SCOPES.includes(scope);
+/** A personal scope lends the key the rights of the person it acts for and no more; `roles` are theirs. */
+export function keyMay(scopes: readonly Scope[], roles: readonly Role[], capability: Capability): boolean {
+  return scopesFor(capability).some(
+    (scope) => scopes.includes(scope) && (!PERSONAL_SCOPES.includes(scope) || rolesMay(roles, capability)),
+  );
 }

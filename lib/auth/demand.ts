@@ -1,16 +1,13 @@
 import "server-only";
 import type { Actor, Context, PersonActor } from "../context";
 import { forbidden } from "../errors";
-import { type Capability, isPersonal, rolesMay, scopesMay } from "./access";
+import { type Capability, keyMay, rolesMay } from "./access";
 
 export function mayDo(actor: Actor, capability: Capability): boolean {
   if (actor.kind === "system") return true;
   if (actor.kind === "anonymous") return false;
-  if (actor.kind === "key") return scopesMay(actor.scopes, capability);
-  if (!actor.key) return rolesMay(actor.roles, capability);
-  if (!scopesMay(actor.key.scopes, capability)) return false;
-  // A personal scope lends the key the person's rights and no more.
-  return !isPersonal(capability) || rolesMay(actor.roles, capability);
+  if (actor.kind === "key") return keyMay(actor.scopes, [], capability);
+  return actor.key ? keyMay(actor.key.scopes, actor.roles, capability) : rolesMay(actor.roles, capability);
 }
 
 /** @throws KnownError forbidden */
