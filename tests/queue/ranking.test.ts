@@ -3,6 +3,7 @@ import { beforeAll, describe, expect, test } from "vitest";
 import { createDatabase, type Database } from "@/db/client";
 import { vectorToBytes } from "@/db/columns";
 import { cases } from "@/db/schema/cases";
+import { policies } from "@/db/schema/policies";
 import { scorers } from "@/db/schema/scorers";
 import { scores } from "@/db/schema/transactions";
 import { casesChanged } from "@/lib/cases/notify";
@@ -16,6 +17,7 @@ import { decideCase } from "@/lib/decisions/decide";
 import type { DecideView } from "@/lib/decisions/schema";
 import { undoDecision } from "@/lib/decisions/undo";
 import { readScorerInUse } from "@/lib/learning/held-scorer";
+import { DEFAULT_TERMS } from "@/lib/policy/default-terms";
 import { createScorer } from "@/lib/scorer";
 import { testWorld, type WaitingCase, type World } from "../support/world";
 
@@ -28,6 +30,9 @@ let seed = 1;
 
 beforeAll(async () => {
   world = await testWorld();
+  // A line that need not be worked out from the scores again and again.
+  const terms = { ...DEFAULT_TERMS, reviewThreshold: { kind: "fixed" as const, probability: 0.1 } };
+  await world.db.update(policies).set({ terms }).where(eq(policies.version, 1));
   reviewer = await world.person("reviewer");
   supervisor = await world.person("supervisor");
   other = createDatabase(world.url, 4);
@@ -152,6 +157,31 @@ describe("the ranking in memory", { timeout: 240_000 }, () => {
     await converged(rankingOf(other.db));
     await rankingOf(other.db).catchUp([], true);
     expectSameRanking(await read(rankingOf(other.db)), wanted);
+  });
+
+  test("is whole to its readers while it is computed anew", async () => {
+    const made = await waitingCases(1_500);
+    const behind = new RankingModel(other.db);
+    const before = await read(behind);
+    for (const { caseId } of made.slice(0, 3)) await decide(caseId, 1);
+    await undoDecision(ctx(reviewer), { id: made[2]?.caseId as string });
+    let running = true;
+    const caughtUp = behind.catchUp([], true).finally(() => {
+      running = false;
+    });
+    let reads = 0;
+    while (running) {
+      const list = await read(behind);
+      const logits = list.map(({ logit }) => logit);
+      expect(logits).toEqual(logits.toSorted((a, b) => b - a));
+      expect([before.length, before.length - 2]).toContain(list.length);
+      expect(list.every(({ caseId }) => caseId.length === 36)).toBe(true);
+      reads += 1;
+      await new Promise((resolve) => setImmediate(resolve));
+    }
+    await caughtUp;
+    expect(reads).toBeGreaterThan(1);
+    expectSameRanking(await read(behind), await scoredAfresh());
   });
 
   test("is loaded as it stands by a server that starts late", async () => {

@@ -3,13 +3,11 @@ import type { Database } from "@/db/client";
 import { bytesToVector } from "@/db/columns";
 import { type HeldScorer, readScorerInUse } from "../../learning/held-scorer";
 import { log } from "../../log";
-import { type PolicyInForce, policyInForce } from "../../policy/read";
-import type { Thresholds } from "../../policy/rules";
-import { thresholdsInForce } from "../../policy/thresholds";
 import type { Label, Step } from "../../scorer";
 import { advance, recompute } from "./advance";
 import { type CaseDelta, readDelta } from "./delta";
-import type { Movement } from "./movement";
+import { KeptMovements, type Movement } from "./movement";
+import { PolicyWatch } from "./policy-watch";
 import { type LoggedLabel, readLabels, readPlaced, readScorerHead, readWaitingIds } from "./read-waiting";
 import { Breath, Turns } from "./turns";
 import { RankingView } from "./view";
@@ -17,11 +15,9 @@ import { type CaseFacts, WaitingCases } from "./waiting-cases";
 
 /** Clocks of servers differ, and a transaction commits later than the time it writes. */
 const OVERLAP_MS = 15_000;
-const POLICY_AGE_MS = 1_000;
 const PAGE = 500;
 /** From about as many labels as a vector has coordinates on, computing anew is cheaper than moving label by label. */
 const MOST_STEPS = 64;
-const MOVEMENTS_KEPT = 500;
 
 export type RankingEvent = { version: number; logSeq: number; changes: readonly CaseDelta[] };
 
@@ -35,12 +31,12 @@ export class RankingModel {
   private readonly state = new Turns();
   private readonly listeners = new Set<(event: RankingEvent) => void>();
   private readonly hinted = new Set<string>();
-  private readonly movements = new Map<number, Movement>();
+  private readonly movements = new KeptMovements();
   private pending: Promise<void> | null = null;
   private owed: Promise<void> | null = null;
   private pollWanted = false;
   private loaded: { cases: WaitingCases; held: HeldScorer } | null = null;
-  private policy: { inForce: PolicyInForce; thresholds: Thresholds; readMs: number } | null = null;
+  private readonly policy = new PolicyWatch();
   private view: RankingView | null = null;
   private isFrozen = false;
   private pollFrom = new Date(0);
@@ -90,7 +86,7 @@ export class RankingModel {
 
   /** What moved when the scorer came to this version; null when nobody counted it here. */
   movementOf(version: number): Movement | null {
-    return this.movements.get(version) ?? null;
+    return this.movements.of(version);
   }
 
   private async viewAt(now: Date): Promise<RankingView> {
@@ -178,6 +174,7 @@ export class RankingModel {
     const { cases, held } = this.present();
     try {
       for (const { caseId, after } of delta) if (!after) cases.remove(caseId);
+      this.view = null;
       if (fresh) await this.startAfresh(fresh);
       else for (const act of actsOf(labels)) await this.learn(act, held);
       const { scorer } = this.present().held;
@@ -208,13 +205,13 @@ export class RankingModel {
     const movement = steps.every((step) => step.exact)
       ? await advance(cases, steps, policy.thresholds.holdLogit)
       : await this.computeAnew(held);
-    this.remember(held.version - act.length + 1, held.version, movement);
+    this.movements.keep(held.version - act.length + 1, held.version, movement);
   }
 
   /** After an undo, a correction or other options the scorer's state comes from the database. */
   private async startAfresh(fresh: HeldScorer): Promise<void> {
     const { cases, held } = this.present();
-    this.remember(held.version + 1, fresh.version, await this.computeAnew(fresh));
+    this.movements.keep(held.version + 1, fresh.version, await this.computeAnew(fresh));
     this.loaded = { cases, held: fresh };
   }
 
@@ -230,32 +227,16 @@ export class RankingModel {
   }
 
   private present() {
-    if (!this.loaded || !this.policy) throw new Error("The ranking is not loaded");
-    return { ...this.loaded, policy: this.policy };
-  }
-
-  private remember(fromVersion: number, toVersion: number, movement: Movement): void {
-    for (let version = Math.max(fromVersion, toVersion - MOVEMENTS_KEPT); version <= toVersion; version++) {
-      this.movements.set(version, movement);
-    }
-    for (const version of this.movements.keys()) {
-      if (this.movements.size <= MOVEMENTS_KEPT) break;
-      this.movements.delete(version);
-    }
+    if (!this.loaded) throw new Error("The ranking is not loaded");
+    return { ...this.loaded, policy: this.policy.present() };
   }
 
   private async refreshPolicy(now: Date): Promise<void> {
-    if (this.policy && now.getTime() - this.policy.readMs < POLICY_AGE_MS) return;
-    const inForce = await policyInForce(this.db, now);
-    const thresholds = await thresholdsInForce(this.db, inForce, now);
-    const changed = this.policy?.inForce.version !== inForce.version;
-    this.policy = { inForce, thresholds, readMs: now.getTime() };
-    if (changed && this.loaded) {
-      await this.state.take(() => {
-        this.view = null;
-      });
-      this.tell([]);
-    }
+    if (!(await this.policy.refresh(this.db, now)) || !this.loaded) return;
+    await this.state.take(() => {
+      this.view = null;
+    });
+    this.tell([]);
   }
 
   private tell(changes: readonly CaseDelta[]): void {

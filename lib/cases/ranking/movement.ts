@@ -15,3 +15,25 @@ export function countMove(movement: Movement, before: number, after: number, hol
   if (before < holdLogit && after >= holdLogit) movement.aboveHoldLine += 1;
   else if (before >= holdLogit && after < holdLogit) movement.belowHoldLine += 1;
 }
+
+const MOST_KEPT = 500;
+
+/** What the last labels moved, by the scorer's version, for those who ask a moment later. */
+export class KeptMovements {
+  private readonly byVersion = new Map<number, Movement>();
+
+  /** One act, or one fresh computation, may have led over several versions. */
+  keep(fromVersion: number, toVersion: number, movement: Movement): void {
+    for (let version = Math.max(fromVersion, toVersion - MOST_KEPT); version <= toVersion; version++) {
+      this.byVersion.set(version, movement);
+    }
+    for (const version of this.byVersion.keys()) {
+      if (this.byVersion.size <= MOST_KEPT) break;
+      this.byVersion.delete(version);
+    }
+  }
+
+  of(version: number): Movement | null {
+    return this.byVersion.get(version) ?? null;
+  }
+}
