@@ -116,6 +116,17 @@ describe("signing in", () => {
     expect((await profile(jar)).status).toBe(401);
   });
 
+  test("leads on to no other site", async () => {
+    const { email } = await makePerson(db, ["reviewer"]);
+    const response = await sendSignIn(url, new CookieJar(), {
+      email,
+      password: TEST_PASSWORD,
+      callbackUrl: "https://evil.example/",
+    });
+    const answer = (await response.json()) as { url: string };
+    expect([response.status, new URL(answer.url).origin]).toEqual([200, new URL(url).origin]);
+  });
+
   test("with a one-time password leads to no session before the person chose their own", async () => {
     const { email, personId } = await makePerson(db, ["reviewer"], { passwordIsOneTime: 1 });
     const jar = new CookieJar();

@@ -48,7 +48,7 @@ export async function sendSignIn(
   const { csrfToken } = (await csrf.json()) as { csrfToken: string };
   return visit(url, "/api/auth/callback/credentials", jar, {
     method: "POST",
-    body: new URLSearchParams({ ...credentials, csrfToken, json: "true", callbackUrl: url }),
+    body: new URLSearchParams({ callbackUrl: url, ...credentials, csrfToken, json: "true" }),
   });
 }
 
