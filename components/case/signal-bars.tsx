@@ -72,7 +72,7 @@ function Bar({ row, onOpen }: { row: BarRow; onOpen?: () => void }) {
       title={[row.reading, row.explanation].filter(Boolean).join(". ")}
     >
       <span
-        className={`block truncate pr-14 sm:absolute sm:max-w-[calc(50%-0.75rem)] sm:pr-0 ${right ? "sm:right-[calc(50%+0.5rem)]" : "sm:left-[calc(50%+0.5rem)]"}`}
+        className={`relative block truncate pr-14 sm:absolute sm:max-w-[calc(50%-0.75rem)] sm:pr-0 ${right ? "sm:right-[calc(50%+0.5rem)]" : "sm:left-[calc(50%+0.5rem)]"}`}
       >
         {onOpen ? (
           <button type="button" onClick={onOpen} className="underline decoration-edge underline-offset-2">
