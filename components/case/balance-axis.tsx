@@ -73,11 +73,11 @@ function Pointer({ decibans }: { decibans: number }) {
   return (
     <svg
       aria-hidden="true"
-      viewBox="0 0 14 44"
-      className="absolute -bottom-px h-11 w-3.5 -translate-x-1/2"
+      viewBox="0 0 14 35"
+      className="absolute -bottom-px h-8.75 w-3.5 -translate-x-1/2"
       style={leftAt(decibans)}
     >
-      <path d="M7 44V8" strokeWidth="2" className="stroke-accent" />
+      <path d="M7 35V8" strokeWidth="2" className="stroke-accent" />
       <path d="M7 12L1 1H13Z" className="fill-accent" />
     </svg>
   );

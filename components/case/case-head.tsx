@@ -29,7 +29,7 @@ export function CaseHead({ view, headingRef, level = 2 }: CaseHeadProps) {
   const { transaction } = view;
   const Heading = level === 1 ? "h1" : "h2";
   return (
-    <div className="border-l-3 border-transparent pl-3 has-focus-visible:border-accent">
+    <div className="-ml-[0.9375rem] border-l-3 border-transparent pl-3 has-focus-visible:border-accent">
       <Heading
         ref={headingRef}
         tabIndex={-1}

@@ -13,7 +13,6 @@ import { Links } from "../case/links";
 import { Notes } from "../case/notes";
 import { SignalBars } from "../case/signal-bars";
 import { Timeline } from "../case/timeline";
-import { Notice } from "../ui/notice";
 import { Section } from "../ui/section";
 import { CaseActions } from "./case-actions";
 import { CaseStanding } from "./case-standing";
@@ -45,7 +44,7 @@ export function CaseScreen({ initial, ...rights }: CaseRights & { initial: CaseV
       </div>
       <CaseStanding view={view} />
       <div role="status" className="empty:hidden">
-        {done && <Notice className="mb-4">{done}</Notice>}
+        {done && <p className="mb-4 border-l-4 border-l-accent bg-raised px-3 py-2">{done}</p>}
       </div>
       <Section
         title="Balance of evidence"

@@ -86,7 +86,7 @@ export function deskReducer(state: DeskState, event: DeskEvent): DeskState {
       // Only what was put back is left, if anything: it may come again.
       return { ...state, dry: true, putBack: [] };
     case "may_have_more":
-      return { ...state, dry: false };
+      return state.dry ? { ...state, dry: false } : state;
     case "taken_in_hand":
       return inFront(state, event.case);
     case "put_back": {
@@ -177,6 +177,7 @@ function committed(state: DeskState, sentId: string, act: Act): DeskState {
     ...leaving(state, hand.caseId),
     ready: rest.filter((one) => !along.has(one.caseId)),
     sent: [sent, ...state.sent].slice(0, MOST_SENT),
+    dry: false,
   };
 }
 

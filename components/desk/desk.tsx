@@ -22,11 +22,11 @@ type DeskProps = {
 export function Desk({ personId, wantedCaseId }: DeskProps) {
   const [line, say] = useQuietLine();
   const list = useRankedList();
-  const rug = useRug(list);
   const desk = useDesk(personId, wantedCaseId, say, list.afterMove);
   const focus = useFocusWish();
   const [scoreHidden, setScoreHidden] = useScoreHidden();
   const [paused, setPaused] = useState(false);
+  const rug = useRug(list, paused);
   const { heardOf, askAgain } = desk;
   const { noteQueue, noteCase } = list;
   const live = useLiveQueue({

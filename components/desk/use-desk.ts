@@ -120,6 +120,9 @@ export function useDesk(personId: string, wantedCaseId: string | null, say: Say,
 
 type Dispatch = (event: DeskEvent) => void;
 
+/** With an empty Desk the server is asked again this often, also where no live news arrives. */
+const ASK_AGAIN_MS = 20_000;
+
 type SupplyFor = { personId: string; wantedCaseId: string | null };
 
 /** Keeps one case in hand and one claimed and loaded at the elbow, so that a key press need not wait for the server. */
@@ -151,6 +154,13 @@ function useSupply({ personId, wantedCaseId }: SupplyFor, state: DeskState, disp
       },
     );
   }, [personId, wantedCaseId, wanted, ready, sent, putBack, dispatch, say]);
+
+  const waiting = dry && ready.length === 0;
+  useEffect(() => {
+    if (!waiting) return;
+    const timer = setInterval(() => dispatch({ kind: "may_have_more" }), ASK_AGAIN_MS);
+    return () => clearInterval(timer);
+  }, [waiting, dispatch]);
 }
 
 /** What the Desk opens with: the case a link asked for, and those that this person holds already. */

@@ -16,8 +16,10 @@ export function useDrafts(state: DeskState, say: Say): KeepDraft {
   const latest = useRef(state);
   useEffect(() => {
     latest.current = state;
-    for (const { caseId, draft } of state.ready)
-      if (!kept.current.has(caseId)) kept.current.set(caseId, draft);
+    // What left the Desk may come back with another draft, or with none.
+    const here = new Map(state.ready.map(({ caseId, draft }) => [caseId, draft]));
+    for (const caseId of kept.current.keys()) if (!here.has(caseId)) kept.current.delete(caseId);
+    for (const [caseId, draft] of here) if (!kept.current.has(caseId)) kept.current.set(caseId, draft);
   }, [state]);
 
   const keep = useCallback<KeepDraft>(
@@ -29,27 +31,30 @@ export function useDrafts(state: DeskState, say: Say): KeepDraft {
         await api("PUT /api/cases/{id}/draft", { id: caseId, body: note }, { keepalive: leavingPage });
       } catch (error) {
         kept.current.delete(caseId);
-        say(`The note is not kept on the server yet: ${problemWords(error)}.`, true);
+        const here = latest.current.ready.some((one) => one.caseId === caseId);
+        if (here) say(`The note is not kept on the server yet: ${problemWords(error)}.`, true);
       }
     },
     [say],
   );
 
-  const hand = state.ready[0]?.caseId;
-  const note = hand === undefined ? undefined : state.notes[hand];
+  const { ready, notes } = state;
   useEffect(() => {
-    if (hand === undefined || note === undefined) return;
-    const timer = setTimeout(() => void keep(hand), REST_MS);
+    const timer = setTimeout(() => {
+      for (const { caseId } of ready) if (notes[caseId] !== undefined) void keep(caseId);
+    }, REST_MS);
     return () => clearTimeout(timer);
-  }, [hand, note, keep]);
+  }, [ready, notes, keep]);
 
   useEffect(() => {
     const leave = () => {
-      const inHand = latest.current.ready[0]?.caseId;
-      if (inHand !== undefined) void keep(inHand, true);
+      for (const { caseId } of latest.current.ready) void keep(caseId, true);
     };
     window.addEventListener("pagehide", leave);
-    return () => window.removeEventListener("pagehide", leave);
+    return () => {
+      window.removeEventListener("pagehide", leave);
+      leave();
+    };
   }, [keep]);
   return keep;
 }

@@ -1,6 +1,6 @@
 "use client";
 import { keepPreviousData, useInfiniteQuery, useQuery } from "@tanstack/react-query";
-import { useCallback, useMemo, useRef, useState } from "react";
+import { useCallback, useEffect, useMemo, useRef, useState } from "react";
 import type { CaseState } from "@/lib/cases/codes";
 import type { QueueItem, QueueView, RugView } from "@/lib/cases/schema";
 import { api } from "../api";
@@ -30,7 +30,7 @@ export type RankedList = {
 /** The ranked list as this person sees it: a still picture of the server's order, renewed only when they move. */
 export function useRankedList(): RankedList {
   const [picture, setPicture] = useState(0);
-  const [heard, setHeard] = useState<{ version: number; total: number } | null>(null);
+  const [heard, setHeard] = useState<{ version: number; total: number; atMs: number } | null>(null);
   const [states, setStates] = useState<Readonly<Record<string, CaseState>>>({});
   const busy = useRef(false);
   const query = useInfiniteQuery({
@@ -47,6 +47,8 @@ export function useRankedList(): RankedList {
   const { data, hasNextPage, isFetching, fetchNextPage } = query;
   const items = useMemo(() => withStates(data?.pages ?? [], states), [data, states]);
   const shown = data?.pages[0];
+  // What was heard before the picture was taken is in the picture.
+  const news = shown && heard && heard.atMs > query.dataUpdatedAt ? heard : null;
   const showNewOrder = useCallback(() => {
     setStates({});
     setPicture((number) => number + 1);
@@ -54,10 +56,10 @@ export function useRankedList(): RankedList {
   return {
     items,
     picture,
-    total: (heard && heard.version >= (shown?.version ?? 0) ? heard.total : shown?.total) ?? 0,
+    total: news?.total ?? shown?.total ?? 0,
     loading: query.isPending,
     failed: query.error,
-    orderChanged: shown !== undefined && heard !== null && heard.version > shown.version,
+    orderChanged: news !== null && (news.version !== shown?.version || news.total !== shown.total),
     showNewOrder,
     afterMove: useCallback(() => {
       if (!busy.current) showNewOrder();
@@ -68,7 +70,7 @@ export function useRankedList(): RankedList {
     loadMore: useCallback(() => {
       if (hasNextPage && !isFetching) void fetchNextPage();
     }, [hasNextPage, isFetching, fetchNextPage]),
-    noteQueue: setHeard,
+    noteQueue: useCallback((queue) => setHeard({ ...queue, atMs: Date.now() }), []),
     noteCase: useCallback(({ caseId, state }) => setStates((all) => ({ ...all, [caseId]: state })), []),
   };
 }
@@ -89,15 +91,21 @@ function withStates(pages: readonly QueueView[], states: Readonly<Record<string,
 
 const RUG_EVERY_MS = 15_000;
 
-/** Evidence of every waiting case for the axis: anew with each picture, and now and then while the order changes. */
-export function useRug({ picture, orderChanged }: RankedList): RugView | null {
-  const { data } = useQuery({
-    queryKey: ["queue", "rug", picture],
+/** Evidence of every waiting case for the axis: now and then, and while paused at the person's own moves only. */
+export function useRug({ picture }: RankedList, paused: boolean): RugView | null {
+  const { data, dataUpdatedAt, refetch } = useQuery({
+    queryKey: ["queue", "rug"],
     queryFn: ({ signal }) => api("GET /api/queue/rug", {}, { signal }) as Promise<RugView>,
-    placeholderData: keepPreviousData,
-    refetchInterval: orderChanged ? RUG_EVERY_MS : false,
+    refetchInterval: paused ? false : RUG_EVERY_MS,
     refetchOnWindowFocus: false,
-    gcTime: 0,
   });
+  const takenAt = useRef(0);
+  useEffect(() => {
+    takenAt.current = dataUpdatedAt;
+  }, [dataUpdatedAt]);
+  useEffect(() => {
+    // The first picture comes with the first rug.
+    if (picture > 0 && Date.now() - takenAt.current > RUG_EVERY_MS) void refetch();
+  }, [picture, refetch]);
   return data ?? null;
 }
