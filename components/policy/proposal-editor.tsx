@@ -1,6 +1,6 @@
 "use client";
 import { useMutation } from "@tanstack/react-query";
-import { type FormEvent, useRef, useState } from "react";
+import { type FormEvent, useEffect, useRef, useState } from "react";
 import { termChanges } from "@/lib/policy/changes";
 import type { PolicyTerms, PolicyView } from "@/lib/policy/schema";
 import { type ApiProblem, api } from "../api";
@@ -42,9 +42,11 @@ export function ProposalEditor({ view, base, start, onLines, onDone, onCancel }:
     mutationFn: (proposed) =>
       api("POST /api/policy/proposals", { terms: proposed, reason, basedOnVersion: newestVersion }),
     onSuccess: onDone,
-    onError: () => focusFirstFault(form.current),
   });
   const problem = propose.error;
+  useEffect(() => {
+    if (problem) focusFirstFault(form.current);
+  }, [problem]);
   const errorAt = (path: string) =>
     asked && unreadable.includes(path) ? NO_NUMBER : problem?.errorAt(`terms.${path}`);
 
