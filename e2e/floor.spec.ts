@@ -1,6 +1,7 @@
 import { inArray } from "drizzle-orm";
 import { cases } from "@/db/schema/cases";
 import { press, tabTo } from "./pages/keyboard";
+import { alertOn } from "./pages/text";
 import { suspiciousPayments } from "./support/payments";
 import { expect, test } from "./support/test";
 
@@ -44,7 +45,8 @@ test("a supervisor chooses many cases by keyboard and assigns them in one act", 
   await expect(page.getByText("5 cases chosen")).toBeVisible();
   await tabTo(page.getByRole("button", { name: "Assign to nobody" }), "Shift+Tab");
   await press(page, "Enter");
-  await expect(page.getByText("5 cases assigned to nobody.")).toBeVisible();
+  // The other two were nobody's already.
+  await expect(page.getByText("3 cases assigned to nobody.")).toBeVisible();
   expect(await assigned()).toEqual([]);
 });
 
@@ -65,9 +67,7 @@ test("where one of the chosen cases cannot be assigned, none is, and the page sa
   await page.getByRole("combobox", { name: "Assign to" }).selectOption(reviewer.name);
   await office.decide(second, "legitimate");
   await page.getByRole("button", { name: "Assign", exact: true }).click();
-  await expect(page.getByRole("alert")).toContainText(
-    `Case ${second.number}: Somebody has decided this case already`,
-  );
+  await expect(alertOn(page)).toContainText(`Case ${second.number}: Somebody has decided this case already`);
   const ids = opened.map(({ caseId }) => caseId);
   const rows = await db.select().from(cases).where(inArray(cases.id, ids));
   expect(rows.map(({ assignedTo }) => assignedTo)).toEqual([null, null, null]);

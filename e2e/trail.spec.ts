@@ -1,4 +1,4 @@
-import { textOf } from "./pages/text";
+import { alertOn, textOf } from "./pages/text";
 import { suspiciousPayments } from "./support/payments";
 import { expect, test } from "./support/test";
 
@@ -56,7 +56,7 @@ test("an auditor searches the trail, opens one decision as it was, and verifies 
       .getByRole("textbox", { name: "Its hash" })
       .fill(hash.replace(/^./, (digit) => (digit === "0" ? "1" : "0")));
     await page.getByRole("button", { name: "Verify the chain" }).click();
-    await expect(page.getByRole("alert")).toContainText("the entry you noted is gone or not what it was");
+    await expect(alertOn(page)).toContainText("the entry you noted is gone or not what it was");
   });
 
   await test.step("what the auditor read is itself in the trail", async () => {

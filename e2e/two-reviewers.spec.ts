@@ -1,5 +1,6 @@
 import { DeskPage, type InHand } from "./pages/desk";
 import { press } from "./pages/keyboard";
+import { alertOn } from "./pages/text";
 import { suspiciousPayments } from "./support/payments";
 import { findDecision, readDraft } from "./support/records";
 import { expect, test } from "./support/test";
@@ -84,7 +85,7 @@ test.describe("when a case is taken away meanwhile", () => {
     await desk.settle();
     await press(page, "Enter");
 
-    const refusal = page.getByRole("alert").filter({ hasText: `Case ${opened.number} is not decided` });
+    const refusal = alertOn(page).filter({ hasText: `Case ${opened.number} is not decided` });
     await expect(refusal).toContainText("Somebody has decided this case already");
     await expect(refusal).toContainText(note);
     await desk.nextAfter(hand);
