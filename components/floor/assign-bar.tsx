@@ -38,7 +38,8 @@ export function AssignBar({ selected, items, people, onClear, onDone }: AssignBa
   const assign = (to: string | null, name: string) =>
     run({
       call: () => api("POST /api/floor/assign", { caseIds, personId: to }),
-      said: (count) => `${cases(count)} assigned to ${name}.`,
+      said: (count) =>
+        count === 0 ? `They were with ${name} already.` : `${cases(count)} assigned to ${name}.`,
     });
   const none = selected.length === 0;
   const person = people.find(({ id }) => id === personId);

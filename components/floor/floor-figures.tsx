@@ -36,7 +36,7 @@ export function FloorFigures({ view }: { view: FloorView }) {
       <Figure label="Overdue" value={to("?concern=overdue", view.overdue)} note="past their deadline" />
       <Figure label="In hand" value={to("?state=claimed", byState.claimed)} />
       <Figure label="Escalated" value={to("?state=escalated", byState.escalated)} />
-      <Figure label="Set aside" value={to("?state=waiting", byState.waiting)} />
+      <Figure label="Waiting" value={to("?state=waiting", byState.waiting)} note="set aside until a time" />
       <Figure
         label="Decided today"
         value={decidedToday}

@@ -87,7 +87,7 @@ export function PolicyScreen({ view, personId, mayPropose, mayApprove }: PolicyS
                 proposal={proposal}
                 place={index + 1}
                 newestVersion={newestVersion}
-                base={newest.terms}
+                base={baseOf(proposal, newest, history).terms}
                 recent={recent}
                 currency={baseCurrency}
                 personId={personId}
@@ -110,4 +110,13 @@ export function PolicyScreen({ view, personId, mayPropose, mayApprove }: PolicyS
 
 function startOf(from: string, newest: PolicyRecord, history: readonly PolicyRecord[]): PolicyTerms {
   return (history.find(({ policyId }) => policyId === from) ?? newest).terms;
+}
+
+/** What a proposal was made against; the newest version, unless another was approved since. */
+function baseOf(
+  { basedOnVersion }: PolicyRecord,
+  newest: PolicyRecord,
+  history: readonly PolicyRecord[],
+): PolicyRecord {
+  return history.find(({ version }) => version !== null && version === basedOnVersion) ?? newest;
 }

@@ -16,8 +16,8 @@ type WaitingProposalProps = {
   proposal: PolicyRecord;
   /** Its place among those that wait, from 1. */
   place: number;
-  /** The newest version and its terms, which the proposal would replace. */
   newestVersion: number;
+  /** Terms of the version it was made against. */
   base: PolicyTerms;
   recent: ScoreHistogram;
   currency: Currency;
@@ -57,7 +57,7 @@ export function WaitingProposal(props: WaitingProposalProps) {
         <ChangesTable
           changes={termChanges(base, terms)}
           currency={currency}
-          before={`Version ${newestVersion}`}
+          before={`Version ${proposal.basedOnVersion}`}
           after="Proposed"
           of={`proposal ${place}`}
         />
@@ -66,7 +66,7 @@ export function WaitingProposal(props: WaitingProposalProps) {
           currency={currency}
           now={base}
           proposed={terms}
-          before={`Version ${newestVersion}`}
+          before={`Version ${proposal.basedOnVersion}`}
           of={`proposal ${place}`}
         />
       </div>
