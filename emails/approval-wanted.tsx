@@ -1,6 +1,6 @@
 import { Body, Container, Head, Heading, Html, Link, Preview, Text } from "@react-email/components";
 import { render } from "@react-email/render";
-import { darkStyles, styles } from "./look";
+import { bothThemes, styles } from "./look";
 import type { RenderedMail } from "./weekly-summary";
 
 export type ApprovalWantedProps = {
@@ -38,22 +38,18 @@ function ApprovalWanted({ words }: { words: ReturnType<typeof wordsOf> }) {
         <meta name="color-scheme" content="light dark" />
         <meta name="supported-color-schemes" content="light dark" />
         <title>{words.title}</title>
-        <style>{darkStyles}</style>
+        <style>{bothThemes}</style>
       </Head>
       <Preview>{words.says}</Preview>
-      <Body className="ground" style={styles.body}>
+      <Body style={styles.body}>
         <Container style={styles.container}>
-          <Heading as="h1" className="ink" style={styles.title}>
+          <Heading as="h1" style={styles.title}>
             {words.title}
           </Heading>
-          <Text className="ink" style={styles.text}>
-            {words.says}
-          </Text>
-          <Text className="ink" style={styles.text}>
-            Reason: {words.reason}
-          </Text>
-          <Text className="ink" style={styles.text}>
-            <Link className="accent" style={styles.link} href={words.url}>
+          <Text style={styles.text}>{words.says}</Text>
+          <Text style={styles.text}>Reason: {words.reason}</Text>
+          <Text style={styles.text}>
+            <Link style={styles.link} href={words.url}>
               {words.link}
             </Link>
           </Text>

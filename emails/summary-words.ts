@@ -3,7 +3,7 @@ import type { WeekView } from "../lib/losses/schema";
 import { groupDigits } from "../lib/money";
 
 export type SummaryRow = { label: string; value: string; note?: string; path?: string };
-export type SummarySection = { heading: string; rows: SummaryRow[]; empty?: string };
+export type SummarySection = { heading: string; lead?: string; rows: SummaryRow[]; empty?: string };
 export type SummaryWords = {
   subject: string;
   title: string;
@@ -39,6 +39,7 @@ function lossRows(view: WeekView): SummarySection {
     totals.valueDetection === null ? NOT_DEFINED : `${percent(totals.valueDetection)} of the value attempted`;
   return {
     heading: "Losses",
+    lead: "Against the week before, as it was known at the same age.",
     rows: [
       row("Attempted fraud", "attempted"),
       row("Prevented (held or refused)", "prevented"),
@@ -148,7 +149,7 @@ export const money = (amount: string, view: { currency: string }): string =>
 function changeWords(change: string, view: WeekView): string {
   if (/^-?0(\.0+)?$/.test(change)) return "as in the week before";
   const size = money(change.replace(/^-/, ""), view);
-  return `${size} ${change.startsWith("-") ? "less" : "more"} than the week before at the same age`;
+  return `${size} ${change.startsWith("-") ? "less" : "more"} than the week before`;
 }
 
 const rate = (basisPoints: number | null): string =>

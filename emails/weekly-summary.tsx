@@ -14,7 +14,7 @@ import {
 } from "@react-email/components";
 import { render } from "@react-email/render";
 import type { WeekView } from "../lib/losses/schema";
-import { darkStyles, styles } from "./look";
+import { bothThemes, styles } from "./look";
 import { type SummaryRow, type SummarySection, type SummaryWords, summaryWords } from "./summary-words";
 
 export type WeeklySummaryProps = {
@@ -48,19 +48,17 @@ function WeeklySummary({
         <meta name="color-scheme" content="light dark" />
         <meta name="supported-color-schemes" content="light dark" />
         <title>{words.subject}</title>
-        <style>{darkStyles}</style>
+        <style>{bothThemes}</style>
       </Head>
       <Preview>{previewOf(words)}</Preview>
-      <Body className="ground" style={styles.body}>
+      <Body style={styles.body}>
         <Container style={styles.container}>
-          <Heading as="h1" className="ink" style={styles.title}>
+          <Heading as="h1" style={styles.title}>
             {words.title}
           </Heading>
-          <Text className="ink" style={styles.text}>
-            {words.period}
-          </Text>
+          <Text style={styles.text}>{words.period}</Text>
           {words.cautions.map((caution) => (
-            <Text key={caution} className="ink" style={styles.caution}>
+            <Text key={caution} style={styles.caution}>
               {caution}
             </Text>
           ))}
@@ -68,15 +66,15 @@ function WeeklySummary({
             <Figures key={section.heading} section={section} appUrl={appUrl} />
           ))}
           <Hr style={styles.rule} />
-          <Text className="ink" style={styles.text}>
-            <Link className="accent" style={styles.link} href={weekUrl(appUrl, view)}>
+          <Text style={styles.text}>
+            <Link style={styles.link} href={weekUrl(appUrl, view)}>
               Open this week in Cupel
             </Link>
           </Text>
           {unsubscribeUrl && (
-            <Text className="soft" style={styles.note}>
+            <Text style={styles.note}>
               You get this every week because your risk manager put you on the list.{" "}
-              <Link className="accent" style={styles.link} href={unsubscribeUrl}>
+              <Link style={styles.link} href={unsubscribeUrl}>
                 Stop these summaries
               </Link>
             </Text>
@@ -90,14 +88,11 @@ function WeeklySummary({
 function Figures({ section, appUrl }: { section: SummarySection; appUrl: string }) {
   return (
     <Section>
-      <Heading as="h2" className="ink" style={styles.heading}>
+      <Heading as="h2" style={styles.heading}>
         {section.heading}
       </Heading>
-      {section.rows.length === 0 && (
-        <Text className="ink" style={styles.text}>
-          {section.empty}
-        </Text>
-      )}
+      {section.lead && <Text style={styles.note}>{section.lead}</Text>}
+      {section.rows.length === 0 && <Text style={styles.text}>{section.empty}</Text>}
       {section.rows.map((row) => (
         <Row key={row.label + row.value}>
           <Column>
@@ -113,9 +108,9 @@ function Figures({ section, appUrl }: { section: SummarySection; appUrl: string 
 function Figure({ row, appUrl }: { row: SummaryRow; appUrl: string }) {
   return (
     <>
-      <Text className="ink" style={styles.value}>
+      <Text style={styles.value}>
         {row.path ? (
-          <Link className="accent" style={styles.link} href={appUrl + row.path}>
+          <Link style={styles.link} href={appUrl + row.path}>
             {row.label}
           </Link>
         ) : (
@@ -123,11 +118,7 @@ function Figure({ row, appUrl }: { row: SummaryRow; appUrl: string }) {
         )}
         : {row.value}
       </Text>
-      {row.note && (
-        <Text className="soft" style={styles.note}>
-          {row.note}
-        </Text>
-      )}
+      {row.note && <Text style={styles.note}>{row.note}</Text>}
     </>
   );
 }
@@ -144,7 +135,11 @@ function plainText(words: SummaryWords, { appUrl, unsubscribeUrl, view }: Weekly
   const parts = [
     [words.title, words.period],
     ...(words.cautions.length > 0 ? [words.cautions] : []),
-    ...words.sections.map((section) => [section.heading.toUpperCase(), ...rows(section)]),
+    ...words.sections.map((section) => [
+      section.heading.toUpperCase(),
+      ...(section.lead ? [section.lead] : []),
+      ...rows(section),
+    ]),
     [`Open this week in Cupel: ${weekUrl(appUrl, view)}`],
     ...(unsubscribeUrl ? [[`Stop these summaries: ${unsubscribeUrl}`]] : []),
   ];

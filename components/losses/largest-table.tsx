@@ -31,7 +31,7 @@ export function LargestTable({ view }: { view: WeekView }) {
                 "Without a case"
               )}
             </RowTh>
-            <Td className="figures break-all">{one.externalId}</Td>
+            <Td className="figures whitespace-nowrap">{one.externalId}</Td>
             <Td>{CHANNEL_WORDS[one.channel]}</Td>
             <Td numeric>
               <Amount amount={one.attempted} currency={view.currency} />

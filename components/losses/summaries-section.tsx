@@ -31,6 +31,7 @@ export function SummariesSection({ view, week, mayManage }: SummariesSectionProp
   return (
     <Section
       title="Summaries sent"
+      lead="With any other mail that failed, or whose arrival is uncertain."
       actions={
         <>
           <Button onClick={() => setAsking({ what: "preview" })}>Preview {week}</Button>

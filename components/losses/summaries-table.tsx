@@ -19,12 +19,19 @@ const STATE_WORDS: Readonly<Record<SummaryItem["state"], string>> = {
   uncertain: "Uncertain: it may have arrived",
 };
 
+const KIND_WORDS: Readonly<Record<SummaryItem["kind"], string>> = {
+  weekly_summary: "Weekly summary",
+  case_assigned: "Case assigned",
+  approval_wanted: "Approval wanted",
+  deadline_digest: "Deadlines passed",
+};
+
 export function SummariesTable({ items, mayManage, onShow, onSendAgain, onMarkAsSent }: SummariesTableProps) {
   return (
     <Table caption="Weekly summaries, newest first" captionHidden>
       <thead>
         <tr>
-          <Th>Week</Th>
+          <Th>Week or mail</Th>
           <Th>To</Th>
           <Th>State</Th>
           <Th>What to do</Th>
@@ -33,16 +40,20 @@ export function SummariesTable({ items, mayManage, onShow, onSendAgain, onMarkAs
       <tbody>
         {items.map((item) => (
           <tr key={item.id}>
-            <RowTh className="figures whitespace-nowrap">{item.week}</RowTh>
+            <RowTh className="whitespace-nowrap">
+              {item.week ? <span className="figures">{item.week}</span> : KIND_WORDS[item.kind]}
+            </RowTh>
             <Td>{item.person.name}</Td>
             <Td>
               <Standing item={item} />
             </Td>
             <Td>
               <span className="flex flex-wrap gap-2">
-                <Button small onClick={() => onShow(item)}>
-                  Show
-                </Button>
+                {item.kind === "weekly_summary" && (
+                  <Button small onClick={() => onShow(item)}>
+                    Show
+                  </Button>
+                )}
                 {mayManage && (item.state === "uncertain" || item.state === "failed") && (
                   <Button small onClick={() => onSendAgain(item)}>
                     Send again

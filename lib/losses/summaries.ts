@@ -1,5 +1,5 @@
 import "server-only";
-import { and, desc, eq, lt } from "drizzle-orm";
+import { and, desc, eq, inArray, lt, or } from "drizzle-orm";
 import { outbox } from "@/db/schema/mail";
 import { people } from "@/db/schema/people";
 import { demand } from "../auth/demand";
@@ -15,12 +15,14 @@ import type {
   SummaryItem,
 } from "./summary-schema";
 
+/** Summaries, newest first, and among them whatever other mail failed or is uncertain. */
 export async function listSummaries(ctx: Context, input: SummariesInput): Promise<SummariesView> {
   demand(ctx, "mail.read");
   const { week, cursor, limit } = input;
   const rows = await ctx.db
     .select({
       id: outbox.id,
+      kind: outbox.kind,
       week: outbox.period,
       person: { id: people.id, name: people.name },
       state: outbox.state,
@@ -34,7 +36,7 @@ export async function listSummaries(ctx: Context, input: SummariesInput): Promis
     .innerJoin(people, eq(people.id, outbox.personId))
     .where(
       and(
-        eq(outbox.kind, "weekly_summary"),
+        or(eq(outbox.kind, "weekly_summary"), inArray(outbox.state, ["failed", "uncertain"])),
         week ? eq(outbox.period, week) : undefined,
         cursor ? lt(outbox.id, cursor) : undefined,
       ),
@@ -48,6 +50,7 @@ export async function listSummaries(ctx: Context, input: SummariesInput): Promis
 
 function toItem(row: {
   id: string;
+  kind: SummaryItem["kind"];
   week: string | null;
   person: { id: string; name: string };
   state: SummaryItem["state"];
@@ -59,7 +62,6 @@ function toItem(row: {
 }): SummaryItem {
   return {
     ...row,
-    week: row.week ?? "",
     createdAt: row.createdAt.toISOString(),
     sentAt: row.sentAt?.toISOString() ?? null,
     nextAttemptAt: row.state === "queued" ? row.nextAttemptAt.toISOString() : null,

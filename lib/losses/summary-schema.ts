@@ -1,5 +1,5 @@
 import { z } from "zod";
-import { MAIL_STATES } from "../mail/codes";
+import { MAIL_KINDS, MAIL_STATES } from "../mail/codes";
 import { Week } from "./schema";
 
 const Id = z.uuid();
@@ -43,7 +43,9 @@ export type SummariesInput = z.infer<typeof SummariesInput>;
 
 export const SummaryItem = z.strictObject({
   id: Id,
-  week: z.string(),
+  /** Other mail is listed only while it waits for somebody's word. */
+  kind: z.enum(MAIL_KINDS),
+  week: z.string().nullable(),
   person: z.strictObject({ id: Id, name: z.string() }),
   state: z.enum(MAIL_STATES),
   attempts: z.int(),
