@@ -27,7 +27,7 @@ export function ColumnField(props: ColumnFieldProps) {
     </option>
   );
   return (
-    <div>
+    <div className="min-w-0">
       <Field
         label={column.name || `Column ${place}, without a name`}
         hint={<Samples of={column.samples} />}

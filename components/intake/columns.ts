@@ -8,7 +8,17 @@ export type Target = string | null;
 
 /** Other names that files give to fields, in the order of likelihood; compared without case, spaces and marks. */
 const OTHER_NAMES: Readonly<Record<string, readonly string[]>> = {
-  externalId: ["transactionid", "paymentid", "txid", "reference", "paymentreference", "ref", "id"],
+  externalId: [
+    "transactionid",
+    "paymentid",
+    "txid",
+    "paymentreference",
+    "transactionreference",
+    "paymentref",
+    "reference",
+    "ref",
+    "id",
+  ],
   occurredAt: ["timestamp", "datetime", "transactiontime", "transactiondate", "time", "date", "when"],
   amount: ["value", "sum", "transactionamount"],
   currency: ["ccy", "currencycode", "cur"],

@@ -35,7 +35,7 @@ export function ImportStanding({ view }: { view: ImportView }) {
         <Notice kind="error" title={problem ?? "It stopped, and nothing says why"}>
           {rowsDone > 0
             ? "What is counted below is in; nothing is half-done. Send the whole file again once it is mended: payments that are in are recognised and not taken twice."
-            : "Nothing of it is in. Mend the file and send it again."}
+            : "Nothing of it is in. Put that right and send the file again."}
         </Notice>
       )}
     </div>

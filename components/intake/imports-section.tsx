@@ -30,6 +30,8 @@ export function ImportsSection({ mayUpload }: { mayUpload: boolean }) {
     initialPageParam: "",
     getNextPageParam: (page) => page.next,
     placeholderData: keepPreviousData,
+    // Whoever comes back looks for what has happened meanwhile.
+    refetchOnMount: "always",
     refetchInterval: ({ state }) => {
       const shown = state.data?.pages.flatMap((page) => page.items) ?? [];
       return shown.some(isUnfinished) ? EVERY_MS.working : EVERY_MS.resting;

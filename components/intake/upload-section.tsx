@@ -42,14 +42,19 @@ export function UploadSection({ fields }: { fields: readonly ImportField[] }) {
 type SendingProps = { chosen: Chosen; sentBytes: number; onCancel: () => void };
 
 function Sending({ chosen: { file }, sentBytes, onCancel }: SendingProps) {
-  const cancelRef = useRef<HTMLButtonElement>(null);
-  useEffect(() => cancelRef.current?.focus(), []);
+  const headingRef = useRef<HTMLHeadingElement>(null);
+  useEffect(() => headingRef.current?.focus(), []);
   const isOut = sentBytes >= file.size;
   return (
     <div className="flex flex-col items-start gap-3">
-      <p role="status">
-        Sending {file.name}. Keep this window open until it is there; other pages of Cupel are fine.
-      </p>
+      <div>
+        <h3 ref={headingRef} tabIndex={-1} className="font-strong outline-none">
+          Sending {file.name}
+        </h3>
+        <p className="text-small text-soft">
+          Keep this window open until it is there; other pages of Cupel are fine.
+        </p>
+      </div>
       <div className="w-full">
         <ProgressBar
           label={`Sending ${file.name}`}
@@ -57,9 +62,7 @@ function Sending({ chosen: { file }, sentBytes, onCancel }: SendingProps) {
           says={isOut ? "All sent; being stored" : `${sizeWords(sentBytes)} of ${sizeWords(file.size)} sent`}
         />
       </div>
-      <Button ref={cancelRef} onClick={onCancel}>
-        Cancel
-      </Button>
+      <Button onClick={onCancel}>Cancel</Button>
     </div>
   );
 }

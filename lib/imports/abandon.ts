@@ -15,7 +15,7 @@ export async function abandonUpload(db: Database, id: string, now: Date): Promis
       .update(imports)
       .set({
         state: "failed",
-        problem: "The file did not come in whole, and nothing of it was read",
+        problem: "The file did not come in whole",
         finishedAt: now,
         leaseExpiresAt: null,
       })

@@ -151,7 +151,7 @@ test.each(Object.entries(cut))(
     expect(newest).toMatchObject({
       state: "failed",
       fileName: "a.csv",
-      problem: "The file did not come in whole, and nothing of it was read",
+      problem: "The file did not come in whole",
     });
   },
 );

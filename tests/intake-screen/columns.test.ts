@@ -60,7 +60,7 @@ test.each([
 });
 
 test("required fields are missing until a column stands for them, and no field may have two", () => {
-  const names = ["Ref", "Time", "Amount", "Currency", "Channel", "Account", "Shop"];
+  const names = ["Ref", "Time", "Amount", "Currency", "Channel", "Account", "Place"];
   const targets = guess(...names);
   expect(missingFields(targets, IMPORT_FIELDS)).toEqual(["counterpartyId"]);
   expect(missingFields(targets.with(6, "counterpartyId"), IMPORT_FIELDS)).toEqual([]);
@@ -69,7 +69,7 @@ test("required fields are missing until a column stands for them, and no field m
 });
 
 test("a mapping that is ready here is one that the server starts with", () => {
-  const names = ["Ref", "Time", "Amount", "Currency", "Channel", "Account", "Shop", "Memo", ""];
+  const names = ["Ref", "Time", "Amount", "Currency", "Channel", "Account", "Place", "Memo", ""];
   const targets = guess(...names).with(6, "counterpartyId");
   const mapping = ColumnMapping.parse(JSON.parse(JSON.stringify(mappingOf(names, targets))));
   expect(headerFault(columnFields(names, mapping))).toBeNull();
