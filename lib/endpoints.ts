@@ -5,6 +5,7 @@ import type { EndpointTable } from "./endpoint";
 import { floorEndpoints } from "./floor/endpoints";
 import { importEndpoints } from "./imports/endpoints";
 import { keyEndpoints } from "./keys/endpoints";
+import { learningEndpoints } from "./learning/endpoints";
 import { lossEndpoints } from "./losses/endpoints";
 import { outcomeEndpoints } from "./outcomes/endpoints";
 import { peopleEndpoints } from "./people/endpoints";
@@ -29,6 +30,7 @@ export const ENDPOINTS = {
   ...floorEndpoints,
   ...policyEndpoints,
   ...outcomeEndpoints,
+  ...learningEndpoints,
   ...lossEndpoints,
 } as const satisfies EndpointTable;
 
