@@ -3,6 +3,7 @@ import { tmpdir } from "node:os";
 import path from "node:path";
 import { defineConfig, devices } from "@playwright/test";
 import { freePort } from "./db/server/ports.mjs";
+import { CHROMIUM } from "./e2e/support/chromium";
 
 // Workers load this file again: what the first load chose reaches them through the environment.
 process.env.CUPEL_E2E_PORT ??= String(await freePort());
@@ -29,18 +30,7 @@ export default defineConfig({
     timezoneId: "Europe/Vienna",
     trace: "retain-on-failure",
     screenshot: "only-on-failure",
-    launchOptions: {
-      executablePath: "/usr/bin/chromium",
-      args: [
-        "--no-sandbox",
-        "--disable-background-networking",
-        "--disable-component-update",
-        "--disable-sync",
-        "--disable-quic",
-        "--no-first-run",
-        "--disable-gpu",
-      ],
-    },
+    launchOptions: CHROMIUM,
   },
   webServer: {
     command: `exec node db/commands/start.mjs --throw-away ${process.env.CUPEL_E2E_DATA}`,

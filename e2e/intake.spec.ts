@@ -1,0 +1,128 @@
+import { readFile } from "node:fs/promises";
+import { newId } from "@/lib/new-id";
+import { expect, test } from "./support/test";
+
+const HEADER = "Payment ref,When,Value,Ccy,Kind,Customer,Shop,Basket";
+const ROWS = 3_000;
+/** A card number for tests, as the card schemes publish them; never anybody's. */
+const CARD_NUMBER = "4111111111111111";
+
+/** Lines of a file in somebody's own words for the columns; each of the broken ones has one fault. */
+function linesOf(batch: string): string[] {
+  const day = (index: number) => new Date(Date.now() - 86_400_000 * (1 + (index % 25))).toISOString();
+  const row = (
+    index: number,
+    change: Partial<Record<"amount" | "currency" | "kind" | "customer", string>>,
+  ) => {
+    const {
+      amount = "12.40",
+      currency = "EUR",
+      kind = "card_present",
+      customer = `${batch}-${index % 40}`,
+    } = change;
+    return `${batch}-${index},${day(index)},${amount},${currency},${kind},${customer},SHOP-7,groceries`;
+  };
+  const lines = Array.from({ length: ROWS }, (_, index) => row(index, {}));
+  lines[10] = row(10, { currency: "EURO" });
+  lines[20] = row(20, { amount: '"12,40"' });
+  lines[30] = row(30, { customer: CARD_NUMBER });
+  lines[40] = row(40, { kind: "cheque" });
+  return [HEADER, ...lines];
+}
+
+test("a file with its own column names comes in, its bad rows come back as a download, and leaving the page costs nothing", async ({
+  office,
+  openAs,
+}) => {
+  const batch = `F${newId().slice(-8)}`;
+  const buffer = Buffer.from(`${linesOf(batch).join("\r\n")}\r\n`);
+  const page = await openAs(await office.person("supervisor"));
+  await page.goto("/intake");
+  const upload = page.getByRole("region", { name: "Send a file" });
+  await upload
+    .getByLabel("Choose a CSV file, or drop one here")
+    .setInputFiles({ name: `${batch}.csv`, mimeType: "text/csv", buffer });
+
+  await test.step("map the columns", async () => {
+    await expect(upload.getByRole("combobox", { name: "Payment ref" })).toHaveValue("externalId");
+    await expect(upload.getByRole("combobox", { name: "When" })).toHaveValue("occurredAt");
+    await expect(upload.getByRole("combobox", { name: "Value" })).toHaveValue("amount");
+    const standing = upload.getByRole("status");
+    await expect(standing).toContainText("Still without a column");
+    await expect(standing.getByRole("listitem")).toHaveText(["Channel", "Counterparty"]);
+    await upload.getByRole("combobox", { name: "Kind" }).selectOption("channel");
+    await upload.getByRole("combobox", { name: "Shop" }).selectOption("counterpartyId");
+    await upload.getByRole("combobox", { name: "Basket" }).selectOption("attributes.Basket");
+    await expect(standing).toHaveText("Every required field has its column.");
+    await upload.getByRole("textbox", { name: "Source" }).fill(batch.toLowerCase());
+    await upload.getByRole("button", { name: "Send the file" }).click();
+    await expect(upload.getByText(`${batch}.csv came in whole and is being read`)).toBeVisible();
+  });
+
+  await test.step("leave the page at once, and find the file again", async () => {
+    await page.getByRole("navigation", { name: "Pages" }).getByRole("link", { name: "Floor" }).click();
+    await expect(page.getByRole("heading", { level: 1 })).toHaveText("Floor");
+    await page.getByRole("navigation", { name: "Pages" }).getByRole("link", { name: "Intake" }).click();
+    await page
+      .getByRole("region", { name: "Files" })
+      .getByRole("link", { name: `${batch}.csv` })
+      .click();
+    await expect(page.getByRole("heading", { level: 1 })).toHaveText(`${batch}.csv`);
+  });
+
+  await test.step("the page follows it to its end by itself", async () => {
+    const outcome = page.getByRole("region", { name: "What came of it" });
+    await expect(page.getByRole("region", { name: "Rejected rows" })).toContainText("4 rows were rejected", {
+      timeout: 45_000,
+    });
+    await expect(outcome).toContainText(/Rows read\s*3,000/);
+    await expect(outcome).toContainText(/New payments\s*2,996/);
+    await expect(outcome).toContainText(/Rejected\s*4/);
+  });
+
+  await test.step("what failed comes as a download, by line and field", async () => {
+    const waiting = page.waitForEvent("download");
+    await page.getByRole("link", { name: "Download all as CSV" }).click();
+    const text = await readFile(await (await waiting).path(), "utf8");
+    const [head, ...faults] = text.trimEnd().split("\r\n");
+    expect(head).toBe("line,externalId,field,message");
+    expect(faults.map((line) => line.split(",").slice(0, 3))).toEqual([
+      ["12", `${batch}-10`, "currency"],
+      ["22", `${batch}-20`, "amount"],
+      ["32", `${batch}-30`, "accountId"],
+      ["42", `${batch}-40`, "channel"],
+    ]);
+    expect(text).not.toContain(CARD_NUMBER);
+  });
+
+  await test.step("the same file again brings nothing twice", async () => {
+    await page.goto("/intake");
+    await upload
+      .getByLabel("Choose a CSV file, or drop one here")
+      .setInputFiles({ name: `again-${batch}.csv`, mimeType: "text/csv", buffer });
+    await upload.getByRole("combobox", { name: "Kind" }).selectOption("channel");
+    await upload.getByRole("combobox", { name: "Shop" }).selectOption("counterpartyId");
+    await upload.getByRole("combobox", { name: "Basket" }).selectOption("attributes.Basket");
+    await upload.getByRole("textbox", { name: "Source" }).fill(batch.toLowerCase());
+    await upload.getByRole("button", { name: "Send the file" }).click();
+    await upload.getByRole("link", { name: "Follow it" }).click();
+    await expect(page.getByRole("region", { name: "Rejected rows" })).toContainText("4 rows were rejected", {
+      timeout: 45_000,
+    });
+    await expect(page.getByRole("region", { name: "What came of it" })).toContainText(
+      /Known already\s*2,996/,
+    );
+  });
+});
+
+test("a file that is no table of payments is refused before anything is sent", async ({ office, openAs }) => {
+  const page = await openAs(await office.person("supervisor"));
+  await page.goto("/intake");
+  const sent: string[] = [];
+  page.on("request", (request) => request.method() === "POST" && sent.push(request.url()));
+  const upload = page.getByRole("region", { name: "Send a file" });
+  const file = { name: "empty.csv", mimeType: "text/csv", buffer: Buffer.alloc(0) };
+  await upload.getByLabel("Choose a CSV file, or drop one here").setInputFiles(file);
+  await expect(upload.getByRole("alert")).toContainText("empty.csv");
+  expect(sent.filter((url) => url.includes("/api/imports"))).toEqual([]);
+});
