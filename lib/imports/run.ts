@@ -10,7 +10,7 @@ import { UnreadableFile } from "./lines";
 import { type Progress, type Row, rowsOf } from "./rows";
 
 /** Large enough that the history of a batch is read in few queries, small enough to lose little time on a crash. */
-const BATCH_ROWS = 2_000;
+const BATCH_ROWS = 4_000;
 /** A batch that fails so often does so by a fault of ours, and would for ever. */
 const ATTEMPTS_AT_MOST = 5;
 

@@ -1,5 +1,3 @@
-const FIRST_CAPACITY = 16;
-
 /** One payment as another payment's history sees it. */
 export type PastPayment = {
   atMs: number;
@@ -11,51 +9,37 @@ export type PastPayment = {
   country: string | null;
   incoming: boolean;
   /** Breaks ties of the same millisecond; only where history is read for payments that are stored already. */
-  id?: string;
+  id?: string | undefined;
 };
 
 /**
- * Payments of one account, card, device or counterparty in order of time, as parallel arrays: a batch reads
- * hundreds of thousands of them.
+ * Payments of one account, card, device or counterparty in order of time. Columns instead of rows, because a batch
+ * reads hundreds of thousands of them.
  */
 export class Activity {
-  length = 0;
-  private at = new Float64Array(FIRST_CAPACITY);
-  private amount = new Float64Array(FIRST_CAPACITY);
-  private incoming = new Uint8Array(FIRST_CAPACITY);
+  readonly atMs: number[] = [];
+  readonly amountsBaseMinor: number[] = [];
   readonly others: string[] = [];
   readonly devices: (string | null)[] = [];
   readonly countries: (string | null)[] = [];
-  private readonly ids: (string | undefined)[] = [];
+  readonly incoming: boolean[] = [];
+  private readonly ids: string[] = [];
+
+  get length(): number {
+    return this.atMs.length;
+  }
 
   /** Behind every payment of the same or an earlier moment. Fast where payments come in order of time. */
   add(payment: PastPayment): void {
-    if (this.length === this.at.length) this.grow();
-    const last = this.length - 1;
-    const place = last < 0 || this.atMs(last) <= payment.atMs ? this.length : this.endAt(payment.atMs);
-    this.at.copyWithin(place + 1, place, this.length);
-    this.amount.copyWithin(place + 1, place, this.length);
-    this.incoming.copyWithin(place + 1, place, this.length);
-    this.at[place] = payment.atMs;
-    this.amount[place] = payment.amountBaseMinor;
-    this.incoming[place] = payment.incoming ? 1 : 0;
+    const last = this.atMs.at(-1);
+    const place = last === undefined || last <= payment.atMs ? this.length : this.endAt(payment.atMs);
+    insert(this.atMs, place, payment.atMs);
+    insert(this.amountsBaseMinor, place, payment.amountBaseMinor);
     insert(this.others, place, payment.other);
     insert(this.devices, place, payment.device);
     insert(this.countries, place, payment.country);
-    insert(this.ids, place, payment.id);
-    this.length++;
-  }
-
-  atMs(index: number): number {
-    return this.at[index] as number;
-  }
-
-  amountBaseMinor(index: number): number {
-    return this.amount[index] as number;
-  }
-
-  isIncoming(index: number): boolean {
-    return this.incoming[index] === 1;
+    insert(this.incoming, place, payment.incoming);
+    if (payment.id !== undefined) insert(this.ids, place, payment.id);
   }
 
   /** How many payments lie at or before the moment: they are 0 … endAt − 1. */
@@ -64,7 +48,7 @@ export class Activity {
     let high = this.length;
     while (low < high) {
       const middle = (low + high) >>> 1;
-      if (this.atMs(middle) <= atMs) low = middle + 1;
+      if ((this.atMs[middle] as number) <= atMs) low = middle + 1;
       else high = middle;
     }
     return low;
@@ -76,21 +60,8 @@ export class Activity {
    */
   endBefore(atMs: number, id: string): number {
     let end = this.endAt(atMs);
-    while (end > 0 && this.atMs(end - 1) === atMs && (this.ids[end - 1] ?? "") >= id) end--;
+    while (end > 0 && this.atMs[end - 1] === atMs && (this.ids[end - 1] ?? "") >= id) end--;
     return end;
-  }
-
-  private grow(): void {
-    const capacity = this.at.length * 2;
-    const at = new Float64Array(capacity);
-    const amount = new Float64Array(capacity);
-    const incoming = new Uint8Array(capacity);
-    at.set(this.at);
-    amount.set(this.amount);
-    incoming.set(this.incoming);
-    this.at = at;
-    this.amount = amount;
-    this.incoming = incoming;
   }
 }
 

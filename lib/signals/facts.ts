@@ -118,14 +118,14 @@ function measureEntity(activity: Activity, end: number, atMs: number): EntityFac
   let valueMinor = 0;
   let window = 0;
   for (let i = end - 1; i >= 0; i--) {
-    const ageMs = atMs - activity.atMs(i);
+    const ageMs = atMs - (activity.atMs[i] as number);
     while (window < WINDOWS.length && ageMs >= (WINDOWS[window]?.ms ?? 0)) {
       counts[window] = count;
       valuesMinor[window] = valueMinor;
       window++;
     }
     if (window === WINDOWS.length) break;
-    const amountMinor = activity.amountBaseMinor(i);
+    const amountMinor = activity.amountsBaseMinor[i] as number;
     count++;
     if (!Number.isNaN(amountMinor)) valueMinor += amountMinor;
     if (ageMs < DAY_MS) {
@@ -140,7 +140,11 @@ function measureEntity(activity: Activity, end: number, atMs: number): EntityFac
   return { counts, valuesMinor, verySmallIn24h, othersIn24h: others.size };
 }
 
+const NONE: LabelCount = { fraudulent: 0, legitimate: 0 };
+const NO_LABELS: LabelFacts = { in7d: NONE, in14d: NONE, in30d: NONE, ever: NONE };
+
 function measureLabels(labels: LabelledPast, payment: PaymentFields): LabelFacts {
+  if (labels.isEmpty) return NO_LABELS;
   const within = (windowMs: number) => labels.count(payment.occurredAtMs, windowMs, payment.id);
   return {
     in7d: within(7 * DAY_MS),
@@ -172,10 +176,10 @@ function measureAccount(activity: Activity, end: number, payment: PaymentFields)
   let sameCountry = false;
   const isIncoming = payment.direction === "incoming";
   for (let i = from; i < end; i++) {
-    const amountMinor = activity.amountBaseMinor(i);
-    const sameDirection = activity.isIncoming(i) === isIncoming;
+    const amountMinor = activity.amountsBaseMinor[i] as number;
+    const sameDirection = activity.incoming[i] === isIncoming;
     if (sameDirection && !Number.isNaN(amountMinor)) amounts[amountCount++] = amountMinor;
-    const apart = Math.abs(hour - hourOf(activity.atMs(i)));
+    const apart = Math.abs(hour - hourOf(activity.atMs[i] as number));
     if (Math.min(apart, 24 - apart) <= NEAR_HOURS) nearCount++;
     sameCounterparty ||= activity.others[i] === payment.counterpartyId;
     sameDevice ||= activity.devices[i] === payment.deviceId;
@@ -185,7 +189,7 @@ function measureAccount(activity: Activity, end: number, payment: PaymentFields)
   return {
     usualMinor: sorted.length > 0 ? median(sorted) : null,
     largestMinor: sorted.at(-1) ?? null,
-    idleMs: payment.occurredAtMs - activity.atMs(end - 1),
+    idleMs: payment.occurredAtMs - (activity.atMs[end - 1] as number),
     isNewCounterparty: !sameCounterparty,
     isNewDevice: payment.deviceId === null ? null : !sameDevice,
     isNewCountry: payment.counterpartyCountry === null ? null : !sameCountry,

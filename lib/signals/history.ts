@@ -11,6 +11,8 @@ import { type KnownEntity, KnownHistory, type PaymentTrace } from "./known-histo
  */
 export const NEWEST_READ = 1_000;
 const ENTITIES_IN_STATEMENT = 250;
+/** Most entities have some dozens of payments in thirty days; where some have far more, each is read by itself. */
+const ROWS_PER_ENTITY = 200;
 const KEYS_IN_STATEMENT = 1_000;
 /** One statement is worked on by the database while the rows of another are taken in. */
 const STATEMENTS_AT_ONCE = 2;
@@ -25,8 +27,9 @@ const KEY_COLUMN: Record<EntityKind, string> = {
 /** Whole milliseconds since 1970, whatever the session's time zone; faster to take in than a date. */
 const OCCURRED_MS = "timestampdiff(microsecond, '1970-01-01', occurred_at) div 1000";
 
+/** Key, milliseconds, amount, the other side, device, country, 1 if incoming, and the id if it was asked for. */
 type PastRow = [
-  number,
+  string,
   number,
   number | null,
   string,
@@ -49,13 +52,14 @@ export async function readHistory(
   { withIds = false } = {},
 ): Promise<KnownHistory> {
   const history = new KnownHistory(payments);
-  const entities = [...history.entities()];
-  const reads: (() => Promise<void>)[] = [
-    ...pieces(entities, ENTITIES_IN_STATEMENT).map((some) => () => readActivity(db, some, withIds)),
-    ...ENTITY_KINDS.flatMap((kind) =>
-      pieces(history.keys(kind), KEYS_IN_STATEMENT).map((keys) => () => readLabels(db, kind, keys, history)),
-    ),
-  ];
+  const reads: (() => Promise<void>)[] = ENTITY_KINDS.flatMap((kind) => {
+    const entities = history.entities(kind);
+    const keys = entities.map(({ key }) => key);
+    return [
+      ...pieces(entities, ENTITIES_IN_STATEMENT).map((some) => () => readActivity(db, kind, some, withIds)),
+      ...pieces(keys, KEYS_IN_STATEMENT).map((some) => () => readLabels(db, kind, some, history)),
+    ];
+  });
   let next = 0;
   const lane = async () => {
     while (next < reads.length) await reads[next++]?.();
@@ -64,21 +68,55 @@ export async function readHistory(
   return history;
 }
 
-async function readActivity(db: Database, entities: readonly KnownEntity[], withIds: boolean): Promise<void> {
-  const selects = entities.map(({ kind }, i) => {
-    const others =
-      kind === "account"
-        ? "counterparty_id, device_id, counterparty_country, direction = 'incoming'"
-        : "account_id, null, null, 0";
-    return `(select ${i}, ${OCCURRED_MS}, amount_base_minor, ${others}${withIds ? ", id" : ""} from transactions
-      where ${KEY_COLUMN[kind]} = ? and occurred_at > ? and occurred_at <= ? order by occurred_at desc limit ${NEWEST_READ})`;
-  });
+async function readActivity(
+  db: Database,
+  kind: EntityKind,
+  entities: readonly KnownEntity[],
+  withIds: boolean,
+): Promise<void> {
+  const columns = columnsOf(kind, withIds);
+  const fromMs = entities.reduce((least, each) => Math.min(least, each.fromMs), Number.POSITIVE_INFINITY);
+  const toMs = entities.reduce((most, each) => Math.max(most, each.toMs), Number.NEGATIVE_INFINITY);
+  const rowsAtMost = Math.max(NEWEST_READ, ROWS_PER_ENTITY * entities.length);
+  const rows = await rowsOf<PastRow>(
+    db,
+    `select ${columns} from transactions where ${KEY_COLUMN[kind]} in (?) and occurred_at > ? and occurred_at <= ?
+      order by ${KEY_COLUMN[kind]}, occurred_at limit ${rowsAtMost + 1}`,
+    [entities.map(({ key }) => key), new Date(fromMs), new Date(toMs)],
+  );
+  if (rows.length <= rowsAtMost) addRows(entities, rows);
+  else addRows(entities, await newestOfEach(db, kind, entities, columns));
+}
+
+/** Oldest first for each entity, with no more than the newest thousand of any. */
+async function newestOfEach(
+  db: Database,
+  kind: EntityKind,
+  entities: readonly KnownEntity[],
+  columns: string,
+): Promise<PastRow[]> {
+  const select = `(select ${columns} from transactions where ${KEY_COLUMN[kind]} = ? and occurred_at > ? and occurred_at <= ?
+    order by occurred_at desc limit ${NEWEST_READ})`;
   const values = entities.flatMap(({ key, fromMs, toMs }) => [key, new Date(fromMs), new Date(toMs)]);
-  const rows = await rowsOf<PastRow>(db, selects.join(" union all "), values);
-  // From the end: each entity's rows come newest first, and oldest first they go in without moving others.
-  for (let r = rows.length - 1; r >= 0; r--) {
-    const [i, atMs, amountBaseMinor, other, device, country, incoming, id] = rows[r] as PastRow;
-    entities[i]?.activity.add({
+  const rows = await rowsOf<PastRow>(db, entities.map(() => select).join(" union all "), values);
+  return rows.reverse();
+}
+
+function columnsOf(kind: EntityKind, withIds: boolean): string {
+  const others =
+    kind === "account"
+      ? "counterparty_id, device_id, counterparty_country, direction = 'incoming'"
+      : "account_id, null, null, 0";
+  return `${KEY_COLUMN[kind]}, ${OCCURRED_MS}, amount_base_minor, ${others}${withIds ? ", id" : ""}`;
+}
+
+function addRows(entities: readonly KnownEntity[], rows: readonly PastRow[]): void {
+  const byKey = new Map(entities.map((entity) => [entity.key, entity]));
+  let entity: KnownEntity | undefined;
+  for (const [key, atMs, amountBaseMinor, other, device, country, incoming, id] of rows) {
+    // One entity's rows stand together.
+    if (entity?.key !== key) entity = byKey.get(key);
+    entity?.activity.add({
       atMs: Number(atMs),
       amountBaseMinor: amountBaseMinor ?? Number.NaN,
       other,

@@ -39,12 +39,8 @@ export class KnownHistory {
     }
   }
 
-  *entities(): Generator<KnownEntity> {
-    for (const kind of ENTITY_KINDS) yield* this.byKind[kind].values();
-  }
-
-  keys(kind: EntityKind): string[] {
-    return [...this.byKind[kind].keys()];
+  entities(kind: EntityKind): KnownEntity[] {
+    return [...this.byKind[kind].values()];
   }
 
   find(kind: EntityKind, key: string): KnownEntity | undefined {

@@ -6,6 +6,10 @@ export type LabelledPayment = { atMs: number; label: Label; transactionId: strin
 export class LabelledPast {
   private readonly payments: LabelledPayment[] = [];
 
+  get isEmpty(): boolean {
+    return this.payments.length === 0;
+  }
+
   add(payment: LabelledPayment): void {
     this.payments.push(payment);
   }
