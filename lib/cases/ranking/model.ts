@@ -8,14 +8,24 @@ import { advance, recompute } from "./advance";
 import { type CaseDelta, readDelta } from "./delta";
 import { KeptMovements, type Movement } from "./movement";
 import { PolicyWatch } from "./policy-watch";
-import { type LoggedLabel, readLabels, readPlaced, readScorerHead, readWaitingIds } from "./read-waiting";
+import {
+  countWaiting,
+  type LoggedLabel,
+  readLabels,
+  readPlaced,
+  readScorerHead,
+  readWaitingIds,
+} from "./read-waiting";
 import { Breath, Turns } from "./turns";
 import { RankingView } from "./view";
 import { type CaseFacts, WaitingCases } from "./waiting-cases";
 
 /** Clocks of servers differ, and a transaction commits later than the time it writes. */
 const OVERLAP_MS = 15_000;
-const PAGE = 500;
+/** Rows are turned into cases without a pause, page by page. */
+const PAGE = 200;
+/** Room for so many times the cases that wait at the start: moving all vectors into a larger array takes a while. */
+const ROOM = 1.25;
 /** From about as many labels as a vector has coordinates on, computing anew is cheaper than moving label by label. */
 const MOST_STEPS = 64;
 
@@ -122,7 +132,7 @@ export class RankingModel {
 
   private async load(now: Date): Promise<void> {
     const held = await readScorerInUse(this.db);
-    const cases = new WaitingCases(held.scorer);
+    const cases = new WaitingCases(held.scorer, Math.ceil(ROOM * (await countWaiting(this.db))));
     const breath = new Breath();
     for (let after = 0; ; ) {
       const page = await readWaitingIds(this.db, after, PAGE);

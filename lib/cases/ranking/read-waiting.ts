@@ -1,5 +1,5 @@
 import "server-only";
-import { and, asc, eq, gt, gte, inArray, lte } from "drizzle-orm";
+import { and, asc, count, eq, gt, gte, inArray, lte } from "drizzle-orm";
 import type { Executor } from "@/db/client";
 import { bytesToVector } from "@/db/columns";
 import { cases } from "@/db/schema/cases";
@@ -149,6 +149,14 @@ export async function readPlaced(db: Executor, ids: readonly string[]): Promise<
     .innerJoin(scores, eq(scores.id, cases.scoreId))
     .where(and(inArray(cases.id, [...ids]), inArray(cases.state, [...UNDECIDED_STATES])));
   return rows.map((row) => ({ facts: toFacts(row.facts), vector: bytesToVector(row.vector) }));
+}
+
+export async function countWaiting(db: Executor): Promise<number> {
+  const [row] = await db
+    .select({ count: count() })
+    .from(cases)
+    .where(inArray(cases.state, [...UNDECIDED_STATES]));
+  return row?.count ?? 0;
 }
 
 /** Ids of cases that wait for a verdict, behind `afterNumber` in order of arrival. */
