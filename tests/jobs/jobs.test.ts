@@ -1,13 +1,15 @@
 import { spawn } from "node:child_process";
 import { once } from "node:events";
 import { eq } from "drizzle-orm";
-import { beforeAll, describe, expect, test } from "vitest";
+import { beforeAll, describe, expect, inject, test } from "vitest";
 import { createDatabase } from "@/db/client";
 import { jobRuns } from "@/db/schema/cases";
 import { idempotencyKeys } from "@/db/schema/people";
+import { policies } from "@/db/schema/policies";
 import { type Job, slotOfMinutes } from "@/lib/job";
 import { faultOf } from "@/lib/jobs/fault";
 import { forgetOldRows } from "@/lib/jobs/housekeeping";
+import { prepareInstallation } from "@/lib/jobs/prepare";
 import { JOBS } from "@/lib/jobs/registry";
 import { runJob } from "@/lib/jobs/run-job";
 import { startScheduler } from "@/lib/jobs/scheduler";
@@ -16,6 +18,11 @@ import { testWorld, WORLD_START, type World } from "../support/world";
 let world: World;
 beforeAll(async () => {
   world = await testWorld();
+  Object.assign(process.env, {
+    DATABASE_URL: world.url,
+    SMTP_URL: inject("smtpUrl"),
+    AUTH_SECRET: "a secret of the tests, 32 letters or more",
+  });
 });
 
 const never = new AbortController().signal;
@@ -196,4 +203,20 @@ test("idempotency keys are forgotten after a day and job runs after a quarter, a
   const keys = await world.db.select({ key: idempotencyKeys.key }).from(idempotencyKeys);
   expect(keys).toEqual([{ key: "young" }]);
   expect((await runsOf("kept")).map(({ slot }) => slot)).toEqual(["1"]);
+});
+
+test("an installation is prepared once, whoever starts first, and not at all on a database without its schema", async () => {
+  const ctx = { ...world.ctx({ kind: "system", job: "start" }) };
+  await Promise.all([prepareInstallation(ctx), prepareInstallation(ctx)]);
+  const policiesThere = await world.db.select({ id: policies.id }).from(policies);
+  expect(policiesThere).toHaveLength(1);
+  const empty = createDatabase(
+    Object.assign(new URL(world.url), { pathname: "/information_schema" }).href,
+    1,
+  );
+  try {
+    await expect(prepareInstallation({ ...ctx, db: empty.db })).rejects.toThrow("has not been migrated");
+  } finally {
+    await empty.close();
+  }
 });
