@@ -61,7 +61,7 @@ test("an auditor searches the trail, opens one decision as it was, and verifies 
 
   await test.step("what the auditor read is itself in the trail", async () => {
     await page.goto(`/trail?person=${auditor.personId}`);
-    await expect(entries.filter({ hasText: "Trail verified" })).toHaveCount(3);
+    await expect(entries.filter({ hasText: "Chain verified" })).toHaveCount(3);
     await expect(entries.filter({ hasText: "Trail read" }).first()).toBeVisible();
   });
 });
