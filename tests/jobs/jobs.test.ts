@@ -1,6 +1,7 @@
 import { spawn } from "node:child_process";
+import { randomBytes } from "node:crypto";
 import { once } from "node:events";
-import { eq } from "drizzle-orm";
+import { eq, sql } from "drizzle-orm";
 import { beforeAll, describe, expect, inject, test } from "vitest";
 import { createDatabase } from "@/db/client";
 import { jobRuns } from "@/db/schema/cases";
@@ -210,13 +211,15 @@ test("an installation is prepared once, whoever starts first, and not at all on 
   await Promise.all([prepareInstallation(ctx), prepareInstallation(ctx)]);
   const policiesThere = await world.db.select({ id: policies.id }).from(policies);
   expect(policiesThere).toHaveLength(1);
-  const empty = createDatabase(
-    Object.assign(new URL(world.url), { pathname: "/information_schema" }).href,
-    1,
-  );
+  const name = `cupel_t_${randomBytes(6).toString("hex")}`;
+  const owner = createDatabase(world.ownerUrl, 1);
+  const empty = createDatabase(Object.assign(new URL(world.url), { pathname: `/${name}` }).href, 1);
   try {
+    await owner.db.execute(sql.raw(`create database ${name}`));
     await expect(prepareInstallation({ ...ctx, db: empty.db })).rejects.toThrow("has not been migrated");
   } finally {
     await empty.close();
+    await owner.db.execute(sql.raw(`drop database ${name}`));
+    await owner.close();
   }
 });
