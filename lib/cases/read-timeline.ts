@@ -67,7 +67,7 @@ function peopleIn({
 
 const UUID = /^[0-9a-f]{8}-[0-9a-f]{4}-[0-9a-f]{4}-[0-9a-f]{4}-[0-9a-f]{12}$/;
 
-export async function namesOf(db: Executor, personIds: readonly string[]): Promise<Map<string, string>> {
+async function namesOf(db: Executor, personIds: readonly string[]): Promise<Map<string, string>> {
   const ids = [...new Set(personIds)];
   if (ids.length === 0) return new Map();
   const rows = await db

@@ -8,11 +8,13 @@ import { people } from "@/db/schema/people";
 import { transactions } from "@/db/schema/transactions";
 import { demand } from "../auth/demand";
 import type { Context } from "../context";
+import { probabilityOf } from "../decibans";
 import { forbidden, notFound } from "../errors";
 import { formatAmount } from "../money";
 import { policyInForce } from "../policy/read";
 import { readBaseCurrency } from "../transactions/base-currency";
 import { UNDECIDED_STATES } from "./codes";
+import { rankingOf } from "./ranking/ranking";
 import { readEvidenceNow, readEvidenceShown } from "./read-evidence";
 import { readLinks } from "./read-links";
 import { readTimeline } from "./read-timeline";
@@ -57,7 +59,7 @@ export async function readCase(ctx: Context, caseId: string): Promise<CaseView> 
     mine: isMine,
     transaction: transactionView(transaction, await readBaseCurrency(db)),
     evidence: await readEvidence(ctx, row, verdicts),
-    links: await readLinks(db, transaction),
+    links: await withPresentScores(ctx, await readLinks(db, transaction)),
     decisions: verdicts.map(decisionView),
     notes: await readNotes(db, caseId),
     draft: await readDraft(db, caseId, reader.personId),
@@ -102,6 +104,17 @@ async function readEvidence(
   }
   const standing = verdicts.find(({ decision }) => stands(decision))?.decision;
   return standing ? readEvidenceShown(ctx.db, standing) : readEvidenceNow(ctx.db, row.scoreId, now);
+}
+
+/** A linked case that waits has the probability it has in the queue, not the one it was last scored with. */
+async function withPresentScores(ctx: Context, links: CaseView["links"]): Promise<CaseView["links"]> {
+  if (!links.some(({ caseId }) => caseId !== null)) return links;
+  return rankingOf(ctx.db).read(ctx.now(), (view) =>
+    links.map((link) => {
+      const logit = link.caseId === null ? undefined : view.logitOf(link.caseId);
+      return logit === undefined ? link : { ...link, probability: probabilityOf(logit) };
+    }),
+  );
 }
 
 async function readNotes(db: Executor, caseId: string): Promise<CaseView["notes"]> {

@@ -6,6 +6,7 @@ import { transactions } from "@/db/schema/transactions";
 import { assignCase } from "@/lib/cases/assign";
 import { claimCase } from "@/lib/cases/claim";
 import { escalateCase } from "@/lib/cases/escalate";
+import { casesChanged } from "@/lib/cases/notify";
 import { stopRanking } from "@/lib/cases/ranking/ranking";
 import { caseView } from "@/lib/cases/read";
 import { CaseView } from "@/lib/cases/schema";
@@ -28,8 +29,11 @@ beforeAll(async () => {
   return () => stopRanking(world.db);
 });
 
-const waiting = async (count: number, options = {}) =>
-  world.waitingCases(count, { seed: seed++, ...options });
+async function waiting(count: number, options = {}): Promise<WaitingCase[]> {
+  const made = await world.waitingCases(count, { seed: seed++, ...options });
+  casesChanged(made.map(({ caseId }) => caseId));
+  return made;
+}
 const one = async (options = {}) => ((await waiting(1, options)) as [WaitingCase])[0];
 const view = (id: string, person = mira) => caseView(world.ctx(person), { id });
 
@@ -125,6 +129,9 @@ describe("the links of a case", () => {
       state: "decided",
     });
     expect(byId.get(sameDevice.transactionId)).toMatchObject({ by: "device", together: false });
+    // What waits is shown with its present score, which the verdict on the card has moved.
+    const present = (await view(sameDevice.caseId)).evidence?.probability as number;
+    expect(byId.get(sameDevice.transactionId)?.probability).toBeCloseTo(present, 9);
   });
 
   test("offer the account's passed payments of the same day to be decided together, and no older ones", async () => {

@@ -246,10 +246,8 @@ describe("when a payment is labelled", () => {
     const row = await rowOf(byDevice.caseId);
     expect(row).toMatchObject({ scoreId: fresh.id, revision: 1 });
     // The ranking has its new signals too.
-    const { logit } = (await rankingOf(world.db).read(minutes(4), (view) => view.find(byDevice.caseId))) as {
-      logit: number;
-    };
-    expect(Math.abs(logit - fresh.logit)).toBeLessThan(1e-9);
+    const logit = await rankingOf(world.db).read(minutes(4), (view) => view.logitOf(byDevice.caseId));
+    expect(Math.abs((logit as number) - fresh.logit)).toBeLessThan(1e-9);
   });
 
   test("two servers that refresh at once give each linked case one new score", async () => {

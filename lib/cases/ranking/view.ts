@@ -111,9 +111,9 @@ export class RankingView {
     return placed.map(({ facts }) => facts);
   }
 
-  find(caseId: string): { facts: CaseFacts; logit: number } | null {
-    const facts = this.cases.find(caseId);
-    return facts ? { facts, logit: this.cases.logitOf(caseId) as number } : null;
+  /** Log-odds in nats; undefined for a case that does not wait. */
+  logitOf(caseId: string): number | undefined {
+    return this.cases.logitOf(caseId);
   }
 
   private slotAt(index: number): number {
