@@ -6,7 +6,7 @@ import { TimeLeft } from "../ui/time-left";
 import { CASE_KIND_WORDS, CHANNEL_WORDS, PAYMENT_STATE_WORDS, ZONE_WORDS } from "../words";
 
 /** Words for the counterparty: its name where the sender gave one. */
-export function counterpartyOf(transaction: CaseView["transaction"]): string {
+function counterpartyOf(transaction: CaseView["transaction"]): string {
   return transaction.counterpartyName ?? transaction.counterpartyId;
 }
 

@@ -14,7 +14,7 @@ const BY_WORDS: Record<LinkedCase["by"], string> = {
   counterparty: "Same counterparty",
 };
 
-export type Ticks = { ticked: ReadonlySet<string>; onTick: (transactionId: string, ticked: boolean) => void };
+type Ticks = { ticked: ReadonlySet<string>; onTick: (transactionId: string, ticked: boolean) => void };
 
 type LinksProps = {
   links: readonly LinkedCase[];

@@ -87,5 +87,7 @@ export async function stillMine(sent: Sent): Promise<CaseView | null> {
 export function problemWords(error: unknown): string {
   if (!(error instanceof ApiProblem)) throw error;
   const fields = error.errors.map(({ path, message }) => `${path} ${message}`);
-  return [error.message, ...fields].join("; ").replace(/\.$/, "");
+  // The server names the case where several are decided in one act; here its name comes first anyway.
+  const message = error.message.replace(/^Case \d+: /, "");
+  return [message, ...fields].join("; ").replace(/\.$/, "");
 }

@@ -13,7 +13,7 @@ export function lastActiveMs(): number {
   return Number(localStorage.getItem(KEPT_AT) ?? 0);
 }
 
-export function noteActivity(): void {
+function noteActivity(): void {
   localStorage.setItem(KEPT_AT, String(Date.now()));
 }
 
