@@ -1,8 +1,6 @@
-import { createReadStream, writeFileSync } from "node:fs";
+import { writeFileSync } from "node:fs";
 import { tmpdir } from "node:os";
 import path from "node:path";
-import { createInterface } from "node:readline";
-import { createGunzip } from "node:zlib";
 import { createDatabase } from "@/db/client";
 import type { QueueItem } from "@/lib/cases/schema";
 import { startApp } from "../support/app";
@@ -10,6 +8,7 @@ import type { Row } from "../support/bench";
 import { Api, insertKey } from "./support/api";
 import { ms, percent, quantile } from "./support/figures";
 import { setTerms } from "./support/install";
+import { readRows } from "./support/stream";
 
 const ACCOUNTS_A_DAY = 100;
 const CHARGEBACK_DELAY_DAYS = 7;
@@ -193,17 +192,4 @@ function groupBy<T>(items: readonly T[], keyOf: (item: T) => string): Map<string
     else groups.set(keyOf(item), [item]);
   }
   return groups;
-}
-
-async function readRows(file: string): Promise<Record<string, string>[]> {
-  const raw = createReadStream(file);
-  const lines = createInterface({ input: file.endsWith(".gz") ? raw.pipe(createGunzip()) : raw });
-  const rows: Record<string, string>[] = [];
-  let header: string[] | null = null;
-  for await (const line of lines) {
-    const cells = line.split(",");
-    if (header === null) header = cells;
-    else rows.push(Object.fromEntries(header.map((name, index) => [name, cells[index] ?? ""])));
-  }
-  return rows;
 }
