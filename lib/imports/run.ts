@@ -19,7 +19,12 @@ const ATTEMPTS_AT_MOST = 5;
  * an import that was broken off goes on right behind the last committed row.
  * @throws LostLease when another server has taken it over meanwhile
  */
-export async function runImport(ctx: Context, claimed: ClaimedImport, signal: AbortSignal): Promise<void> {
+export async function runImport(
+  ctx: Context,
+  claimed: ClaimedImport,
+  signal: AbortSignal,
+  batchRows = BATCH_ROWS,
+): Promise<void> {
   if (claimed.attempts > ATTEMPTS_AT_MOST) {
     const from = `behind row ${claimed.rowsDone}`;
     await finish(ctx, claimed, `Reading stopped ${from} by a fault on our side, ${ATTEMPTS_AT_MOST} times`);
@@ -37,7 +42,7 @@ export async function runImport(ctx: Context, claimed: ClaimedImport, signal: Ab
         continue;
       }
       batch.push(row);
-      if (batch.length < BATCH_ROWS) continue;
+      if (batch.length < batchRows) continue;
       await commitBatch(ctx, claimed, batch, progress);
       batch = [];
       if (signal.aborted) return await giveBack(ctx.db, claimed);

@@ -1,19 +1,18 @@
 import { createDatabase } from "@/db/client";
-import { importJobs } from "@/lib/imports/jobs";
+import { claimImport } from "@/lib/imports/lease";
+import { runImport } from "@/lib/imports/run";
 import { newId } from "@/lib/new-id";
 
-/** The imports' part of a server, as a process of its own that a test can kill. */
+/** The part of a server that reads an import, as a process of its own that a test can kill. */
 const { db } = createDatabase(process.env.DATABASE_URL ?? "");
 const now = new Date(process.env.RUNNER_NOW ?? "");
-for (const job of importJobs) {
-  await job.run(
-    {
-      db,
-      now: () => now,
-      actor: { kind: "system", job: job.name },
-      requestId: newId(),
-      idempotency: null,
-    },
-    new AbortController().signal,
-  );
-}
+const claimed = await claimImport(db, now);
+if (!claimed) throw new Error("There was nothing to claim");
+const ctx = {
+  db,
+  now: () => now,
+  actor: { kind: "system" as const, job: "imports" },
+  requestId: newId(),
+  idempotency: null,
+};
+await runImport(ctx, claimed, new AbortController().signal, Number(process.env.RUNNER_BATCH_ROWS));

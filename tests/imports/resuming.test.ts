@@ -12,8 +12,9 @@ import { runImport } from "@/lib/imports/run";
 import { testWorld, WORLD_START } from "../support/world";
 import { csv, gzip, row, rows, shown, upload } from "./uploads";
 
-/** A batch of 2,000, and the beginning of another. */
-const ROWS = 2_100;
+const BATCH = 200;
+/** Several batches, and the beginning of another. */
+const ROWS = 1_030;
 
 const world = await testWorld();
 const { db } = world;
@@ -26,6 +27,8 @@ const later = (minutes: number) => new Date(WORLD_START.getTime() + minutes * 60
 async function runJobs(ctx: Context, signal = never) {
   for (const job of importJobs) await job.run(ctx, signal);
 }
+
+const read = (ctx: Context, claimed: ClaimedImport, signal = never) => runImport(ctx, claimed, signal, BATCH);
 
 async function claimOrThrow(at?: Date): Promise<ClaimedImport> {
   const claimed = await claimImport(db, at ?? WORLD_START);
@@ -49,8 +52,8 @@ async function expectWhole(id: string, source: string, count = ROWS) {
 
 test("a server that stops gives the import back behind its last batch, and the next one goes on there", async () => {
   const { id } = await upload(supervisor, gzip(csv(rows(ROWS))), { source: "stopped" });
-  await runImport(runner(), await claimOrThrow(), stopping);
-  expect(await shown(supervisor, id)).toMatchObject({ state: "queued", rowsDone: 2_000, created: 2_000 });
+  await read(runner(), await claimOrThrow(), stopping);
+  expect(await shown(supervisor, id)).toMatchObject({ state: "queued", rowsDone: BATCH, created: BATCH });
   await runJobs(runner());
   await expectWhole(id, "stopped");
 });
@@ -61,10 +64,10 @@ test("a server whose lease ran out loses the batch it was at, and its successor 
   expect(await claimImport(db, later(0.9))).toBeNull();
   const successor = await claimOrThrow(later(1.1));
   expect(successor.id).toBe(id);
-  await expect(runImport(runner(), quiet, never)).rejects.toBeInstanceOf(LostLease);
+  await expect(read(runner(), quiet)).rejects.toBeInstanceOf(LostLease);
   expect(await shown(supervisor, id)).toMatchObject({ state: "running", rowsDone: 0, created: 0 });
   expect(await db.select().from(transactions).where(eq(transactions.source, "lost"))).toEqual([]);
-  await runImport(runner(later(1.1)), successor, never);
+  await read(runner(later(1.1)), successor);
   await expectWhole(id, "lost");
 });
 
@@ -76,11 +79,9 @@ test("a server that lost its lease before the end cannot end the import of its s
     .set({ mapping: { amount: null } })
     .where(eq(imports.id, id));
   const successor = await claimOrThrow(later(2));
-  await expect(runImport(runner(), { ...quiet, mapping: { amount: null } }, never)).rejects.toBeInstanceOf(
-    LostLease,
-  );
+  await expect(read(runner(), { ...quiet, mapping: { amount: null } })).rejects.toBeInstanceOf(LostLease);
   expect(await shown(supervisor, id)).toMatchObject({ state: "running", problem: null });
-  await runImport(runner(later(2)), { ...successor, mapping: {} }, never);
+  await read(runner(later(2)), { ...successor, mapping: {} });
   await expectWhole(id, "late", 3);
 });
 
@@ -88,10 +89,7 @@ test("two servers at the same import at once: each row is in once", async () => 
   const { id } = await upload(supervisor, csv(rows(ROWS)), { source: "both" });
   const first = await claimOrThrow();
   const second = await claimOrThrow(later(2));
-  const ends = await Promise.allSettled([
-    runImport(runner(), first, never),
-    runImport(runner(later(2)), second, never),
-  ]);
+  const ends = await Promise.allSettled([read(runner(), first), read(runner(later(2)), second)]);
   expect(ends.map(({ status }) => status)).toEqual(["rejected", "fulfilled"]);
   await expectWhole(id, "both");
 });
@@ -107,11 +105,11 @@ test("two servers that look for work at once share the imports out", async () =>
 });
 
 test("a server killed in the middle of a batch: another one goes on, nothing lost and nothing twice", async () => {
-  const { id } = await upload(supervisor, csv(rows(3 * ROWS)), { source: "killed" });
+  const { id } = await upload(supervisor, csv(rows(4 * ROWS)), { source: "killed" });
   const progress = async () => (await shown(supervisor, id)).rowsDone;
   const child = startRunner();
   const exited = once(child, "exit");
-  await expect.poll(progress, { timeout: 60_000, interval: 5 }).toBeGreaterThanOrEqual(2_000);
+  await expect.poll(progress, { timeout: 60_000, interval: 5 }).toBeGreaterThanOrEqual(BATCH);
   await db.transaction(async (tx) => {
     // Whoever holds the trail's head keeps every batch from its end.
     await tx.select().from(trailHead).for("update");
@@ -119,14 +117,14 @@ test("a server killed in the middle of a batch: another one goes on, nothing los
     expect(await exited).toEqual([null, "SIGKILL"]);
   });
   expect(await shown(supervisor, id)).toMatchObject({ state: "running" });
-  expect(await progress()).toBeLessThan(3 * ROWS);
+  expect(await progress()).toBeLessThan(4 * ROWS);
   const state = async () => {
     await runJobs(runner(later(2)));
     return (await shown(supervisor, id)).state;
   };
   // The database may still be undoing what the dead server had begun.
   await expect.poll(state, { timeout: 30_000 }).toBe("done");
-  await expectWhole(id, "killed", 3 * ROWS);
+  await expectWhole(id, "killed", 4 * ROWS);
 }, 120_000);
 
 function startRunner() {
@@ -136,6 +134,7 @@ function startRunner() {
       ...process.env,
       DATABASE_URL: world.url,
       RUNNER_NOW: WORLD_START.toISOString(),
+      RUNNER_BATCH_ROWS: String(BATCH),
       TSX_TSCONFIG_PATH: "db/commands/tsconfig.json",
     },
     stdio: "inherit",
@@ -143,8 +142,8 @@ function startRunner() {
 }
 
 test("a batch that fails by our fault is tried again, and in the end said, with what is in", async () => {
-  const { id } = await upload(supervisor, csv(rows(2_003)), { source: "faulty" });
-  await runImport(runner(), await claimOrThrow(), stopping);
+  const { id } = await upload(supervisor, csv(rows(BATCH + 3)), { source: "faulty" });
+  await read(runner(), await claimOrThrow(), stopping);
   for (let attempt = 1; attempt <= 5; attempt++) {
     const claimed = await claimOrThrow(later(2 * attempt));
     expect(claimed.attempts).toBe(attempt);
@@ -152,9 +151,9 @@ test("a batch that fails by our fault is tried again, and in the end said, with 
   await runJobs(runner(later(20)));
   expect(await shown(supervisor, id)).toMatchObject({
     state: "failed",
-    rowsDone: 2_000,
-    created: 2_000,
-    problem: "Reading stopped behind row 2000 by a fault on our side, 5 times",
+    rowsDone: BATCH,
+    created: BATCH,
+    problem: "Reading stopped behind row 200 by a fault on our side, 5 times",
   });
   expect(await db.select().from(importChunks).where(eq(importChunks.importId, id))).toEqual([]);
 });
@@ -163,9 +162,6 @@ test("a row error is noted once, however often its batch was begun", async () =>
   const { id } = await upload(supervisor, csv([row(0), row(1, { amount: "-1.00" })]), { source: "noted" });
   const quiet = await claimOrThrow();
   const successor = await claimOrThrow(later(2));
-  await Promise.allSettled([
-    runImport(runner(), quiet, never),
-    runImport(runner(later(2)), successor, never),
-  ]);
+  await Promise.allSettled([read(runner(), quiet), read(runner(later(2)), successor)]);
   expect((await shown(supervisor, id)).errors).toMatchObject([{ row: 3, path: "amount" }]);
 });
