@@ -127,7 +127,7 @@ function LinkRow({ link, showScore, ticks }: { link: LinkedCase; showScore: bool
       {showScore && (
         <td className="py-1 text-right max-sm:hidden">
           <span title="Score when it was last taken">
-            <Probability probability={link.probability} />
+            {link.probability === null ? "hidden" : <Probability probability={link.probability} />}
           </span>
         </td>
       )}

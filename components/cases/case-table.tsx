@@ -40,7 +40,7 @@ export function CaseTable({ items, total, lines }: CaseTableProps) {
               </Link>
             </RowTh>
             <Td className="whitespace-nowrap">
-              {lines && (
+              {lines && item.evidenceDecibans !== null && item.probability !== null && (
                 <span className="mr-2 inline-block w-24">
                   <ScoreMark
                     decibans={item.evidenceDecibans}
@@ -51,7 +51,7 @@ export function CaseTable({ items, total, lines }: CaseTableProps) {
                 </span>
               )}
               <span aria-hidden="true">
-                <Decibans decibans={item.evidenceDecibans} />
+                {item.evidenceDecibans === null ? "hidden" : <Decibans decibans={item.evidenceDecibans} />}
               </span>
             </Td>
             <Td numeric>

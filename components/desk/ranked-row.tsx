@@ -64,7 +64,7 @@ export function RankedRow({ item, rank, topPx, mine, activeColumn, thresholds, o
       )}
       {cell(
         1,
-        thresholds ? (
+        thresholds && item.evidenceDecibans !== null && item.probability !== null ? (
           <>
             <ScoreMark
               decibans={item.evidenceDecibans}

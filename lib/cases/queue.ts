@@ -9,6 +9,7 @@ import { demand } from "../auth/demand";
 import type { Context } from "../context";
 import { natsToDecibans, probabilityOf } from "../decibans";
 import { formatAmount } from "../money";
+import { policyInForce } from "../policy/read";
 import { UNDECIDED_STATES } from "./codes";
 import { placeOf } from "./cursor";
 import { matcherOf } from "./queue-filter";
@@ -29,11 +30,18 @@ export async function listQueue(ctx: Context, input: QueueInput): Promise<QueueV
   const after = input.cursor === undefined ? null : placeOf(input.cursor);
   const page = await rankingOf(ctx.db).read(now, (view) => pageOf(view, reader, matches, after, input.limit));
   const { version, total, next } = page;
-  return { version, total, items: await readItems(ctx.db, page.cases, now), next };
+  const { terms } = await policyInForce(ctx.db, now);
+  const items = await readItems(ctx.db, page.cases, terms.hideScoreUntilVerdict, now);
+  return { version, total, items, next };
 }
 
 /** The ranking says which and in which order; what is shown of them is read from the database. */
-async function readItems(db: Executor, ranked: readonly RankedCase[], now: Date): Promise<QueueItem[]> {
+async function readItems(
+  db: Executor,
+  ranked: readonly RankedCase[],
+  hidesScores: boolean,
+  now: Date,
+): Promise<QueueItem[]> {
   if (ranked.length === 0) return [];
   const rows = await db
     .select({
@@ -79,8 +87,8 @@ async function readItems(db: Executor, ranked: readonly RankedCase[], now: Date)
       ...same,
       amount: formatAmount(amountMinor, row.currency),
       occurredAt: row.occurredAt.toISOString(),
-      probability: probabilityOf(logit),
-      evidenceDecibans: natsToDecibans(logit),
+      probability: hidesScores ? null : probabilityOf(logit),
+      evidenceDecibans: hidesScores ? null : natsToDecibans(logit),
       holdExpiresAt: row.holdExpiresAt?.toISOString() ?? null,
       dueAt: row.dueAt.toISOString(),
       overdue: row.dueAt.getTime() < now.getTime(),

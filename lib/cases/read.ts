@@ -106,8 +106,12 @@ async function readEvidence(
   return standing ? readEvidenceShown(ctx.db, standing) : readEvidenceNow(ctx.db, row.scoreId, now);
 }
 
-/** A linked case that waits has the probability it has in the queue, not the one it was last scored with. */
+/** A linked case that waits has the probability it has in the queue, unless the policy hides it. */
 async function withPresentScores(ctx: Context, links: CaseView["links"]): Promise<CaseView["links"]> {
+  const { terms } = await policyInForce(ctx.db, ctx.now());
+  if (terms.hideScoreUntilVerdict) {
+    return links.map((link) => (link.verdict === null ? { ...link, probability: null } : link));
+  }
   if (!links.some(({ caseId }) => caseId !== null)) return links;
   return rankingOf(ctx.db).read(ctx.now(), (view) =>
     links.map((link) => {

@@ -19,8 +19,9 @@ export const QueueItem = z.strictObject({
   currency: z.string(),
   channel: z.enum(CHANNELS),
   occurredAt: Instant,
-  probability: z.number(),
-  evidenceDecibans: z.number(),
+  /** Null while the policy hides scores until the verdict, as evidence is. */
+  probability: z.number().nullable(),
+  evidenceDecibans: z.number().nullable(),
   zone: z.enum(ZONES),
   kind: z.enum(CASE_KINDS),
   state: z.enum(CASE_STATES),
@@ -53,7 +54,7 @@ export const QueueView = z.strictObject({
 });
 export type QueueView = z.infer<typeof QueueView>;
 
-/** Evidence of every waiting case for the rug on the axis: decibans, in queue order. */
+/** Evidence of every waiting case for the rug on the axis: decibans, in queue order; none while the policy hides scores. */
 export const RugView = z.strictObject({
   version: z.int(),
   reviewDecibans: z.number(),
@@ -101,7 +102,8 @@ export const LinkedCase = z.strictObject({
   channel: z.enum(CHANNELS),
   state: z.enum(CASE_STATES).nullable(),
   verdict: z.enum(VERDICTS).nullable(),
-  probability: z.number(),
+  /** Null while it is undecided and the policy hides scores. */
+  probability: z.number().nullable(),
   /** Same account and within 24 h: can be decided in the same act. */
   together: z.boolean(),
 });

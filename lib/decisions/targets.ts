@@ -56,6 +56,7 @@ export async function lockTargets(
   const [main, ...others] = targets;
   if (!main) throw notFound("The case");
   refuseUnlessDecidable(main, person, now);
+  refuseUnlessTaken(main, person, policy);
   if (main.caseRow.revision !== input.seenVersion) throw conflict("This case has changed since you saw it");
   for (const [index, other] of others.entries()) {
     refuseUnlessDecidable(other, person, now);
@@ -134,6 +135,14 @@ function refuseUnlessDecidable(target: Target, person: PersonActor, now: Date): 
   const { caseRow } = target;
   const refusal = refusalToDecide({ ...caseRow, state: caseRow.state as CaseState }, person, now);
   if (refusal) throw conflict(`Case ${caseRow.number}: ${refusal}`);
+}
+
+/** Where reviewers take what they are served, they cannot decide what they picked themselves. */
+function refuseUnlessTaken({ caseRow }: Target, person: PersonActor, { terms }: PolicyInForce): void {
+  const free = !terms.takeNextOnly || person.roles.includes("supervisor");
+  if (!free && caseRow.claimedBy !== person.personId) {
+    throw conflict(`Case ${caseRow.number}: take the next case; the policy does not let reviewers pick`);
+  }
 }
 
 function refuseUnlessTogether(main: Target, other: Target, path: string): void {

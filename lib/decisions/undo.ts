@@ -108,7 +108,8 @@ async function takeBack(
   now: Date,
 ): Promise<void> {
   await tx.update(decisions).set({ undoneAt: now }).where(eq(decisions.id, decision.id));
-  await reverseBooking(tx, decision.id, now);
+  // The claim begins anew, so that the time spent until now is in no later decision's cost: it stays booked.
+  await reverseBooking(tx, decision.id, now, "review_cost");
   await tx
     .update(cases)
     .set({

@@ -2,6 +2,7 @@ import { randomBytes } from "node:crypto";
 import { eq, sql } from "drizzle-orm";
 import { beforeAll, describe, expect, test } from "vitest";
 import { caseNotes, cases, decisions, ledger } from "@/db/schema/cases";
+import { policies } from "@/db/schema/policies";
 import { labelLog } from "@/db/schema/scorers";
 import { trail } from "@/db/schema/trail";
 import { transactions } from "@/db/schema/transactions";
@@ -10,6 +11,7 @@ import { decideCase } from "@/lib/decisions/decide";
 import type { DecideInput } from "@/lib/decisions/schema";
 import { KnownError } from "@/lib/errors";
 import { readScorerInUse } from "@/lib/learning/held-scorer";
+import { DEFAULT_TERMS } from "@/lib/policy/default-terms";
 import { ReplayedAnswer } from "@/lib/write-once";
 import { testWorld, type WaitingCase, WORLD_START, type World } from "../support/world";
 
@@ -193,4 +195,14 @@ test("the grace period ends a minute before a hold does", async () => {
   const late = new Date(WORLD_START.getTime() + 86_400_000 - 5 * 60_000);
   const answer = await decideCase(world.ctx(reviewer, late), verdict(waiting));
   expect(answer.undoUntil).toBe(new Date(WORLD_START.getTime() + 86_400_000 - 60_000).toISOString());
+});
+
+test("where reviewers take the next case only, one they picked themselves is refused", async () => {
+  const [reviewer] = reviewers as [PersonActor];
+  const [waiting] = (await world.waitingCases(1, { seed: 500 })) as [WaitingCase];
+  const terms = { ...DEFAULT_TERMS, takeNextOnly: true };
+  await world.db.update(policies).set({ terms }).where(eq(policies.version, 1));
+  await expect(decideCase(world.ctx(reviewer), verdict(waiting))).rejects.toMatchObject({ code: "conflict" });
+  await world.db.update(policies).set({ terms: DEFAULT_TERMS }).where(eq(policies.version, 1));
+  await decideCase(world.ctx(reviewer), verdict(waiting));
 });

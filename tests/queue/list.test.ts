@@ -1,6 +1,7 @@
 import { eq, inArray } from "drizzle-orm";
 import { beforeAll, describe, expect, test } from "vitest";
 import { cases } from "@/db/schema/cases";
+import { policies } from "@/db/schema/policies";
 import { transactions } from "@/db/schema/transactions";
 import { assignCase } from "@/lib/cases/assign";
 import { claimCase } from "@/lib/cases/claim";
@@ -11,6 +12,7 @@ import { readRug } from "@/lib/cases/rug";
 import { QueueInput, QueueView } from "@/lib/cases/schema";
 import type { PersonActor } from "@/lib/context";
 import { decideCase } from "@/lib/decisions/decide";
+import { DEFAULT_TERMS } from "@/lib/policy/default-terms";
 import { testWorld, type WaitingCase, WORLD_START, type World } from "../support/world";
 
 let world: World;
@@ -63,13 +65,25 @@ describe("the list", () => {
   test("has the best case first and says what a reviewer needs of each", async () => {
     const all = await list();
     expect(new Set(idsOf(all))).toEqual(new Set(made));
-    const evidence = all.items.map(({ evidenceDecibans }) => evidenceDecibans);
+    const evidence = all.items.map(({ evidenceDecibans }) => Number(evidenceDecibans));
     expect(evidence).toEqual(evidence.toSorted((a, b) => b - a));
     expect(all).toMatchObject({ total: 37, next: null });
     for (const { probability, evidenceDecibans } of all.items) {
-      expect(10 * Math.log10(probability / (1 - probability))).toBeCloseTo(evidenceDecibans, 6);
+      const odds = Number(probability) / (1 - Number(probability));
+      expect(10 * Math.log10(odds)).toBeCloseTo(Number(evidenceDecibans), 6);
     }
     expect(all.items[0]).toMatchObject({ amount: "123.45", currency: "EUR", state: "open", overdue: false });
+  });
+
+  test("keeps its order and tells no score while the policy hides scores until the verdict", async () => {
+    const order = idsOf(await list());
+    const terms = { ...DEFAULT_TERMS, hideScoreUntilVerdict: true };
+    await world.db.update(policies).set({ terms }).where(eq(policies.version, 1));
+    const hidden = await list();
+    await world.db.update(policies).set({ terms: DEFAULT_TERMS }).where(eq(policies.version, 1));
+    expect(idsOf(hidden)).toEqual(order);
+    for (const item of hidden.items)
+      expect(item).toMatchObject({ probability: null, evidenceDecibans: null });
   });
 
   test("comes in pages that show every case once, in the same order", async () => {
