@@ -143,7 +143,7 @@ function cautionsOf(view: WeekView): string[] {
   return cautions;
 }
 
-export const money = (amount: string, view: { currency: string }): string =>
+const money = (amount: string, view: { currency: string }): string =>
   `${groupDigits(amount)}\u00a0${view.currency}`;
 
 function changeWords(change: string, view: WeekView): string {

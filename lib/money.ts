@@ -45,12 +45,7 @@ export function formatAmount(minor: number, currency: string): string {
   return digits === 0 ? sign + text : `${sign}${text.slice(0, -digits)}.${text.slice(-digits)}`;
 }
 
-/** 1234567.89 with thin spaces between its groups of three and a minus sign, for people. */
-export function displayAmount(minor: number, currency: string): string {
-  return groupDigits(formatAmount(minor, currency));
-}
-
-/** The same for a decimal string of the API. */
+/** A decimal string of the API with thin spaces between its groups of three and a minus sign, for people. */
 export function groupDigits(amount: string): string {
   const [whole = "", fraction] = amount.split(".");
   const grouped = whole.replace(/\B(?=(\d{3})+(?!\d))/g, "\u202f").replace(/^-/, "−");

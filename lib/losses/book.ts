@@ -1,12 +1,12 @@
 import "server-only";
-import { and, eq, isNull, ne, sql } from "drizzle-orm";
+import { and, eq, isNull, ne } from "drizzle-orm";
 import type { Tx } from "@/db/client";
-import { decisions, ledger } from "@/db/schema/cases";
+import { cases, decisions, ledger } from "@/db/schema/cases";
 import { transactions } from "@/db/schema/transactions";
 import type { Typology, Verdict } from "../decisions/codes";
 import type { PolicyTerms } from "../policy/schema";
 import { settleRecoveries } from "./recoveries";
-import { reverseLines, standingOutcomeLines } from "./reverse";
+import { isOutcomeLabel, type LedgerRow, linesOn, reverseLines, standingAmong } from "./reverse";
 import { type LedgerLine, ledgerLine, NOTHING_BOOKED } from "./rules";
 
 type CostTerms = Pick<PolicyTerms, "reviewCostMinorPerHour" | "lostMargin">;
@@ -32,10 +32,10 @@ export type DecisionBooking = {
  */
 export async function bookDecision(tx: Tx, booking: DecisionBooking): Promise<LedgerLine> {
   const payment = await paymentOrThrow(tx, booking.transactionId);
-  const wasPassed =
-    payment.action === "pass" || (await wasDecidedLegitimate(tx, booking.transactionId, booking.decisionId));
+  const lines = await linesOn(tx, booking.transactionId);
+  const wasPassed = payment.action === "pass" || (await wasDecidedLegitimate(tx, lines, booking));
   const whole = ledgerLine({ ...booking, ...payment, wasPassed });
-  const byOutcome = await standingOutcomeLines(tx, booking.transactionId);
+  const byOutcome = standingAmong(lines).filter(isOutcomeLabel);
   const yields = byOutcome.length > 0 && (await isPlainDecision(tx, booking.decisionId));
   if (!yields) await reverseLines(tx, byOutcome, booking.bookedAt, "nothing");
   const line = yields ? { ...NOTHING_BOOKED, reviewCostMinor: whole.reviewCostMinor } : whole;
@@ -48,7 +48,8 @@ export async function bookDecision(tx: Tx, booking: DecisionBooking): Promise<Le
     typology: yields ? null : booking.typology,
     detail: { verdict: booking.verdict, paymentState: payment.paymentState, wasPassed },
   });
-  if (!yields) await settleRecoveries(tx, { ...booking, ...payment }, isFraud(booking), booking.bookedAt);
+  if (!yields)
+    await settleRecoveries(tx, { ...booking, ...payment, lines }, isFraud(booking), booking.bookedAt);
   return line;
 }
 
@@ -68,14 +69,10 @@ export type OutcomeBooking = {
 export async function bookOutcome(tx: Tx, booking: OutcomeBooking): Promise<LedgerLine> {
   const { transactionId, bookedAt } = booking;
   const payment = await paymentOrThrow(tx, transactionId);
-  const wasPassed = payment.action === "pass" || (await wasDecidedLegitimate(tx, transactionId));
-  const before = await tx
-    .select()
-    .from(ledger)
-    .where(
-      and(eq(ledger.transactionId, transactionId), eq(ledger.recoveredMinor, 0), isNull(ledger.reversesId)),
-    );
-  await reverseLines(tx, before, bookedAt, "review_cost");
+  const lines = await linesOn(tx, transactionId);
+  const wasPassed = payment.action === "pass" || (await wasDecidedLegitimate(tx, lines, { transactionId }));
+  const findings = standingAmong(lines).filter((row) => row.recoveredMinor === 0);
+  await reverseLines(tx, findings, bookedAt, "review_cost");
   const line = ledgerLine({ ...booking, ...payment, wasPassed, handlingSeconds: 0 });
   await tx.insert(ledger).values({
     ...line,
@@ -86,7 +83,7 @@ export async function bookOutcome(tx: Tx, booking: OutcomeBooking): Promise<Ledg
     typology: booking.typology,
     detail: { verdict: booking.verdict, paymentState: payment.paymentState, wasPassed },
   });
-  await settleRecoveries(tx, { transactionId, ...payment }, isFraud(booking), bookedAt);
+  await settleRecoveries(tx, { transactionId, ...payment, lines }, isFraud(booking), bookedAt);
   return line;
 }
 
@@ -100,11 +97,8 @@ export async function reverseBooking(
   bookedAt: Date,
   keep: "nothing" | "review_cost" = "nothing",
 ): Promise<void> {
-  const rows = await tx
-    .select()
-    .from(ledger)
-    .where(and(eq(ledger.decisionId, decisionId), isNull(ledger.reversesId)));
-  await reverseLines(tx, rows, bookedAt, keep);
+  const rows = await tx.select().from(ledger).where(eq(ledger.decisionId, decisionId));
+  await reverseLines(tx, standingAmong(rows), bookedAt, keep);
 }
 
 const isFraud = (finding: { verdict: Verdict }) => finding.verdict === "fraudulent";
@@ -126,16 +120,19 @@ async function paymentOrThrow(tx: Tx, transactionId: string) {
 /** A verdict of "legitimate" other than this one was given on the payment and not taken back as a slip. */
 async function wasDecidedLegitimate(
   tx: Tx,
-  transactionId: string,
-  exceptDecisionId?: string,
+  lines: readonly LedgerRow[],
+  { transactionId, decisionId }: { transactionId: string; decisionId?: string },
 ): Promise<boolean> {
+  // Every verdict books a line: where there is none there was no verdict.
+  if (lines.length === 0) return false;
   const [earlier] = await tx
     .select({ id: decisions.id })
     .from(decisions)
+    .innerJoin(cases, eq(cases.id, decisions.caseId))
     .where(
       and(
-        eq(decisions.caseId, sql`(select c.id from cases c where c.transaction_id = ${transactionId})`),
-        exceptDecisionId ? ne(decisions.id, exceptDecisionId) : undefined,
+        eq(cases.transactionId, transactionId),
+        decisionId ? ne(decisions.id, decisionId) : undefined,
         eq(decisions.verdict, "legitimate"),
         isNull(decisions.undoneAt),
       ),

@@ -1,12 +1,17 @@
 import "server-only";
-import { and, eq, gt, isNotNull, isNull } from "drizzle-orm";
+import { and, eq, isNotNull } from "drizzle-orm";
 import type { Tx } from "@/db/client";
 import { ledger } from "@/db/schema/cases";
 import { outcomes } from "@/db/schema/outcomes";
-import { reverseLines, withoutReversed } from "./reverse";
+import { type LedgerRow, linesOn, reverseLines, standingAmong } from "./reverse";
 import { NOTHING_BOOKED } from "./rules";
 
-type Payment = { transactionId: string; occurredAt: Date };
+type Payment = {
+  transactionId: string;
+  occurredAt: Date;
+  /** All its lines, where the caller has read them before. */
+  lines?: readonly LedgerRow[];
+};
 
 /**
  * Recoveries count against a loss only while there is one: books those that are known where the payment's label is
@@ -14,27 +19,22 @@ type Payment = { transactionId: string; occurredAt: Date };
  */
 export async function settleRecoveries(
   tx: Tx,
-  { transactionId, occurredAt }: Payment,
+  { transactionId, occurredAt, lines: read }: Payment,
   isFraudulent: boolean,
   bookedAt: Date,
 ): Promise<void> {
-  const booked = await tx
-    .select()
-    .from(ledger)
-    .where(
-      and(eq(ledger.transactionId, transactionId), gt(ledger.recoveredMinor, 0), isNull(ledger.reversesId)),
-    );
-  const standing = await withoutReversed(tx, booked);
+  const lines = read ?? (await linesOn(tx, transactionId));
+  const standing = standingAmong(lines).filter((row) => row.recoveredMinor > 0);
   if (!isFraudulent) return reverseLines(tx, standing, bookedAt, "nothing");
   const known = await tx
     .select({ outcomeId: outcomes.id, recoveredMinor: outcomes.recoversBaseMinor })
     .from(outcomes)
     .where(and(eq(outcomes.transactionId, transactionId), isNotNull(outcomes.recoversBaseMinor)));
   const present = new Set(standing.map((row) => row.outcomeId));
-  const lines = known.flatMap(({ outcomeId, recoveredMinor }) =>
+  const missing = known.flatMap(({ outcomeId, recoveredMinor }) =>
     present.has(outcomeId) || !recoveredMinor
       ? []
       : [{ ...NOTHING_BOOKED, transactionId, outcomeId, occurredAt, bookedAt, recoveredMinor }],
   );
-  if (lines.length > 0) await tx.insert(ledger).values(lines);
+  if (missing.length > 0) await tx.insert(ledger).values(missing);
 }

@@ -2,7 +2,7 @@
  * Reference fraud rates of the Annex to Commission Delegated Regulation (EU) 2018/389, in parts per million of value,
  * by the highest amount in euro up to which the exemption of Article 18 may be used.
  */
-export const REFERENCE_RATES_PPM = {
+const REFERENCE_RATES_PPM = {
   card: { 100: 1300, 250: 600, 500: 100 },
   credit_transfer: { 100: 150, 250: 100, 500: 50 },
 } as const;

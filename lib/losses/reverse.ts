@@ -1,35 +1,32 @@
 import "server-only";
-import { and, eq, inArray, isNotNull, isNull } from "drizzle-orm";
+import { eq } from "drizzle-orm";
 import type { Tx } from "@/db/client";
 import { ledger } from "@/db/schema/cases";
 import { isNothing, reversed } from "./rules";
 
-type LedgerRow = typeof ledger.$inferSelect;
+export type LedgerRow = typeof ledger.$inferSelect;
 
-/** Lines that outcomes booked for a label and nothing has taken back. Recoveries are no labels and stay. */
-export async function standingOutcomeLines(tx: Tx, transactionId: string): Promise<LedgerRow[]> {
-  const rows = await tx
-    .select()
-    .from(ledger)
-    .where(
-      and(
-        eq(ledger.transactionId, transactionId),
-        isNotNull(ledger.outcomeId),
-        eq(ledger.recoveredMinor, 0),
-        isNull(ledger.reversesId),
-      ),
-    );
-  return withoutReversed(tx, rows);
+/** All that was ever booked on a payment, reversals included. */
+export function linesOn(tx: Tx, transactionId: string): Promise<LedgerRow[]> {
+  return tx.select().from(ledger).where(eq(ledger.transactionId, transactionId));
 }
 
-/** Books the opposite of each line that has not been taken back yet. */
+/** The lines that no other of these takes back. A line and its reversal share decision, outcome and payment. */
+export function standingAmong(rows: readonly LedgerRow[]): LedgerRow[] {
+  const taken = new Set(rows.map((row) => row.reversesId));
+  return rows.filter((row) => row.reversesId === null && !taken.has(row.id));
+}
+
+/** Lines that outcomes booked for a label. Recoveries are no labels. */
+export const isOutcomeLabel = (row: LedgerRow): boolean => row.outcomeId !== null && row.recoveredMinor === 0;
+
+/** Books the opposite of each standing line. */
 export async function reverseLines(
   tx: Tx,
-  rows: readonly LedgerRow[],
+  standing: readonly LedgerRow[],
   bookedAt: Date,
   keep: "nothing" | "review_cost",
 ): Promise<void> {
-  const standing = await withoutReversed(tx, rows);
   const reversals = standing.flatMap(({ id, detail: _, ...row }) => {
     const opposite = reversed(row);
     const line = keep === "review_cost" ? { ...opposite, reviewCostMinor: 0 } : opposite;
@@ -37,20 +34,4 @@ export async function reverseLines(
     return isNothing(line) && row.typology === null ? [] : [{ ...row, ...line, reversesId: id, bookedAt }];
   });
   if (reversals.length > 0) await tx.insert(ledger).values(reversals);
-}
-
-/** The lines among these that no later line takes back. */
-export async function withoutReversed(tx: Tx, rows: readonly LedgerRow[]): Promise<LedgerRow[]> {
-  if (rows.length === 0) return [];
-  const taken = await tx
-    .select({ id: ledger.reversesId })
-    .from(ledger)
-    .where(
-      inArray(
-        ledger.reversesId,
-        rows.map((row) => row.id),
-      ),
-    );
-  const reversedIds = new Set(taken.map((row) => row.id));
-  return rows.filter((row) => !reversedIds.has(row.id));
 }

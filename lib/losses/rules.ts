@@ -46,7 +46,7 @@ export const NOTHING_BOOKED: LedgerLine = {
 const SECONDS_PER_HOUR = 3600n;
 
 /** Held or refused money has not left; recalled money had, and comes back as a recovery. */
-export function isStopped(state: PaymentState): boolean {
+function isStopped(state: PaymentState): boolean {
   return state === "held" || state === "refused";
 }
 

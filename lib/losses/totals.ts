@@ -19,7 +19,7 @@ export type WeekSums = LedgerLine & {
 };
 
 /** A share with its 95 % interval, in parts per million. */
-export type ShareOf = { ppm: number; lowPpm: number; highPpm: number; count: number; of: number };
+type ShareOf = { ppm: number; lowPpm: number; highPpm: number; count: number; of: number };
 
 /** Figures that follow from the sums; null means "not defined", never 0. Rates in parts per million: 100 ppm = 1 bp. */
 export type WeekTotals = WeekSums & {

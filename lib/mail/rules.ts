@@ -19,7 +19,7 @@ const LONGEST_WAIT_MS = 60 * 60_000;
 const MOST_ATTEMPTS = 56;
 
 /** Wait before the next attempt: doubled after each one, up to an hour. */
-export function retryWaitMs(attempts: number): number {
+function retryWaitMs(attempts: number): number {
   return Math.min(FIRST_WAIT_MS * 2 ** (attempts - 1), LONGEST_WAIT_MS);
 }
 
