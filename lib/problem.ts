@@ -3,7 +3,7 @@ import { STATUS_CODES } from "node:http";
 import { KnownError } from "./errors";
 import { log } from "./log";
 
-/** `application/problem+json` of RFC 9457. An unknown error is logged whole and answered with its request id only. */
+/** `application/problem+json` of RFC 9457. An unknown error is logged and answered with its request id only. */
 export function problemResponse(error: unknown, requestId: string): Response {
   if (error instanceof KnownError) {
     return problem(
@@ -17,7 +17,7 @@ export function problemResponse(error: unknown, requestId: string): Response {
       error.headers,
     );
   }
-  log.error({ requestId, err: error });
+  log.error({ requestId, err: error }, "A request failed");
   return problem(500, `Something failed on our side. Quote request ${requestId}.`, requestId, {
     code: "internal",
   });

@@ -58,7 +58,10 @@ export function authOptions(): AuthOptions {
     },
     logger: {
       // A token that ran out or was forged is everyday; next-auth reports it as an error.
-      error: (code, metadata) => code !== "JWT_SESSION_ERROR" && log.error({ code, err: metadata }),
+      error: (code, metadata) => {
+        const err = metadata instanceof Error ? metadata : metadata.error;
+        if (code !== "JWT_SESSION_ERROR") log.error({ code, err }, "Signing in or out failed");
+      },
       warn: (code) => log.warn({ code }),
       debug: () => {},
     },
@@ -81,7 +84,7 @@ async function authorize(given: Record<string, unknown> | undefined, headers: Re
   }
   const result = await signIn(strangersContext(), input.data, originReference(address)).catch(
     (error: unknown) => {
-      log.error({ err: error });
+      log.error({ err: error }, "A sign-in failed");
       throw new Error("failed");
     },
   );

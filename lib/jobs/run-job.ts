@@ -4,10 +4,10 @@ import type { Database } from "@/db/client";
 import { isDuplicate } from "@/db/errors";
 import { jobRuns } from "@/db/schema/cases";
 import type { Context } from "../context";
+import { faultOf } from "../fault";
 import type { Job } from "../job";
 import { log } from "../log";
 import { newId } from "../new-id";
-import { faultOf } from "./fault";
 
 export type JobEnvironment = { db: Database; now: () => Date };
 
@@ -34,7 +34,7 @@ export async function runJob(
   try {
     await job.run(ctx, signal);
   } catch (error) {
-    log.error({ job: job.name, slot, requestId: ctx.requestId, error: faultOf(error) }, "A job failed");
+    log.error({ job: job.name, slot, requestId: ctx.requestId, err: error }, "A job failed");
     problem = `${faultOf(error).name}; the log has it under ${ctx.requestId}`;
   }
   if (slot !== null) {

@@ -1,7 +1,6 @@
 import "server-only";
 import type { Job } from "../job";
 import { log } from "../log";
-import { faultOf } from "./fault";
 import { type JobEnvironment, runJob } from "./run-job";
 
 export type Scheduler = {
@@ -31,7 +30,7 @@ export function startScheduler(environment: JobEnvironment, jobs: readonly Job[]
       await runJob(environment, job, controller.signal);
     } catch (error) {
       // The slot could not even be claimed or closed: the database is away. The next turn tries again.
-      log.error({ job: job.name, error: faultOf(error) }, "A job could not run");
+      log.error({ job: job.name, err: error }, "A job could not run");
     }
     plan(job, job.everyMs);
   }

@@ -2,18 +2,21 @@ import { spawn } from "node:child_process";
 import { randomBytes } from "node:crypto";
 import { once } from "node:events";
 import { eq, sql } from "drizzle-orm";
-import { beforeAll, describe, expect, inject, test } from "vitest";
+import pino from "pino";
+import { beforeAll, describe, expect, inject, test, vi } from "vitest";
 import { createDatabase } from "@/db/client";
 import { jobRuns } from "@/db/schema/cases";
 import { idempotencyKeys } from "@/db/schema/people";
 import { policies } from "@/db/schema/policies";
+import { faultOf } from "@/lib/fault";
 import { type Job, slotOfMinutes } from "@/lib/job";
-import { faultOf } from "@/lib/jobs/fault";
 import { forgetOldRows } from "@/lib/jobs/housekeeping";
 import { prepareInstallation } from "@/lib/jobs/prepare";
 import { JOBS } from "@/lib/jobs/registry";
 import { runJob } from "@/lib/jobs/run-job";
 import { startScheduler } from "@/lib/jobs/scheduler";
+import { log } from "@/lib/log";
+import { problemResponse } from "@/lib/problem";
 import { testWorld, WORLD_START, type World } from "../support/world";
 
 let world: World;
@@ -116,6 +119,25 @@ test("what a log may say of a fault leaves out the values of a failed query", as
     name: "RangeError",
     message: "There is no such ISO week",
   });
+});
+
+test("a request that fails by a query leaves the query's values out of the log and the answer", async () => {
+  const failure = await world.db
+    .insert(jobRuns)
+    .values({ job: "x".repeat(100), slot: "a secret value", startedAt: WORLD_START })
+    .catch((error: unknown) => error);
+  const lines: string[] = [];
+  const stream = log[pino.symbols.streamSym];
+  const write = vi.spyOn(stream, "write").mockImplementation((line: string) => lines.push(line));
+  const { level } = log;
+  log.level = "error";
+  const response = problemResponse(failure, "request-1");
+  log.level = level;
+  write.mockRestore();
+  expect(lines.join("")).toContain("request-1");
+  expect(lines.join("")).toContain('"errno":1406');
+  expect(lines.join("")).not.toContain("a secret value");
+  expect(await response.text()).not.toContain("a secret value");
 });
 
 describe("the scheduler", () => {
