@@ -14,36 +14,49 @@ import { expect, test } from "./support/test";
 /** The page that "/" leads to has a test of its own. */
 const paths = (Object.keys(PAGES) as PagePath[]).filter((path) => path !== "/");
 
-/** What stands in the place of `[id]` or `[token]`. A new page of this kind needs a line here. */
-const SAMPLES: Partial<Record<PagePath, (office: Office, page: Page) => Promise<string>>> = {
-  "/cases/[id]": async (office) => {
-    const [opened] = await office.openCases(suspiciousPayments(2));
-    return opened?.caseId as string;
-  },
-  "/trail/decisions/[id]": async (office) => {
-    const [opened] = await office.openCases(suspiciousPayments(2));
-    if (!opened) throw new Error("Cases were opened");
-    await office.decide(opened, "fraudulent", "details_theft");
-    return (await findDecision(office.db, opened.caseId))?.id as string;
-  },
-  "/intake/[id]": async (_office, page) => {
-    const file = {
-      name: "two.csv",
-      mimeType: "text/csv",
-      buffer: Buffer.from("externalId,amount\r\nA,1\r\nB,x\r\n"),
-    };
-    const headers = { "Idempotency-Key": newId() };
-    const answer = await page.request.post("/api/imports", { multipart: { file }, headers });
-    return ((await answer.json()) as { id: string }).id;
-  },
-  "/unsubscribe/[token]": async () => newId(),
+type Sample = {
+  /** Where the first role that may see such a page does not see every one. */
+  role?: Role;
+  /** @returns what stands in the place of `[id]` or `[token]` */
+  make: (office: Office, page: Page) => Promise<string>;
 };
 
-/** The first role that may see the page; null where anybody may. */
+/** A new page with such a place in its path needs a line here. */
+const SAMPLES: Partial<Record<PagePath, Sample>> = {
+  "/cases/[id]": {
+    make: async (office) => {
+      const [opened] = await office.openCases(suspiciousPayments(2));
+      return opened?.caseId as string;
+    },
+  },
+  "/trail/decisions/[id]": {
+    role: "auditor",
+    make: async (office) => {
+      const [opened] = await office.openCases(suspiciousPayments(2));
+      if (!opened) throw new Error("Cases were opened");
+      await office.decide(opened, "fraudulent", "details_theft");
+      return (await findDecision(office.db, opened.caseId))?.id as string;
+    },
+  },
+  "/intake/[id]": {
+    make: async (_office, page) => {
+      const lines =
+        "externalId,occurredAt,amount,currency,channel,accountId,counterpartyId\nA,yesterday,1,EUR,cheque,B,C";
+      const file = { name: "one.csv", mimeType: "text/csv", buffer: Buffer.from(lines) };
+      const headers = { "Idempotency-Key": newId() };
+      const answer = await page.request.post("/api/imports", { multipart: { file }, headers });
+      expect(answer.status(), await answer.text()).toBe(202);
+      return ((await answer.json()) as { id: string }).id;
+    },
+  },
+  "/unsubscribe/[token]": { make: async () => newId() },
+};
+
+/** A role that may see the page; null where anybody may. */
 function roleFor(path: PagePath): Role | null {
   const { may } = PAGES[path];
   if (may === "anyone") return null;
-  const role = ROLES.find((each) => rolesMay([each], may));
+  const role = SAMPLES[path]?.role ?? ROLES.find((each) => rolesMay([each], may));
   if (!role) throw new Error(`No role may see ${path}`);
   return role;
 }
@@ -52,7 +65,7 @@ async function addressOf(path: PagePath, office: Office, page: Page): Promise<st
   if (!path.includes("[")) return path;
   const sample = SAMPLES[path];
   if (!sample) throw new Error(`${path} needs a sample in this file`);
-  return path.replace(/\[\w+\]/, await sample(office, page));
+  return path.replace(/\[\w+\]/, await sample.make(office, page));
 }
 
 async function settled(page: Page): Promise<void> {

@@ -38,7 +38,7 @@ test("the week's losses are sent at once to somebody new on the list, who then s
     expect(mail.subject).toContain(`week ${Number(week.slice(-2))}`);
     const digits = (text: string) => text.replace(/[^\d.]/g, "");
     expect(digits(amount)).toMatch(/^\d+\.\d\d$/);
-    expect(digits(/Attempted fraud: (.*) EUR/.exec(mail.text)?.[1] ?? "")).toBe(digits(amount));
+    expect(digits(/Attempted fraud: (.*)\n/.exec(mail.text)?.[1] ?? "")).toBe(digits(amount));
     await theirs.setContent(mail.html);
     const figure = theirs.locator("p", { hasText: "Attempted fraud" });
     expect(digits(await textOf(figure))).toBe(digits(amount));
