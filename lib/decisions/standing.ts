@@ -10,9 +10,16 @@ export type StandingDecision = {
   transaction: typeof transactions.$inferSelect;
 };
 
-/** Locks the cases of an act in order of their ids and reads what stands on them. */
-export async function lockAct(tx: Tx, actId: string): Promise<StandingDecision[]> {
-  return lockWhere(tx, eq(decisions.actId, actId));
+/**
+ * Locks the cases of an act in order of their ids and reads what stands on them. An act is one person's at one moment,
+ * and that is indexed: a search through all decisions would wait for everybody who is deciding.
+ */
+export async function lockAct(tx: Tx, act: LastDecision): Promise<StandingDecision[]> {
+  const { personId, decidedAt, actId } = act;
+  return lockWhere(
+    tx,
+    and(eq(decisions.personId, personId), eq(decisions.decidedAt, decidedAt), eq(decisions.actId, actId)),
+  );
 }
 
 /** Locks one decided case and reads what stands on it. */
@@ -32,10 +39,12 @@ function lockWhere(tx: Tx, where: ReturnType<typeof and>): Promise<StandingDecis
     .for("update");
 }
 
+type LastDecision = Pick<typeof decisions.$inferSelect, "personId" | "decidedAt" | "actId">;
+
 /** The newest decision of a person that has not been taken back. */
-export async function findLastDecision(tx: Tx, personId: string) {
+export async function findLastDecision(tx: Tx, personId: string): Promise<LastDecision | null> {
   const [row] = await tx
-    .select({ caseId: decisions.caseId, actId: decisions.actId })
+    .select({ personId: decisions.personId, decidedAt: decisions.decidedAt, actId: decisions.actId })
     .from(decisions)
     .where(and(eq(decisions.personId, personId), isNull(decisions.undoneAt)))
     .orderBy(desc(decisions.decidedAt), desc(decisions.id))

@@ -83,7 +83,7 @@ async function lockOwnLastAct(
 ): Promise<StandingDecision[]> {
   const last = await findLastDecision(tx, person.personId);
   if (!last) throw ruleBroken("You have no decision to take back");
-  const act = await lockAct(tx, last.actId);
+  const act = await lockAct(tx, last);
   if (!act.some(({ caseRow }) => caseRow.id === caseId)) {
     throw ruleBroken("Only your own last decision can be taken back; ask a supervisor for a correction");
   }
