@@ -51,7 +51,8 @@ export async function settleCase(
   const label = labelOf(finding.verdict);
   const learns = label !== null && inForce === undefined;
   const decisionId = newId();
-  const until = undoUntil(now, policy.terms.undoMinutes, transaction.holdExpiresAt);
+  const holdExpiresAt = transaction.paymentState === "held" ? transaction.holdExpiresAt : null;
+  const until = undoUntil(now, policy.terms.undoMinutes, holdExpiresAt);
   const seconds = handlingSeconds(caseRow.claimedAt, now);
   await tx.insert(decisions).values({
     id: decisionId,

@@ -197,6 +197,18 @@ test("the grace period ends a minute before a hold does", async () => {
   expect(answer.undoUntil).toBe(new Date(WORLD_START.getTime() + 86_400_000 - 60_000).toISOString());
 });
 
+test("a hold that has ended takes nothing off the grace period", async () => {
+  const [reviewer] = reviewers as [PersonActor];
+  const [waiting] = (await world.waitingCases(1, { seed: 401, held: true })) as [WaitingCase];
+  await world.db
+    .update(transactions)
+    .set({ paymentState: "released" })
+    .where(eq(transactions.id, waiting.transactionId));
+  const after = new Date(WORLD_START.getTime() + 86_400_000 + 60_000);
+  const answer = await decideCase(world.ctx(reviewer, after), verdict(waiting));
+  expect(answer.undoUntil).toBe(new Date(after.getTime() + DEFAULT_TERMS.undoMinutes * 60_000).toISOString());
+});
+
 test("where reviewers take the next case only, one they picked themselves is refused", async () => {
   const [reviewer] = reviewers as [PersonActor];
   const [waiting] = (await world.waitingCases(1, { seed: 500 })) as [WaitingCase];
