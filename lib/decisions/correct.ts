@@ -1,5 +1,5 @@
 import "server-only";
-import { eq, sql } from "drizzle-orm";
+import { and, eq, isNull, sql } from "drizzle-orm";
 import type { Tx } from "@/db/client";
 import { bytesToVector, vectorToBytes } from "@/db/columns";
 import { cases, decisions } from "@/db/schema/cases";
@@ -34,7 +34,8 @@ export async function correctDecision(ctx: Context, input: CorrectionInput): Pro
       const now = ctx.now();
       const standing = await lockStanding(tx, input.id);
       if (!standing) throw conflict("No decision stands on this case");
-      refuseCorrection(standing, person, input);
+      await refuseOwn(tx, standing, person);
+      refuseSame(standing, input);
       const policy = await policyInForce(tx, now);
       const held = await lockScorerInUse(tx);
       const versionBefore = held.version;
@@ -106,9 +107,27 @@ async function foldAheadOf(ctx: Context, input: CorrectionInput): Promise<FoldAh
   return foldAhead(ctx.db, [{ place: inForce.place, label: labelOf(input.verdict) ?? 0 }]);
 }
 
-function refuseCorrection({ decision }: StandingDecision, person: PersonActor, input: CorrectionInput): void {
-  if (decision.personId === person.personId)
+/** Neither one's own finding that stands, nor a case on which one's own first verdict has been corrected since. */
+async function refuseOwn(
+  tx: Tx,
+  { decision, caseRow }: StandingDecision,
+  person: PersonActor,
+): Promise<void> {
+  const own = await tx
+    .select({ id: decisions.id, kind: decisions.kind })
+    .from(decisions)
+    .where(
+      and(
+        eq(decisions.caseId, caseRow.id),
+        eq(decisions.personId, person.personId),
+        isNull(decisions.undoneAt),
+      ),
+    );
+  if (own.some(({ id, kind }) => kind === "decision" || id === decision.id))
     throw ruleBroken("Nobody corrects a case they decided themselves");
+}
+
+function refuseSame({ decision }: StandingDecision, input: CorrectionInput): void {
   if (decision.verdict === input.verdict && decision.typology === input.typology) {
     throw ruleBroken("The verdict is the one that stands already", "verdict");
   }

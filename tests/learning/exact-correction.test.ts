@@ -118,6 +118,21 @@ describe("a correction", () => {
         reason: "Second thoughts",
       }),
     ).rejects.toMatchObject({ code: "rule_broken" });
+    // Nor may they put it back once somebody else has corrected it.
+    await correctDecision(world.ctx(supervisor, later()), {
+      id: waiting.caseId,
+      verdict: "fraudulent",
+      typology: "other",
+      reason: "The customer called",
+    });
+    await expect(
+      correctDecision(world.ctx(both, later()), {
+        id: waiting.caseId,
+        verdict: "legitimate",
+        typology: null,
+        reason: "It was right",
+      }),
+    ).rejects.toMatchObject({ code: "rule_broken" });
   });
 });
 
