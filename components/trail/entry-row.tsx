@@ -50,7 +50,7 @@ function Subject({ entry }: { entry: TrailEntryView }) {
   const ofSubject = `/trail?${new URLSearchParams({ subject: `${subject.kind}:${subject.id}` })}`;
   const label = `${subject.kind.replaceAll("_", " ")}${subject.name ? ` ${subject.name}` : ""}`;
   return (
-    <span className="flex flex-wrap gap-x-2 gap-y-0.5">
+    <span className="flex flex-wrap gap-x-2 gap-y-1">
       {entry.case && (
         <Link href={`/cases/${entry.case.id}`} className="underline">
           case {entry.case.number}
