@@ -43,7 +43,8 @@ const SAMPLES: Partial<Record<PagePath, Sample>> = {
       const lines =
         "externalId,occurredAt,amount,currency,channel,accountId,counterpartyId\nA,yesterday,1,EUR,cheque,B,C";
       const file = { name: "one.csv", mimeType: "text/csv", buffer: Buffer.from(lines) };
-      const headers = { "Idempotency-Key": newId() };
+      await page.goto("/intake");
+      const headers = { "Idempotency-Key": newId(), Origin: new URL(page.url()).origin };
       const answer = await page.request.post("/api/imports", { multipart: { file }, headers });
       expect(answer.status(), await answer.text()).toBe(202);
       return ((await answer.json()) as { id: string }).id;
