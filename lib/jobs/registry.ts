@@ -4,6 +4,7 @@ import { importJobs } from "../imports/jobs";
 import type { Job } from "../job";
 import { lossJobs } from "../losses/jobs";
 import { mailJobs } from "../mail/jobs";
+import { outcomeJobs } from "../outcomes/jobs";
 import { policyJobs } from "../policy/jobs";
 import { housekeepingJobs } from "./housekeeping";
 
@@ -12,6 +13,7 @@ export const JOBS: readonly Job[] = [
   ...caseJobs,
   ...policyJobs,
   ...importJobs,
+  ...outcomeJobs,
   ...mailJobs,
   ...lossJobs,
   ...housekeepingJobs,

@@ -1,5 +1,5 @@
 import "server-only";
-import { and, eq, inArray, isNull } from "drizzle-orm";
+import { and, desc, eq, inArray, isNull } from "drizzle-orm";
 import type { Tx } from "@/db/client";
 import { outcomes } from "@/db/schema/outcomes";
 import { transactions } from "@/db/schema/transactions";
@@ -63,9 +63,9 @@ async function findKept(tx: Tx, transactionIds: readonly string[]): Promise<Outc
       and(eq(outcomes.externalId, transactions.externalId), isNull(outcomes.transactionId)),
     )
     .where(inArray(transactions.id, [...transactionIds]))
-    .orderBy(outcomes.id)
+    .orderBy(outcomes.id, desc(eq(transactions.source, outcomes.source)), transactions.seq)
     .for("update");
-  // One identifier in two sources of one batch: the first to be there has it.
+  // One identifier in two sources: the outcome's own source has it, else the first to be there.
   const byOutcome = new Map(
     rows
       .toReversed()

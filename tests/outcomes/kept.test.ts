@@ -6,6 +6,7 @@ import { trail } from "@/db/schema/trail";
 import { transactions } from "@/db/schema/transactions";
 import type { KeyActor } from "@/lib/context";
 import { newId } from "@/lib/new-id";
+import { applyMissedOutcomes } from "@/lib/outcomes/apply-missed";
 import { receiveOutcomes } from "@/lib/outcomes/receive";
 import { receiveTransactions } from "@/lib/transactions/receive";
 import { testWorld, WORLD_START, type World } from "../support/world";
@@ -85,4 +86,25 @@ test("one that cannot be applied stays, with the reason, and costs the payment n
     recoversBaseMinor: null,
     problem: "amount brings back more than was paid, with what has come back before",
   });
+});
+
+test("one that missed its payment by a moment is applied by the next look, once", async () => {
+  await send(report("racing"));
+  await arrive("of-the-same-moment");
+  // As if both had been written at once, each before the other could be seen.
+  await world.db
+    .update(transactions)
+    .set({ externalId: "racing" })
+    .where(eq(transactions.externalId, "of-the-same-moment"));
+  expect((await paymentOf("racing")).label).toBeNull();
+  const job = { kind: "system" as const, job: "outcomes.apply-missed" };
+  const look = () => applyMissedOutcomes(world.ctx(job), new AbortController().signal);
+  await Promise.all([look(), look()]);
+  const payment = await paymentOf("racing");
+  expect(payment.label).toBe(1);
+  const [stored] = await world.db.select().from(outcomes).where(eq(outcomes.externalId, "racing"));
+  expect(stored).toMatchObject({ transactionId: payment.id, problem: null });
+  expect(stored?.appliedAt).not.toBeNull();
+  const lines = await world.db.select().from(ledger).where(eq(ledger.transactionId, payment.id));
+  expect(lines.reduce((sum, line) => sum + line.attemptedMinor, 0)).toBe(8_000);
 });
