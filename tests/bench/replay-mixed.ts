@@ -14,7 +14,6 @@ import { environment } from "@/lib/env";
 import { ensureScorerInUse } from "@/lib/learning/install";
 import { replayLog } from "@/lib/learning/replay";
 import { newId } from "@/lib/new-id";
-import { ensureFirstPolicy } from "@/lib/policy/install";
 import { verifyTrail } from "@/lib/trail/verify";
 import { receiveTransactions } from "@/lib/transactions/receive";
 import type { Row } from "../support/bench";
@@ -55,7 +54,6 @@ async function work(db: Database): Promise<string> {
     idempotency: null,
   });
   const system = context({ kind: "system", job: "bench" });
-  await ensureFirstPolicy(system);
   await setTerms(db, { reviewThreshold: { kind: "fixed", probability: 0 }, holdThreshold: 1 });
   await ensureScorerInUse(system);
   await fill(system);
