@@ -127,8 +127,8 @@ test("a request that fails by a query leaves the query's values out of the log a
     .values({ job: "x".repeat(100), slot: "a secret value", startedAt: WORLD_START })
     .catch((error: unknown) => error);
   const lines: string[] = [];
-  const stream = log[pino.symbols.streamSym];
-  const write = vi.spyOn(stream, "write").mockImplementation((line: string) => lines.push(line));
+  const stream: { write: (line: string) => void } = Reflect.get(log, pino.symbols.streamSym);
+  const write = vi.spyOn(stream, "write").mockImplementation((line) => void lines.push(line));
   const { level } = log;
   log.level = "error";
   const response = problemResponse(failure, "request-1");
