@@ -11,7 +11,6 @@ import { correctDecision } from "@/lib/decisions/correct";
 import { decideCase } from "@/lib/decisions/decide";
 import { undoDecision } from "@/lib/decisions/undo";
 import { environment } from "@/lib/env";
-import { ensureScorerInUse } from "@/lib/learning/install";
 import { replayLog } from "@/lib/learning/replay";
 import { newId } from "@/lib/new-id";
 import { verifyTrail } from "@/lib/trail/verify";
@@ -55,7 +54,6 @@ async function work(db: Database): Promise<string> {
   });
   const system = context({ kind: "system", job: "bench" });
   await setTerms(db, { reviewThreshold: { kind: "fixed", probability: 0 }, holdThreshold: 1 });
-  await ensureScorerInUse(system);
   await fill(system);
   const [reviewer, supervisor] = await Promise.all([enter(db, "reviewer"), enter(db, "supervisor")]);
   const chance = new Chance(3);
