@@ -13,6 +13,8 @@ import { markLabel } from "../learning/mark-label";
 import { labelsInForce } from "../learning/place";
 import { type Replacement, replaceLabels } from "../learning/replace";
 import { reverseBooking } from "../losses/book";
+import { settleRecoveries } from "../losses/recoveries";
+import { applyOutcomesAgain } from "../outcomes/apply-again";
 import { appendTrail } from "../trail/append";
 import { completeAnswer, writeOnce } from "../write-once";
 import type { RelearnView } from "./schema";
@@ -43,10 +45,13 @@ export async function undoDecision(ctx: Context, input: { id: string }): Promise
         if (label?.decisionId !== standing.decision.id) continue;
         replacements.push(undoOf(standing, person, label.place));
         await markLabel(tx, standing.transaction, null, now);
+        await settleRecoveries(tx, recoveriesOf(standing), false, now);
         await tx.insert(signalRefreshes).values({ transactionId: standing.transaction.id, createdAt: now });
       }
       await replaceLabels(tx, held, now, replacements);
       await saveScorer(tx, held, now);
+      for (const { transactionId } of replacements) await applyOutcomesAgain(tx, now, transactionId);
+      const { version } = await lockScorerInUse(tx);
       await appendTrail(
         ctx,
         tx,
@@ -55,11 +60,11 @@ export async function undoDecision(ctx: Context, input: { id: string }): Promise
           subjectKind: "decision",
           subjectId: decision.id,
           caseId: caseRow.id,
-          facts: { actId: decision.actId, verdict: decision.verdict, scorerVersion: held.version },
+          facts: { actId: decision.actId, verdict: decision.verdict, scorerVersion: version },
         })),
       );
       const main = act.find(({ caseRow }) => caseRow.id === input.id) as StandingDecision;
-      return { scorerVersion: held.version, moved: null, revision: main.caseRow.revision + 1 };
+      return { scorerVersion: version, moved: null, revision: main.caseRow.revision + 1 };
     },
     { complete: false },
   );
@@ -127,6 +132,11 @@ async function takeBack(
     })
     .where(eq(cases.id, caseRow.id));
 }
+
+const recoveriesOf = ({ transaction }: StandingDecision) => ({
+  transactionId: transaction.id,
+  occurredAt: transaction.occurredAt,
+});
 
 function undoOf(
   { decision, caseRow, transaction }: StandingDecision,

@@ -6,7 +6,9 @@ import { trail } from "@/db/schema/trail";
 import { transactions } from "@/db/schema/transactions";
 import type { KeyActor, PersonActor } from "@/lib/context";
 import { correctDecision } from "@/lib/decisions/correct";
+import { undoDecision } from "@/lib/decisions/undo";
 import { readScorerInUse } from "@/lib/learning/held-scorer";
+import { replayLog } from "@/lib/learning/replay";
 import { newId } from "@/lib/new-id";
 import { receiveOutcomes } from "@/lib/outcomes/receive";
 import { testWorld, type WaitingCase, type World } from "../support/world";
@@ -111,6 +113,25 @@ describe("a fraud outcome", () => {
     await one(payment);
     expect((await readScorerInUse(world.db)).version).toBe(version);
     expect(await moneyOf(payment)).toMatchObject({ attempted: AMOUNT, prevented: AMOUNT });
+  });
+
+  test("stands when the verdict that it confirmed is taken back, and the money that came back with it", async () => {
+    const payment = await waiting();
+    await one(payment, { kind: "recovery", amount: "29.00", currency: "EUR" });
+    await decide(payment, "fraudulent");
+    await one(payment);
+    await undoDecision(world.ctx(reviewer), { id: payment.caseId });
+    expect(await labelOf(payment)).toBe(1);
+    expect(await moneyOf(payment)).toMatchObject({ attempted: AMOUNT, recovered: 29_00 });
+    expect((await replayLog(world.db)).differingStates).toEqual([]);
+
+    const other = await waiting();
+    await one(other, { kind: "recovery", amount: "29.00", currency: "EUR" });
+    await decide(other, "fraudulent");
+    expect(await moneyOf(other)).toMatchObject({ attempted: AMOUNT, recovered: 29_00 });
+    await undoDecision(world.ctx(reviewer), { id: other.caseId });
+    expect(await labelOf(other)).toBeNull();
+    expect(await moneyOf(other)).toMatchObject({ attempted: 0, recovered: 0 });
   });
 
   test("stands when the case is decided afterwards, whatever the verdict", async () => {
