@@ -10,7 +10,7 @@ import type { Label } from "../scorer";
 import { type HeldScorer, lockScorerInUse, saveScorer } from "./held-scorer";
 import { learnLabel } from "./learn";
 import { markLabel } from "./mark-label";
-import { type LabelInForce, labelsInForce } from "./place";
+import { type LabelInForce, labelsInForce, settledWithoutLabel } from "./place";
 import { type Replacement, replaceLabels } from "./replace";
 
 export type OutcomeLabel = { transactionId: string; outcomeId: string; label: Label };
@@ -34,14 +34,16 @@ export async function labelFromOutcomes(
   if (ids.length === 0) return [];
   const held = await lockScorerInUse(tx);
   const inForce = await labelsInForce(tx, ids);
+  const withoutLabel = await settledWithoutLabel(tx, ids, STRONGER_THAN_OUTCOME);
   const rows = await tx.select().from(transactions).where(inArray(transactions.id, ids));
   const transactionOf = new Map(rows.map((row) => [row.id, row]));
   const replacements: Replacement[] = [];
   const effects: OutcomeEffect[] = [];
   for (const item of items) {
     const before = inForce.get(item.transactionId) ?? null;
-    const changed =
-      before === null || (before.label !== item.label && !STRONGER_THAN_OUTCOME.includes(before.kind));
+    const changed = before
+      ? before.label !== item.label && !STRONGER_THAN_OUTCOME.includes(before.kind)
+      : !withoutLabel.has(item.transactionId);
     effects.push({ ...item, changed, before });
     if (!changed) continue;
     const place = await bookOne(tx, held, now, item, before, replacements);

@@ -34,3 +34,23 @@ export async function labelsInForce(
   }
   return held;
 }
+
+/** Those of the transactions whose label was last taken away by a settled finding, such as a customer's own misuse. */
+export async function settledWithoutLabel(
+  db: Executor,
+  transactionIds: readonly string[],
+  settled: readonly LabelKind[],
+): Promise<Set<string>> {
+  if (transactionIds.length === 0) return new Set();
+  const rows = await db
+    .select({ transactionId: labelLog.transactionId, label: labelLog.label, kind: labelLog.kind })
+    .from(labelLog)
+    .where(inArray(labelLog.transactionId, [...transactionIds]))
+    .orderBy(asc(labelLog.seq));
+  const last = new Map(rows.map((row) => [row.transactionId, row]));
+  return new Set(
+    [...last.values()].flatMap(({ transactionId, label, kind }) =>
+      label === 0 && settled.includes(kind) ? transactionId : [],
+    ),
+  );
+}

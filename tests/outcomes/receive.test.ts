@@ -104,6 +104,10 @@ describe("a fraud outcome", () => {
     });
     expect(await labelOf(other)).toBeNull();
     expect(await moneyOf(other)).toMatchObject({ attempted: 0, missed: 0 });
+    // Who made the payment and disputes it calls it fraud: that has been settled.
+    await one(other, { reference: "second" });
+    expect(await labelOf(other)).toBeNull();
+    expect(await moneyOf(other)).toMatchObject({ attempted: 0, missed: 0 });
   });
 
   test("confirms a verdict without counting it twice", async () => {
