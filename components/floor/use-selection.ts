@@ -46,7 +46,7 @@ export function useSelection(shown: readonly string[]) {
 export type Selection = ReturnType<typeof useSelection>;
 
 /** The ids from one to the other, in the order of the list, both included. */
-export function between(shown: readonly string[], one: string, other: string): string[] {
+function between(shown: readonly string[], one: string, other: string): string[] {
   const [from, to] = [shown.indexOf(one), shown.indexOf(other)].sort((a, b) => a - b) as [number, number];
   return from < 0 ? [other] : shown.slice(from, to + 1);
 }

@@ -1,7 +1,7 @@
 import Link from "next/link";
 import { RowTh, Table, Td, Th } from "../ui/table";
 
-export type WhereRow = { code: string; name: string; total: number; overdue: number; expiringHolds: number };
+type WhereRow = { code: string; name: string; total: number; overdue: number; expiringHolds: number };
 
 type WhereTableProps = { by: "zone" | "channel"; title: string; rows: readonly WhereRow[] };
 

@@ -8,7 +8,7 @@ import { EmptyState } from "../ui/empty-state";
 import { Notice } from "../ui/notice";
 import { EntryTable } from "./entry-table";
 
-export type SentFilters = Omit<Parameters<typeof api<"GET /api/trail">>[1], "cursor" | "limit">;
+type SentFilters = Omit<Parameters<typeof api<"GET /api/trail">>[1], "cursor" | "limit">;
 
 type EntryListProps = { first: TrailView; filters: SentFilters };
 

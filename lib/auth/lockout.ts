@@ -1,6 +1,6 @@
 /** PCI DSS 8.3.4: locked after at most ten failures, for at least thirty minutes. */
-export const FAILURES_TO_LOCK = 10;
-export const LOCK_MINUTES = 30;
+const FAILURES_TO_LOCK = 10;
+const LOCK_MINUTES = 30;
 
 export type Attempts = { failedSignIns: number; lockedUntil: Date | null };
 

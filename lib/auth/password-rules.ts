@@ -2,7 +2,7 @@ import { ZxcvbnFactory } from "@zxcvbn-ts/core";
 import { adjacencyGraphs, dictionary } from "@zxcvbn-ts/language-common";
 
 /** NIST SP 800-63B-4 for a password that is the only factor; no rules about kinds of characters. */
-export const PASSWORD_MIN = 15;
+const PASSWORD_MIN = 15;
 export const PASSWORD_MAX = 256;
 
 /** Guesses, as a power of ten, below which a password counts as made of common ones. */

@@ -12,10 +12,5 @@ export const SignInInput = z.object({
 export type SignInInput = z.infer<typeof SignInInput>;
 
 /** What the form is told. `refused` gives no reason: a stranger must not learn which accounts exist. */
-export const SIGN_IN_REFUSALS = [
-  "refused",
-  "new_password_needed",
-  "new_password_refused",
-  "too_many",
-] as const;
+const SIGN_IN_REFUSALS = ["refused", "new_password_needed", "new_password_refused", "too_many"] as const;
 export type SignInRefusal = (typeof SIGN_IN_REFUSALS)[number];

@@ -28,11 +28,7 @@ const claimer = alias(people, "claimer");
 /** All that the case page shows. @throws KnownError not_found, forbidden */
 export async function caseView(ctx: Context, input: { id: string }): Promise<CaseView> {
   demand(ctx, "cases.read");
-  return readCase(ctx, input.id);
-}
-
-/** As `caseView`, for use cases that have asked for their own capability. */
-export async function readCase(ctx: Context, caseId: string): Promise<CaseView> {
+  const { id: caseId } = input;
   const { db } = ctx;
   const now = ctx.now();
   const found = await readRowOrThrow(db, caseId);

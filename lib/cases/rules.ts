@@ -44,7 +44,7 @@ function closed(row: CaseStanding): KnownError | null {
 }
 
 /** Whether a case is this person's to take once nobody holds it. */
-export function isFor(row: Pick<CaseStanding, "assignedTo" | "escalatedAt">, asker: Asker): boolean {
+function isFor(row: Pick<CaseStanding, "assignedTo" | "escalatedAt">, asker: Asker): boolean {
   if (row.escalatedAt && !isSupervisor(asker)) return false;
   return row.assignedTo === null || row.assignedTo === asker.personId;
 }

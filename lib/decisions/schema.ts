@@ -36,7 +36,7 @@ export const DecideInput = z
   .refine(typologyFits, typologyMessage);
 export type DecideInput = z.infer<typeof DecideInput>;
 
-export const Moved = z.strictObject({
+const Moved = z.strictObject({
   up: z.int(),
   down: z.int(),
   aboveHoldLine: z.int(),

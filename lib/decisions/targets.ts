@@ -15,7 +15,7 @@ import type { DecideInput } from "./schema";
 
 const TOGETHER_WITHIN_MS = 24 * 60 * 60 * 1000;
 
-export type Finding = { verdict: Verdict; typology: Typology | null };
+type Finding = { verdict: Verdict; typology: Typology | null };
 
 /** A locked case with its payment, its current vector and the finding it is to get. */
 export type Target = {

@@ -7,7 +7,7 @@ import type { CaseChange } from "../cases/rules";
 import { conflict, type FieldError, KnownError, notFound } from "../errors";
 
 /** Locks the cases in the order of their ids, as every other writer of several cases does. */
-export function lockCases(tx: Tx, caseIds: readonly string[]): Promise<LockedCase[]> {
+function lockCases(tx: Tx, caseIds: readonly string[]): Promise<LockedCase[]> {
   return tx
     .select()
     .from(cases)

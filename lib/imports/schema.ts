@@ -42,13 +42,12 @@ export const ImportView = z.strictObject({
 });
 export type ImportView = z.infer<typeof ImportView>;
 
-export const ImportError = z.strictObject({
+const ImportError = z.strictObject({
   row: z.int(),
   externalId: z.string().nullable(),
   path: z.string(),
   message: z.string(),
 });
-export type ImportError = z.infer<typeof ImportError>;
 
 export const ImportDetail = ImportView.extend({
   /** The first of them; the download has all. */

@@ -7,7 +7,7 @@ import type { Label, Step } from "../scorer";
 import type { HeldScorer } from "./held-scorer";
 
 /** A snapshot after every so many labels bounds what an undo has to fold again. */
-export const SNAPSHOT_EVERY = 200;
+const SNAPSHOT_EVERY = 200;
 
 export type LabelSource = {
   kind: LabelKind;

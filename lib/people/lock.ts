@@ -6,7 +6,7 @@ import type { Role } from "../auth/codes";
 import { notFound, ruleBroken } from "../errors";
 import { losesLastAdministrator } from "./rules";
 
-export type LockedPerson = typeof people.$inferSelect & { roles: Role[] };
+type LockedPerson = typeof people.$inferSelect & { roles: Role[] };
 export type Locked = { person: LockedPerson; activeAdministratorIds: string[] };
 
 /**

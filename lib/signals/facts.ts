@@ -17,7 +17,7 @@ export const ENTITY_KINDS = ["account", "card", "device", "counterparty"] as con
 export type EntityKind = (typeof ENTITY_KINDS)[number];
 
 /** Amounts up to this many minor units of the base currency count as very small: the size a stolen card is tried with. */
-export const VERY_SMALL_MINOR = 500;
+const VERY_SMALL_MINOR = 500;
 /** An hour counts as usual where it lies within so many hours of a past payment's hour, around the clock. */
 const NEAR_HOURS = 2;
 /** Fewer past payments than this say nothing about an account's hours. */
@@ -48,7 +48,7 @@ export type PaymentFields = {
 /** Past payments and labels of the payment's entities; null where the payment has no such entity. */
 export type PaymentHistory = Record<EntityKind, { activity: Activity; labels: LabelledPast } | null>;
 
-export type EntityFacts = {
+type EntityFacts = {
   /** By window, in the order of WINDOWS. */
   counts: number[];
   /** Sum of amounts by window, in minor units of the base currency. */

@@ -82,7 +82,7 @@ export class KnownHistory {
   }
 }
 
-export function entityKey(payment: PaymentTrace, kind: EntityKind): string | null {
+function entityKey(payment: PaymentTrace, kind: EntityKind): string | null {
   switch (kind) {
     case "account":
       return payment.accountId;

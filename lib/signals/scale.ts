@@ -9,7 +9,7 @@ export type Scale = {
   isWhole?: true;
 };
 
-export function clip(x: number, low: number, high: number): number {
+function clip(x: number, low: number, high: number): number {
   return Math.max(low, Math.min(high, x));
 }
 

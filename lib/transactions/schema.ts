@@ -32,14 +32,7 @@ const AttributeValue = z.union([text(200), z.number(), z.boolean()], {
 });
 
 /** Fields that identify something; a source's may be exempted from the search for card numbers. */
-export const IDENTIFIER_FIELDS = [
-  "externalId",
-  "accountId",
-  "counterpartyId",
-  "cardRef",
-  "deviceId",
-] as const;
-export type IdentifierField = (typeof IDENTIFIER_FIELDS)[number];
+const IDENTIFIER_FIELDS = ["externalId", "accountId", "counterpartyId", "cardRef", "deviceId"] as const;
 
 /** One payment as a sender describes it. */
 export const TransactionItem = z.strictObject({
