@@ -6,7 +6,7 @@ import { demandPerson } from "../auth/demand";
 import type { Context, PersonActor } from "../context";
 import { policyInForce } from "../policy/read";
 import { appendTrail } from "../trail/append";
-import { completeAnswer, writeOnce } from "../write-once";
+import { completeAnswer, ReplayedAnswer, writeOnce } from "../write-once";
 import { expiringCandidates, overdueCandidates, rankedCandidates, sampleCandidates } from "./candidates";
 import { changeCase, type LockedCase, lockRoomForClaim } from "./locked-case";
 import { casesChanged } from "./notify";
@@ -44,6 +44,10 @@ export async function takeNextCase(ctx: Context, input: { notThese: string[] }):
       if (caseId !== null) casesChanged([caseId]);
       return view;
     } catch (error) {
+      // A server that stopped right after the hand-out left the case's id where the answer was to stand.
+      if (error instanceof ReplayedAnswer && typeof error.answer === "string") {
+        return caseView(ctx, { id: error.answer });
+      }
       if (!(error instanceof AllTaken) || attempt >= ATTEMPTS) throw error;
     }
   }
