@@ -21,7 +21,7 @@ export type PersonalSummary = RenderedMail & { headers: Record<string, string>; 
 
 /**
  * The summary for one recipient, with a secret address of its own by which it can be unsubscribed from in one click
- * (RFC 8058). Only the secret's hash is kept beside the message.
+ * (RFC 8058). It is found again by its hash; the message that is kept holds it, and is never shown with it.
  */
 export async function composeSummary(view: WeekView, appUrl: string): Promise<PersonalSummary> {
   const token = randomBytes(32).toString("base64url");
