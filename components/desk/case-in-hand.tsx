@@ -91,7 +91,7 @@ export function CaseInHand(props: CaseInHandProps) {
         )}
       </section>
       {hand ? (
-        <div ref={commands.facts} className="min-h-0 overflow-y-auto px-4 py-3 sm:px-6">
+        <div ref={commands.facts} className="relative min-h-0 overflow-y-auto px-4 py-3 sm:px-6">
           <CaseHead view={hand} headingRef={focus.heading} />
           <div className="mt-3 grid gap-x-8 gap-y-5 2xl:grid-cols-[minmax(0,3fr)_minmax(0,2fr)]">
             <div className="flex min-w-0 flex-col gap-5">

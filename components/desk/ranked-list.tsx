@@ -115,7 +115,7 @@ function Grid({ list, ready, thresholds, onPick, onLeave }: RankedListProps) {
       }}
       onPointerEnter={() => note({ pointer: true })}
       onPointerLeave={() => note({ pointer: false })}
-      className="relative min-h-64 flex-1 overflow-y-auto overscroll-contain border-rule border-t"
+      className="relative min-h-64 flex-1 overflow-y-auto overscroll-contain border-rule border-t bench:min-h-0"
     >
       <div
         role="row"

@@ -11,7 +11,7 @@ export function Refusals({ sent, onDismiss }: RefusalsProps) {
   const refused = sent.filter((one) => one.state === "refused");
   if (refused.length === 0) return null;
   return (
-    <div className="max-h-[40vh] overflow-y-auto">
+    <div className="max-h-[40vh] overflow-y-auto bench:max-h-24">
       {refused.map(({ sentId, case: { caseId, number }, act, problem }) => (
         <Notice key={sentId} kind="error" className="border-rule border-t">
           <div className="flex flex-wrap items-baseline gap-x-4 gap-y-1 text-small">
