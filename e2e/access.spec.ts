@@ -32,7 +32,7 @@ const SAMPLES: Partial<Record<PagePath, Sample>> = {
   "/trail/decisions/[id]": {
     role: "auditor",
     make: async (office) => {
-      const [opened] = await office.openCases(suspiciousPayments(2));
+      const [opened] = await office.openCases(suspiciousPayments(2), await office.person("supervisor"));
       if (!opened) throw new Error("Cases were opened");
       await office.decide(opened, "fraudulent", "details_theft");
       return (await findDecision(office.db, opened.caseId))?.id as string;
@@ -92,7 +92,7 @@ test.describe("what opens over a page can be used by everybody, too", () => {
   const dialogs = { "?": "Shortcuts", q: "Escalate case", a: "Set case" };
   test("the Desk's dialogs", async ({ office, openAs }) => {
     const person = await office.person("reviewer");
-    await office.assign(await office.openCases(suspiciousPayments(2)), person);
+    await office.openCases(suspiciousPayments(2), person);
     const page = await openAs(person);
     const desk = new DeskPage(page);
     await desk.open();

@@ -11,7 +11,10 @@ test("a whole shift goes by keyboard alone, from the sign-in on", async ({ page,
   test.setTimeout(120_000);
   const pointerUse = await countPointerUse(page);
   const desk = new DeskPage(page);
-  for (let account = 0; account < 4; account++) await office.openCases(suspiciousPayments(2, "card_present"));
+  const owner = { personId: reviewer.id };
+  for (let account = 0; account < 4; account++) {
+    await office.openCases(suspiciousPayments(2, "card_present"), owner);
+  }
 
   await test.step("signs in from the start page", async () => {
     await page.goto("/");
@@ -118,7 +121,7 @@ test("a whole shift goes by keyboard alone, from the sign-in on", async ({ page,
   });
 
   await test.step("decides what links to a case in the same act", async () => {
-    const [first, second] = await office.openCases(suspiciousPayments(2));
+    const [first, second] = await office.openCases(suspiciousPayments(2), owner);
     if (!first || !second) throw new Error("Two cases were opened");
     hand = await desk.open(first.caseId);
     expect(hand.caseId).toBe(first.caseId);
@@ -139,7 +142,7 @@ test("a whole shift goes by keyboard alone, from the sign-in on", async ({ page,
   });
 
   await test.step("sets a case aside until tomorrow", async () => {
-    const [aside] = await office.openCases(suspiciousPayments(1, "card_present"));
+    const [aside] = await office.openCases(suspiciousPayments(1, "card_present"), owner);
     if (!aside) throw new Error("A case was opened");
     hand = await desk.open(aside.caseId);
     await press(page, "a");
@@ -169,7 +172,7 @@ test.describe("keys", () => {
     openAs,
   }) => {
     const person = await office.person("reviewer");
-    await office.assign(await office.openCases(suspiciousPayments(4)), person);
+    await office.openCases(suspiciousPayments(4), person);
     const page = await openAs(person);
     await page.clock.install();
     const desk = new DeskPage(page);
@@ -213,7 +216,7 @@ test.describe("keys", () => {
 
   test("help lists them; each can be bound anew, and all switched off", async ({ db, office, openAs }) => {
     const person = await office.person("reviewer");
-    await office.assign(await office.openCases(suspiciousPayments(3)), person);
+    await office.openCases(suspiciousPayments(3), person);
     const page = await openAs(person);
     const pointerUse = await countPointerUse(page);
     const desk = new DeskPage(page);
@@ -273,7 +276,7 @@ test.describe("keys", () => {
     openAs,
   }) => {
     const person = await office.person("reviewer");
-    await office.assign(await office.openCases(suspiciousPayments(2)), person);
+    await office.openCases(suspiciousPayments(2), person);
     const page = await openAs(person);
     const desk = new DeskPage(page);
     await desk.open();

@@ -117,7 +117,7 @@ test("after fifteen idle minutes the password is asked for, and the note being w
 }) => {
   complaints.expectStatus(401);
   const person = await office.person("reviewer");
-  await office.assign(await office.openCases(suspiciousPayments(2)), person);
+  await office.openCases(suspiciousPayments(2), person);
   const page = await openAs(person);
   await page.clock.install();
   const desk = new DeskPage(page);
@@ -153,7 +153,7 @@ test("a session that has ended asks for the password, and then the verdict that 
 }) => {
   complaints.expectStatus(401);
   const person = await office.person("reviewer");
-  await office.assign(await office.openCases(suspiciousPayments(2)), person);
+  await office.openCases(suspiciousPayments(2), person);
   const page = await openAs(person);
   const desk = new DeskPage(page);
   const hand = await desk.open();

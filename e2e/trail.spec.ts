@@ -6,7 +6,7 @@ test("an auditor searches the trail, opens one decision as it was, and verifies 
   office,
   openAs,
 }) => {
-  const [opened] = await office.openCases(suspiciousPayments(1));
+  const [opened] = await office.openCases(suspiciousPayments(1), await office.person("supervisor"));
   if (!opened) throw new Error("A case was opened");
   await office.decide(opened, "fraudulent", "details_theft");
   const auditor = await office.person("auditor");

@@ -12,6 +12,7 @@ import { contextOf, makePerson } from "@/tests/support/people";
 import type { SentPayment } from "./payments";
 
 export type Person = PersonActor & { email: string };
+type Owner = Pick<Person, "personId">;
 export type OpenedCase = { caseId: string; number: number; transactionId: string; accountId: string };
 
 /** What happens outside the browser under test: people join, payments come in, a supervisor acts through a key. */
@@ -34,8 +35,11 @@ export class Office {
     return ((await answer.json()) as TransactionsView).results;
   }
 
-  /** The same, where every payment is to open a case. */
-  async openCases(payments: readonly SentPayment[]): Promise<OpenedCase[]> {
+  /**
+   * The same, where every payment is to open a case. Assigned to somebody of the test's own they stay the test's:
+   * the queue hands them to nobody else.
+   */
+  async openCases(payments: readonly SentPayment[], owner: Owner | null = null): Promise<OpenedCase[]> {
     const results = await this.receive(payments);
     const caseIds = results.flatMap(({ caseId }) => caseId ?? []);
     expect(caseIds, `a case for each payment: ${JSON.stringify(results)}`).toHaveLength(payments.length);
@@ -43,12 +47,14 @@ export class Office {
       .select({ id: cases.id, number: cases.number })
       .from(cases)
       .where(inArray(cases.id, caseIds));
-    return results.map(({ caseId, transactionId }, index) => ({
+    const opened = results.map(({ caseId, transactionId }, index) => ({
       caseId: caseId as string,
       number: rows.find(({ id }) => id === caseId)?.number as number,
       transactionId: transactionId as string,
       accountId: payments[index]?.accountId as string,
     }));
+    if (owner) await this.assign(opened, owner);
+    return opened;
   }
 
   /** A supervisor decides a case, whoever has it. */
@@ -58,7 +64,7 @@ export class Office {
     await this.asSupervisor(`/api/cases/${caseId}/decision`, { ...finding, seenVersion: row?.revision });
   }
 
-  async assign(opened: readonly OpenedCase[], person: Person | null): Promise<void> {
+  async assign(opened: readonly OpenedCase[], person: Owner | null): Promise<void> {
     const caseIds = opened.map(({ caseId }) => caseId);
     await this.asSupervisor("/api/floor/assign", { caseIds, personId: person?.personId ?? null });
   }
