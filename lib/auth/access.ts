@@ -63,9 +63,16 @@ export function scopesFor(capability: Capability): readonly Scope[] {
   return scope ? [scope, ...also] : also;
 }
 
-/** A personal scope lends the key the rights of the person it acts for and no more; `roles` are theirs. */
-export function keyMay(scopes: readonly Scope[], roles: readonly Role[], capability: Capability): boolean {
-  return scopesFor(capability).some(
-    (scope) => scopes.includes(scope) && (!PERSONAL_SCOPES.includes(scope) || rolesMay(roles, capability)),
-  );
+/**
+ * A key needs a scope, and one that acts for a person has that person's rights and no more: `personRoles` are theirs,
+ * null for a key that acts for nobody. What no role may do is for machines alone and asks for the scope only.
+ */
+export function keyMay(
+  scopes: readonly Scope[],
+  personRoles: readonly Role[] | null,
+  capability: Capability,
+): boolean {
+  const fitting = scopesFor(capability).filter((scope) => scopes.includes(scope));
+  if (personRoles === null) return fitting.some((scope) => !PERSONAL_SCOPES.includes(scope));
+  return fitting.length > 0 && (grantOf(capability).roles.length === 0 || rolesMay(personRoles, capability));
 }

@@ -6,7 +6,7 @@ import { type Capability, keyMay, rolesMay } from "./access";
 export function mayDo(actor: Actor, capability: Capability): boolean {
   if (actor.kind === "system") return true;
   if (actor.kind === "anonymous") return false;
-  if (actor.kind === "key") return keyMay(actor.scopes, [], capability);
+  if (actor.kind === "key") return keyMay(actor.scopes, null, capability);
   return actor.key ? keyMay(actor.key.scopes, actor.roles, capability) : rolesMay(actor.roles, capability);
 }
 

@@ -38,6 +38,9 @@ describe("who may do what", () => {
     const allowed = capabilities.filter((capability) => mayDo(byKey, capability));
     expect(allowed).toEqual(["cases.read", "desk.work"]);
     expect(mayDo(person(["auditor"], keyWith(...PERSONAL_SCOPES)), "desk.work")).toBe(false);
+    const withReports = person(["reviewer"], keyWith("cases:decide", "reports:read"));
+    expect(mayDo(withReports, "trail.read")).toBe(false);
+    expect(mayDo(withReports, "losses.read")).toBe(false);
   });
 
   test("nobody who checks the work or gives the rights may do the work", () => {
