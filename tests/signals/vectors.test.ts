@@ -1,3 +1,4 @@
+// Long: every signal of the catalogue is tried beside the others, so that a missing one shows.
 import { describe, expect, it } from "vitest";
 import { CATALOGUE, DIMENSION, OFFSETS } from "@/lib/signals/catalogue";
 import type { PaymentFields, PaymentHistory } from "@/lib/signals/facts";

@@ -1,3 +1,4 @@
+// Long: every promise of one use case, on one installation.
 import { createHash } from "node:crypto";
 import { and, count, eq } from "drizzle-orm";
 import { beforeAll, describe, expect, it } from "vitest";
