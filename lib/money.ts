@@ -38,10 +38,10 @@ export function parseAmount(text: string, currency: string): number | null {
 }
 
 /** Minor units as the decimal string of the API: 12990 EUR → `"129.90"`; negative amounts carry a hyphen. */
-export function formatAmount(minor: number, currency: string): string {
+export function formatAmount(minor: number | bigint, currency: string): string {
   const digits = minorDigits(currency) ?? 2;
   const sign = minor < 0 ? "-" : "";
-  const text = String(Math.abs(minor)).padStart(digits + 1, "0");
+  const text = String(minor < 0 ? -minor : minor).padStart(digits + 1, "0");
   return digits === 0 ? sign + text : `${sign}${text.slice(0, -digits)}.${text.slice(-digits)}`;
 }
 

@@ -15,16 +15,16 @@ export type LargestCase = {
   transactionId: string;
   externalId: string;
   channel: Channel;
-  attemptedMinor: number;
-  preventedMinor: number;
+  attemptedMinor: bigint;
+  preventedMinor: bigint;
 };
 
 export type TypologyFigures = {
   typology: Typology;
   /** Findings that stand: one for each line, less one for each line taken back. */
   findings: number;
-  attemptedMinor: number;
-  preventedMinor: number;
+  attemptedMinor: bigint;
+  preventedMinor: bigint;
 };
 
 /** The fraudulent payments of the highest value; equal ones in order of arrival. */
@@ -65,5 +65,10 @@ export async function listTypologies(db: Executor, span: Span): Promise<Typology
     .flatMap(({ typology, ...figures }) =>
       typology && figures.findings > 0 ? [{ typology, ...figures }] : [],
     )
-    .sort((a, b) => b.attemptedMinor - a.attemptedMinor || a.typology.localeCompare(b.typology));
+    .sort(highestFirst);
+}
+
+function highestFirst(a: TypologyFigures, b: TypologyFigures): number {
+  if (a.attemptedMinor === b.attemptedMinor) return a.typology.localeCompare(b.typology);
+  return a.attemptedMinor < b.attemptedMinor ? 1 : -1;
 }

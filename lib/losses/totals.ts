@@ -3,9 +3,9 @@ import { divideHalfEven } from "./rounding";
 import type { LedgerLine } from "./rules";
 
 /** What the database adds up for one week; money in minor units of the base currency. */
-export type WeekSums = LedgerLine & {
+export type WeekSums = Record<keyof LedgerLine, bigint> & {
   /** Value of the payments that went through: neither held nor refused. */
-  settledMinor: number;
+  settledMinor: bigint;
   payments: number;
   /** Payments of the week whose currency has no rate: they are in no figure of money. */
   unpriced: number;
@@ -24,11 +24,11 @@ type ShareOf = { ppm: number; lowPpm: number; highPpm: number; count: number; of
 /** Figures that follow from the sums; null means "not defined", never 0. Rates in parts per million: 100 ppm = 1 bp. */
 export type WeekTotals = WeekSums & {
   /** Attempted − prevented, recovered or not. */
-  grossMinor: number;
+  grossMinor: bigint;
   /** Gross − recovered. */
-  netMinor: number;
+  netMinor: bigint;
   /** Net + lost margin + review cost. */
-  totalCostMinor: number;
+  totalCostMinor: bigint;
   /** Prevented ÷ attempted, by value. */
   valueDetectionPpm: number | null;
   /** Gross, net and total cost ÷ settled value. */
@@ -38,11 +38,11 @@ export type WeekTotals = WeekSums & {
   /** Fraudulent among the alerts decided. */
   precision: ShareOf | null;
   /** Review cost ÷ cases decided. */
-  costPerCaseMinor: number | null;
+  costPerCaseMinor: bigint | null;
 };
 
-/** Ratio of two amounts in parts per million by integer arithmetic, rounded half-even; null over nothing. */
-export function partsPerMillion(part: number, whole: number): number | null {
+/** Ratio of two amounts or counts in parts per million by integer arithmetic, rounded half-even; null over nothing. */
+export function partsPerMillion(part: bigint | number, whole: bigint | number): number | null {
   return whole > 0 ? Number(divideHalfEven(BigInt(part) * 1_000_000n, BigInt(whole))) : null;
 }
 
@@ -62,8 +62,7 @@ export function weekTotals(sums: WeekSums): WeekTotals {
     netPpm: partsPerMillion(netMinor, sums.settledMinor),
     totalCostPpm: partsPerMillion(totalCostMinor, sums.settledMinor),
     precision: shareOf(sums.alertsFraudulent, sums.alertsDecided),
-    costPerCaseMinor:
-      decided > 0 ? Number(divideHalfEven(BigInt(sums.reviewCostMinor), BigInt(decided))) : null,
+    costPerCaseMinor: decided > 0 ? divideHalfEven(sums.reviewCostMinor, BigInt(decided)) : null,
   };
 }
 

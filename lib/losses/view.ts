@@ -6,7 +6,7 @@ import type { WeekTotals } from "./totals";
 
 /** The week's figures as the API and the screens show them: amounts as decimal strings, rates in their units. */
 export function weekView(figures: WeekFigures, currency: string): WeekView {
-  const money = (minor: number) => formatAmount(minor, currency);
+  const money = (minor: bigint) => formatAmount(minor, currency);
   const { start, end, maturity, totals, previous, largest, typologies, ...rest } = figures;
   return {
     ...rest,

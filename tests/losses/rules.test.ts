@@ -109,14 +109,14 @@ const SAMPLE = {
 };
 
 const NO_SUMS: WeekSums = {
-  attemptedMinor: 0,
-  preventedMinor: 0,
-  missedMinor: 0,
-  recoveredMinor: 0,
-  falsePositiveMinor: 0,
-  lostMarginMinor: 0,
-  reviewCostMinor: 0,
-  settledMinor: 0,
+  attemptedMinor: 0n,
+  preventedMinor: 0n,
+  missedMinor: 0n,
+  recoveredMinor: 0n,
+  falsePositiveMinor: 0n,
+  lostMarginMinor: 0n,
+  reviewCostMinor: 0n,
+  settledMinor: 0n,
   payments: 0,
   unpriced: 0,
   fraudulent: 0,
@@ -129,7 +129,7 @@ const NO_SUMS: WeekSums = {
 describe("rates", () => {
   test("are not defined over nothing, rather than 0", () => {
     expect(weekTotals(NO_SUMS)).toMatchObject({
-      grossMinor: 0,
+      grossMinor: 0n,
       grossPpm: null,
       netPpm: null,
       totalCostPpm: null,

@@ -40,15 +40,19 @@ test("an undo returns a decision's money to the cent, and each stretch of work i
   await world.db.update(cases).set(claim).where(eq(cases.id, waiting.caseId));
   await decide("fraudulent", 1, minutes(5));
   // Five minutes at 36.00 an hour.
-  expect(await week()).toMatchObject({ attemptedMinor: 50_00, preventedMinor: 50_00, reviewCostMinor: 3_00 });
+  expect(await week()).toMatchObject({
+    attemptedMinor: 50_00n,
+    preventedMinor: 50_00n,
+    reviewCostMinor: 3_00n,
+  });
   const undone = await undoDecision(world.ctx(reviewer, minutes(6)), { id: waiting.caseId });
-  expect(await week()).toMatchObject({ attemptedMinor: 0, preventedMinor: 0, reviewCostMinor: 3_00 });
+  expect(await week()).toMatchObject({ attemptedMinor: 0n, preventedMinor: 0n, reviewCostMinor: 3_00n });
   await decide("legitimate", undone.revision, minutes(8));
   expect(await week()).toMatchObject({
-    attemptedMinor: 0,
-    falsePositiveMinor: 50_00,
-    lostMarginMinor: 1_00,
-    reviewCostMinor: 4_20,
+    attemptedMinor: 0n,
+    falsePositiveMinor: 50_00n,
+    lostMarginMinor: 1_00n,
+    reviewCostMinor: 4_20n,
     fraudulent: 0,
     legitimate: 1,
   });

@@ -1,6 +1,9 @@
 import { describe, expect, test } from "vitest";
 import { ledger } from "@/db/schema/cases";
+import { weeklySummaryMail } from "@/emails/weekly-summary";
+import { readLosses } from "@/lib/losses/losses";
 import { weekFigures } from "@/lib/losses/read";
+import { WeekView } from "@/lib/losses/schema";
 import { weekView } from "@/lib/losses/view";
 import { newId } from "@/lib/new-id";
 import { testWorld, type World } from "../support/world";
@@ -85,16 +88,52 @@ test("a payment in a currency without a rate is counted, not valued", async () =
   );
   const { totals, typologies } = await week("2026-W12", "transaction", NEXT_MONDAY, own);
   expect(totals).toMatchObject({
-    attemptedMinor: 0,
-    settledMinor: 0,
-    reviewCostMinor: 36,
+    attemptedMinor: 0n,
+    settledMinor: 0n,
+    reviewCostMinor: 36n,
     payments: 1,
     unpriced: 1,
     fraudulent: 1,
     grossPpm: null,
     valueDetectionPpm: null,
   });
-  expect(typologies).toMatchObject([{ findings: 1, attemptedMinor: 0 }]);
+  expect(typologies).toMatchObject([{ findings: 1, attemptedMinor: 0n }]);
+});
+
+test("payments of the largest amount that intake takes add up to the unit, on the page and in the mail", async () => {
+  const own = await testWorld();
+  const largest = { amountMinor: Number.MAX_SAFE_INTEGER, occurredAt: WEDNESDAY };
+  const held = { ...largest, paymentState: "held" as const, action: "hold" as const };
+  for (let i = 0; i < 2; i++) {
+    await decidedPayment(own, { ...largest, action: "pass" }, { verdict: "fraudulent", decidedAt: FRIDAY });
+    await decidedPayment(own, held, { verdict: "legitimate", decidedAt: FRIDAY });
+  }
+  const ctx = own.ctx(await own.person("auditor"), NEXT_MONDAY);
+  const view = WeekView.parse(await readLosses(ctx, { week: "2026-W12", by: "transaction" }));
+  // 2 × 9007199254740991.
+  const both = "180143985094819.82";
+  expect(view.totals).toMatchObject({
+    settled: both,
+    attempted: both,
+    prevented: "0.00",
+    gross: both,
+    missed: both,
+    net: both,
+    falsePositive: both,
+    // Two halves of 2 %, each rounded by itself: 180143985094820.
+    lostMargin: "3602879701896.40",
+    totalCost: "183746864796716.22",
+    fraudRateBp: 10_000,
+    netRateBp: 10_000,
+    totalCostBp: 10_200,
+    valueDetection: 0,
+  });
+  expect(view.change).toMatchObject({ gross: both, totalCost: "183746864796716.22" });
+  expect(view.typologies).toMatchObject([{ findings: 2, attempted: both }]);
+  expect(view.largest.map((one) => one.attempted)).toEqual(["90071992547409.91", "90071992547409.91"]);
+  const mail = await weeklySummaryMail({ view, appUrl: "https://cupel.example.test", unsubscribeUrl: null });
+  expect(mail.text).toContain("Gross loss: 180\u202f143\u202f985\u202f094\u202f819.82\u00a0EUR");
+  expect(mail.html).toContain("183\u202f746\u202f864\u202f796\u202f716.22");
 });
 
 describe("which week", () => {
@@ -105,10 +144,10 @@ describe("which week", () => {
     const later = new Date("2026-04-10T00:00:00Z");
     const grossOf = async (label: string, by: "transaction" | "booking") =>
       (await week(label, by, later, own)).totals.grossMinor;
-    expect(await grossOf("2026-W12", "transaction")).toBe(1_000);
-    expect(await grossOf("2026-W14", "transaction")).toBe(0);
-    expect(await grossOf("2026-W12", "booking")).toBe(0);
-    expect(await grossOf("2026-W14", "booking")).toBe(1_000);
+    expect(await grossOf("2026-W12", "transaction")).toBe(1_000n);
+    expect(await grossOf("2026-W14", "transaction")).toBe(0n);
+    expect(await grossOf("2026-W12", "booking")).toBe(0n);
+    expect(await grossOf("2026-W14", "booking")).toBe(1_000n);
   });
 
   test("the week before is taken as it was known at the same age", async () => {
@@ -118,9 +157,9 @@ describe("which week", () => {
     await decidedPayment(own, facts, { verdict: "fraudulent", decidedAt: new Date("2026-03-16T06:00:00Z") });
     await decidedPayment(own, facts, { verdict: "fraudulent", decidedAt: new Date("2026-03-17T06:00:00Z") });
     const { previous, totals } = await week("2026-W12", "transaction", NEXT_MONDAY, own);
-    expect(totals.attemptedMinor).toBe(0);
-    expect(previous).toMatchObject({ week: "2026-W11", totals: { attemptedMinor: 500, fraudulent: 1 } });
-    expect((await week("2026-W11", "transaction", NEXT_MONDAY, own)).totals.attemptedMinor).toBe(1_000);
+    expect(totals.attemptedMinor).toBe(0n);
+    expect(previous).toMatchObject({ week: "2026-W11", totals: { attemptedMinor: 500n, fraudulent: 1 } });
+    expect((await week("2026-W11", "transaction", NEXT_MONDAY, own)).totals.attemptedMinor).toBe(1_000n);
   });
 
   test("sums of local weeks make up the sum of the payments, none counted twice", async () => {
@@ -144,7 +183,9 @@ describe("which week", () => {
         })
       ).totals.settledMinor;
     expect([await settled("2026-W12"), await settled("2026-W13"), await settled("2026-W14")]).toEqual([
-      1, 110, 1000,
+      1n,
+      110n,
+      1000n,
     ]);
   });
 });
