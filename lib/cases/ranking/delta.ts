@@ -1,7 +1,7 @@
 import "server-only";
 import type { Database } from "@/db/client";
 import { type CaseState, UNDECIDED_STATES } from "../codes";
-import { type ChangedCase, readChangedAmong, readChangedSince, readFacts, readPlaced } from "./read-waiting";
+import { type ChangedCase, readChangedAmong, readFacts, readPlaced } from "./read-waiting";
 import type { CaseFacts, WaitingCases } from "./waiting-cases";
 
 /** How a case differs from what the ranking knows; `after` is null once it waits no longer. */
@@ -15,18 +15,17 @@ export type CaseDelta = {
 
 const PAGE = 500;
 
-/** Compares the named cases, and those changed since a time, with what is known. */
+/** Compares the named cases, and those found to have changed, with what is known. */
 export async function readDelta(
   db: Database,
   known: WaitingCases,
   caseIds: readonly string[],
-  since: Date | null,
+  found: readonly ChangedCase[],
 ): Promise<CaseDelta[]> {
-  const rows = new Map<string, ChangedCase>();
+  const rows = new Map(found.map((row) => [row.id, row]));
   for (let from = 0; from < caseIds.length; from += PAGE) {
     for (const row of await readChangedAmong(db, caseIds.slice(from, from + PAGE))) rows.set(row.id, row);
   }
-  if (since) for (const row of await readChangedSince(db, since)) rows.set(row.id, row);
   const gone: CaseDelta[] = [];
   const fresh: string[] = [];
   const touched: string[] = [];

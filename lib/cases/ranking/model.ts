@@ -5,6 +5,7 @@ import { type HeldScorer, readScorerInUse } from "../../learning/held-scorer";
 import { log } from "../../log";
 import type { Label, Step } from "../../scorer";
 import { advance, recompute } from "./advance";
+import { ChangeWatch } from "./change-watch";
 import { type CaseDelta, readDelta } from "./delta";
 import { KeptMovements, type Movement } from "./movement";
 import { PolicyWatch } from "./policy-watch";
@@ -20,8 +21,6 @@ import { Breath, Turns } from "./turns";
 import { RankingView } from "./view";
 import { type CaseFacts, WaitingCases } from "./waiting-cases";
 
-/** Clocks of servers differ, and a transaction commits later than the time it writes. */
-const OVERLAP_MS = 15_000;
 /** Rows are turned into cases without a pause, page by page. */
 const PAGE = 200;
 /** Room for so many times the cases that wait at the start: moving all vectors into a larger array takes a while. */
@@ -33,7 +32,7 @@ export type RankingEvent = { version: number; logSeq: number; changes: readonly 
 
 /**
  * The ranking of waiting cases of one database, in this process's memory: a read model, never the truth. It is
- * brought forward from the label log and from the cases' times of change, so that every process comes to the same
+ * brought forward from the label log and from the cases' numbers and times of change, so that every process comes to the same
  * order by itself. Nobody sees it half-way: changes and reads take turns.
  */
 export class RankingModel {
@@ -45,11 +44,10 @@ export class RankingModel {
   private pending: Promise<void> | null = null;
   private owed: Promise<void> | null = null;
   private pollWanted = false;
-  private loaded: { cases: WaitingCases; held: HeldScorer } | null = null;
+  private loaded: { cases: WaitingCases; held: HeldScorer; watch: ChangeWatch } | null = null;
   private readonly policy = new PolicyWatch();
   private view: RankingView | null = null;
   private isFrozen = false;
-  private pollFrom = new Date(0);
 
   constructor(private readonly db: Database) {}
 
@@ -120,9 +118,11 @@ export class RankingModel {
       if (fresh && !isOfSameShape(fresh, this.loaded.held)) return await this.load(now);
       // A decided case leaves before the others move, whoever decided it.
       const named = [...hinted, ...(labels ?? []).flatMap(({ caseId }) => caseId ?? [])];
-      const delta = await readDelta(this.db, this.loaded.cases, named, poll ? this.pollFrom : null);
+      const { cases, watch } = this.loaded;
+      const look = poll ? await watch.look(this.db, now) : null;
+      const delta = await readDelta(this.db, cases, named, look?.rows ?? []);
       await this.state.take(() => this.apply(delta, labels ?? [], fresh));
-      if (poll) this.pollFrom = new Date(now.getTime() - OVERLAP_MS);
+      if (look) watch.settle(look);
     } catch (error) {
       for (const id of hinted) this.hinted.add(id);
       this.pollWanted ||= poll;
@@ -132,6 +132,7 @@ export class RankingModel {
 
   private async load(now: Date): Promise<void> {
     const held = await readScorerInUse(this.db);
+    const watch = await ChangeWatch.begin(this.db, now);
     const cases = new WaitingCases(held.scorer, Math.ceil(ROOM * (await countWaiting(this.db))));
     const breath = new Breath();
     for (let after = 0; ; ) {
@@ -148,9 +149,8 @@ export class RankingModel {
       }
     }
     await this.state.take(() => {
-      this.loaded = { cases, held };
+      this.loaded = { cases, held, watch };
       this.view = null;
-      this.pollFrom = new Date(now.getTime() - OVERLAP_MS);
     });
     this.tell([]);
     // What changed while the pages were read.
@@ -220,9 +220,9 @@ export class RankingModel {
 
   /** After an undo, a correction or other options the scorer's state comes from the database. */
   private async startAfresh(fresh: HeldScorer): Promise<void> {
-    const { cases, held } = this.present();
+    const { cases, held, watch } = this.present();
     this.movements.keep(held.version + 1, fresh.version, await this.computeAnew(fresh));
-    this.loaded = { cases, held: fresh };
+    this.loaded = { cases, held: fresh, watch };
   }
 
   private async computeAnew({ scorer }: HeldScorer): Promise<Movement> {

@@ -1,11 +1,12 @@
 import "server-only";
-import { and, asc, count, eq, gt, gte, inArray, lte } from "drizzle-orm";
+import { and, asc, between, count, desc, eq, gt, gte, inArray, lte, or } from "drizzle-orm";
 import type { Executor } from "@/db/client";
 import { bytesToVector } from "@/db/columns";
 import { cases } from "@/db/schema/cases";
 import { labelLog, scorers } from "@/db/schema/scorers";
 import { scores, transactions } from "@/db/schema/transactions";
 import { type CaseState, UNDECIDED_STATES } from "../codes";
+import type { NumberGap } from "./number-gaps";
 import type { CaseFacts } from "./waiting-cases";
 
 export type ScorerHead = { id: string; version: number; logSeq: number };
@@ -61,6 +62,7 @@ export async function readLabels(
 /** A row that has changed, and enough of it to tell whether the ranking knows already. */
 export type ChangedCase = {
   id: string;
+  number: number;
   state: CaseState;
   revision: number;
   scoreId: number;
@@ -69,6 +71,7 @@ export type ChangedCase = {
 
 const changed = {
   id: cases.id,
+  number: cases.number,
   state: cases.state,
   revision: cases.revision,
   scoreId: cases.scoreId,
@@ -77,6 +80,27 @@ const changed = {
 
 export async function readChangedSince(db: Executor, since: Date): Promise<ChangedCase[]> {
   return db.select(changed).from(cases).where(gte(cases.changedAt, since));
+}
+
+/** Cases of every state that were numbered behind `after`, in order of their numbers. */
+export async function readNumberedBehind(db: Executor, after: number): Promise<ChangedCase[]> {
+  return db.select(changed).from(cases).where(gt(cases.number, after)).orderBy(asc(cases.number));
+}
+
+/** Cases that have turned up in the gaps, in order of their numbers. */
+export async function readNumberedIn(db: Executor, gaps: readonly NumberGap[]): Promise<ChangedCase[]> {
+  if (gaps.length === 0) return [];
+  return db
+    .select(changed)
+    .from(cases)
+    .where(or(...gaps.map(({ first, last }) => between(cases.number, first, last))))
+    .orderBy(asc(cases.number));
+}
+
+/** The highest numbers, rising. */
+export async function readNewestNumbers(db: Executor, limit: number): Promise<number[]> {
+  const rows = await db.select({ number: cases.number }).from(cases).orderBy(desc(cases.number)).limit(limit);
+  return rows.map(({ number }) => number).reverse();
 }
 
 export async function readChangedAmong(db: Executor, ids: readonly string[]): Promise<ChangedCase[]> {
