@@ -1,6 +1,15 @@
-import type { MAIL_STATES } from "./codes";
+import type { Capability } from "../auth/access";
+import type { MAIL_KINDS, MAIL_STATES } from "./codes";
 
 export type MailState = (typeof MAIL_STATES)[number];
+
+/** What a person must still be allowed to do when a message of the kind goes out to them. */
+export const CAPABILITY_TO_READ: Readonly<Record<(typeof MAIL_KINDS)[number], Capability>> = {
+  weekly_summary: "losses.read",
+  case_assigned: "desk.work",
+  approval_wanted: "policy.approve",
+  deadline_digest: "desk.work",
+};
 
 /** What came of handing a message to the mail server. */
 export type Attempt =
@@ -22,6 +31,13 @@ const MOST_ATTEMPTS = 56;
 function retryWaitMs(attempts: number): number {
   return Math.min(FIRST_WAIT_MS * 2 ** (attempts - 1), LONGEST_WAIT_MS);
 }
+
+/** What stands for an attempt where the message must not be handed to the mail server at all. */
+export const NOT_THEIRS_TO_READ: Attempt = {
+  result: "refused",
+  permanent: true,
+  problem: "The recipient may no longer read this",
+};
 
 export type AfterAttempt = {
   state: MailState;

@@ -5,7 +5,8 @@ import { outbox } from "@/db/schema/mail";
 import { inTransaction } from "@/db/tx";
 import type { Context } from "../context";
 import { newId } from "../new-id";
-import { type Attempt, afterAttempt, SENDING_LEASE_MS } from "./rules";
+import { mayStillRead } from "./may-still-read";
+import { type Attempt, afterAttempt, NOT_THEIRS_TO_READ, SENDING_LEASE_MS } from "./rules";
 import type { MailSettings } from "./settings";
 import { sendBySmtp } from "./smtp";
 
@@ -25,16 +26,19 @@ export async function sendDueMail(
   const leaseOwner = newId();
   let tried = 0;
   while (!signal?.aborted) {
-    const row = await claimNext(ctx.db, leaseOwner, ctx.now());
-    if (!row) break;
+    const claimed = await claimNext(ctx.db, leaseOwner, ctx.now());
+    if (!claimed) break;
     tried += 1;
-    const attempt = await sendBySmtp(settings, row);
+    const { row, isTheirs } = claimed;
+    const attempt = isTheirs ? await sendBySmtp(settings, row) : NOT_THEIRS_TO_READ;
     await recordAttempt(ctx.db, row, attempt, ctx.now());
   }
   return tried;
 }
 
-function claimNext(db: Database, leaseOwner: string, now: Date): Promise<OutboxRow | null> {
+type Claimed = { row: OutboxRow /** Its recipient may still read it. */; isTheirs: boolean };
+
+function claimNext(db: Database, leaseOwner: string, now: Date): Promise<Claimed | null> {
   return inTransaction(db, async (tx) => {
     const [row] = await tx
       .select()
@@ -51,7 +55,7 @@ function claimNext(db: Database, leaseOwner: string, now: Date): Promise<OutboxR
       nextAttemptAt: new Date(now.getTime() + SENDING_LEASE_MS),
     };
     await tx.update(outbox).set(claim).where(eq(outbox.id, row.id));
-    return { ...row, ...claim };
+    return { row: { ...row, ...claim }, isTheirs: await mayStillRead(tx, row) };
   });
 }
 

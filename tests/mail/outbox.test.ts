@@ -2,9 +2,12 @@ import { eq } from "drizzle-orm";
 import { MailDev } from "maildev";
 import { afterEach, beforeAll, describe, expect, inject, test } from "vitest";
 import { createDatabase } from "@/db/client";
-import { outbox } from "@/db/schema/mail";
+import { outbox, summaryRecipients } from "@/db/schema/mail";
+import { people, personRoles } from "@/db/schema/people";
 import { trail } from "@/db/schema/trail";
+import type { Role } from "@/lib/auth/codes";
 import type { PersonActor } from "@/lib/context";
+import { listSummaries } from "@/lib/losses/summaries";
 import { enqueueMail, type Message } from "@/lib/mail/enqueue";
 import { markMailAsSent } from "@/lib/mail/mark-as-sent";
 import { SENDING_LEASE_MS } from "@/lib/mail/rules";
@@ -35,12 +38,16 @@ const later = (ms: number) => new Date(WORLD_START.getTime() + ms);
 const send = (at: Date, smtpUrl?: string) =>
   sendDueMail(world.ctx({ kind: "system", job: "outbox" }, at), settings(smtpUrl));
 
-async function queue(more: Partial<Message> = {}) {
-  const recipient = `${newId()}@example.test`;
+/** A message to a person of its own, who is on the list of the weekly summary. */
+async function queue(more: Partial<Message> = {}, role: Role = "supervisor") {
+  const { personId } = await world.person(role);
+  const recipient = `${personId}@example.test`;
+  const list = { weekday: 1, hour: 8, subscribedAt: WORLD_START, changedAt: WORLD_START };
+  await world.db.insert(summaryRecipients).values({ personId, ...list });
   const message: Message = {
     dedupeKey: newId(),
     kind: "weekly_summary",
-    personId: manager.personId,
+    personId,
     recipient,
     subject: "Losses in week 2026-W09",
     html: "<p>Größe</p>",
@@ -49,7 +56,7 @@ async function queue(more: Partial<Message> = {}) {
   };
   const queued = await world.db.transaction((tx) => enqueueMail(tx, message, { appUrl, now: WORLD_START }));
   const [row] = await world.db.select().from(outbox).where(eq(outbox.dedupeKey, message.dedupeKey));
-  return { queued, recipient, id: row?.id as string, messageId: row?.messageId as string };
+  return { queued, personId, recipient, id: row?.id as string, messageId: row?.messageId as string };
 }
 
 async function rowOf(id: string) {
@@ -203,6 +210,68 @@ describe("a message the server refuses", () => {
     const { id } = await queue();
     await send(WORLD_START, server.url);
     expect(await rowOf(id)).toMatchObject({ state: "queued", nextAttemptAt: later(15_000) });
+  });
+});
+
+describe("a message whose recipient may no longer read it when the mail server is back", () => {
+  const deactivate = (id: string) =>
+    world.db.update(people).set({ state: "deactivated" }).where(eq(people.id, id));
+  const rename = (id: string) =>
+    world.db
+      .update(people)
+      .set({ email: `new-${id}@example.test` })
+      .where(eq(people.id, id));
+  const become = (role: Role) => (id: string) =>
+    world.db.update(personRoles).set({ role }).where(eq(personRoles.personId, id));
+  const unsubscribe = (id: string) =>
+    world.db.update(summaryRecipients).set({ subscribed: 0 }).where(eq(summaryRecipients.personId, id));
+  const leaveTheList = (id: string) =>
+    world.db.delete(summaryRecipients).where(eq(summaryRecipients.personId, id));
+
+  test.each([
+    ["a summary to somebody who was deactivated", "weekly_summary", deactivate],
+    ["a summary to an address that is no longer theirs", "weekly_summary", rename],
+    ["a summary to somebody who may no longer read losses", "weekly_summary", become("reviewer")],
+    ["a summary to somebody who ended it", "weekly_summary", unsubscribe],
+    ["a summary to somebody who was taken off the list", "weekly_summary", leaveTheList],
+    ["a question to somebody who may no longer approve policies", "approval_wanted", become("reviewer")],
+    ["a question to somebody who was deactivated", "approval_wanted", deactivate],
+    ["word of a case to somebody who no longer works cases", "case_assigned", become("auditor")],
+    ["word of deadlines to somebody who no longer works cases", "deadline_digest", become("administrator")],
+  ] as const)("is never sent: %s", async (_, kind, change) => {
+    const down = `smtp://127.0.0.1:${await freePort()}`;
+    const { id, personId, recipient } = await queue({ kind });
+    await send(WORLD_START, down);
+    expect(await rowOf(id)).toMatchObject({ state: "queued", attempts: 1 });
+    await change(personId);
+    await send(later(86_400_000));
+    const problem = "The recipient may no longer read this";
+    expect(await rowOf(id)).toMatchObject({ state: "failed", problem, sentAt: null, leaseOwner: null });
+    await sendMailAgain(world.ctx(manager, later(86_400_000)), { id });
+    await send(later(86_400_000));
+    expect(await rowOf(id)).toMatchObject({ state: "failed", problem });
+    expect(await readMail(inject("mailUrl"), recipient)).toEqual([]);
+    const { items } = await listSummaries(world.ctx(manager), { limit: 100 });
+    expect(items.find((item) => item.id === id)).toMatchObject({ state: "failed", problem });
+  });
+
+  test.each([
+    ["weekly_summary", "auditor"],
+    ["approval_wanted", "risk_manager"],
+    ["case_assigned", "reviewer"],
+    ["deadline_digest", "supervisor"],
+  ] as const)("does not stop %s to a person with the role of %s", async (kind, role) => {
+    const { id, recipient } = await queue({ kind }, role);
+    await send(WORLD_START);
+    expect(await rowOf(id)).toMatchObject({ state: "sent", problem: null });
+    expect(await awaitMail(inject("mailUrl"), recipient)).toHaveLength(1);
+  });
+
+  test("does not stop other mail to a person who is not on the list of the summary", async () => {
+    const { id, personId } = await queue({ kind: "approval_wanted" });
+    await leaveTheList(personId);
+    await send(WORLD_START);
+    expect((await rowOf(id)).state).toBe("sent");
   });
 });
 
