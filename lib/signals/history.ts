@@ -3,7 +3,7 @@ import type { RowDataPacket } from "mysql2";
 import type { Database } from "@/db/client";
 import type { Label } from "../scorer";
 import { ENTITY_KINDS, type EntityKind } from "./facts";
-import { type KnownEntity, KnownHistory, type PaymentTrace } from "./known-history";
+import { type KnownEntity, KnownHistory, type PaymentKeys } from "./known-history";
 
 /**
  * Newest payments read of one entity. A marketplace may have more in thirty days; its counts then stand at the end
@@ -15,7 +15,7 @@ const ENTITIES_IN_STATEMENT = 250;
 const ROWS_PER_ENTITY = 200;
 const KEYS_IN_STATEMENT = 1_000;
 /** One statement is worked on by the database while the rows of another are taken in. */
-const STATEMENTS_AT_ONCE = 2;
+const STATEMENTS_AT_ONCE = 3;
 
 const KEY_COLUMN: Record<EntityKind, string> = {
   account: "account_id",
@@ -38,7 +38,7 @@ type PastRow = [
   number,
   string | undefined,
 ];
-type LabelRow = [string, string, Label, number];
+type LabelRow = [EntityKind, string, string, Label, number];
 
 /**
  * The last thirty days of each payment's account, card, device and counterparty, and all labels known of them now.
@@ -48,18 +48,19 @@ type LabelRow = [string, string, Label, number];
  */
 export async function readHistory(
   db: Database,
-  payments: readonly PaymentTrace[],
+  payments: readonly PaymentKeys[],
   { withIds = false } = {},
 ): Promise<KnownHistory> {
   const history = new KnownHistory(payments);
-  const reads: (() => Promise<void>)[] = ENTITY_KINDS.flatMap((kind) => {
-    const entities = history.entities(kind);
-    const keys = entities.map(({ key }) => key);
-    return [
-      ...pieces(entities, ENTITIES_IN_STATEMENT).map((some) => () => readActivity(db, kind, some, withIds)),
-      ...pieces(keys, KEYS_IN_STATEMENT).map((some) => () => readLabels(db, kind, some, history)),
-    ];
-  });
+  const entities = ENTITY_KINDS.flatMap((kind) => history.entities(kind));
+  const reads: (() => Promise<void>)[] = [
+    ...ENTITY_KINDS.flatMap((kind) =>
+      pieces(history.entities(kind), ENTITIES_IN_STATEMENT).map(
+        (some) => () => readActivity(db, kind, some, withIds),
+      ),
+    ),
+    ...pieces(entities, KEYS_IN_STATEMENT).map((some) => () => readLabels(db, some, history)),
+  ];
   let next = 0;
   const lane = async () => {
     while (next < reads.length) await reads[next++]?.();
@@ -130,16 +131,20 @@ function addRows(entities: readonly KnownEntity[], rows: readonly PastRow[]): vo
 
 async function readLabels(
   db: Database,
-  kind: EntityKind,
-  keys: readonly string[],
+  entities: readonly KnownEntity[],
   history: KnownHistory,
 ): Promise<void> {
+  const asked = ENTITY_KINDS.map((kind) => ({
+    kind,
+    keys: entities.filter((entity) => entity.kind === kind).map(({ key }) => key),
+  })).filter(({ keys }) => keys.length > 0);
   const rows = await rowsOf<LabelRow>(
     db,
-    `select entity_key, transaction_id, label, ${OCCURRED_MS} from labelled_entities where entity_kind = ? and entity_key in (?)`,
-    [kind, keys],
+    `select entity_kind, entity_key, transaction_id, label, ${OCCURRED_MS} from labelled_entities
+      where ${asked.map(() => "(entity_kind = ? and entity_key in (?))").join(" or ")}`,
+    asked.flatMap(({ kind, keys }) => [kind, keys]),
   );
-  for (const [key, transactionId, label, atMs] of rows) {
+  for (const [kind, key, transactionId, label, atMs] of rows) {
     history.find(kind, key)?.labels.add({ atMs: Number(atMs), label, transactionId });
   }
 }

@@ -2,15 +2,19 @@ import { Activity } from "./activity";
 import { ENTITY_KINDS, type EntityKind, HISTORY_MS, type PaymentHistory } from "./facts";
 import { LabelledPast } from "./labelled-past";
 
-/** What of a payment leads to its history and becomes part of that of later ones. */
-export type PaymentTrace = {
+/** What of a payment leads to its history. */
+export type PaymentKeys = {
   occurredAtMs: number;
-  amountBaseMinor: number | null;
-  direction: "outgoing" | "incoming";
   accountId: string;
   cardRef: string | null;
   deviceId: string | null;
   counterpartyId: string;
+};
+
+/** What of a payment becomes history of later ones. */
+export type PaymentTrace = PaymentKeys & {
+  amountBaseMinor: number | null;
+  direction: "outgoing" | "incoming";
   counterpartyCountry: string | null;
 };
 
@@ -33,7 +37,7 @@ export class KnownHistory {
     counterparty: new Map(),
   };
 
-  constructor(payments: Iterable<PaymentTrace>) {
+  constructor(payments: Iterable<PaymentKeys>) {
     for (const payment of payments) {
       for (const kind of ENTITY_KINDS) this.expect(kind, entityKey(payment, kind), payment.occurredAtMs);
     }
@@ -47,7 +51,7 @@ export class KnownHistory {
     return this.byKind[kind].get(key);
   }
 
-  of(payment: PaymentTrace): PaymentHistory {
+  of(payment: PaymentKeys): PaymentHistory {
     const entity = (kind: EntityKind) => {
       const key = entityKey(payment, kind);
       return key === null ? null : (this.byKind[kind].get(key) ?? null);
@@ -82,7 +86,7 @@ export class KnownHistory {
   }
 }
 
-function entityKey(payment: PaymentTrace, kind: EntityKind): string | null {
+function entityKey(payment: PaymentKeys, kind: EntityKind): string | null {
   switch (kind) {
     case "account":
       return payment.accountId;

@@ -44,7 +44,10 @@ export async function scorePayments(
   now: Date,
 ): Promise<ScoredPayment[]> {
   if (payments.length === 0) return [];
-  const measured = await measure(db, payments, held);
+  const [measured, chances] = await Promise.all([
+    measure(db, payments, held),
+    sampleChances(db, payments, policy),
+  ]);
   const thresholds = await refreshCut(
     db,
     policy,
@@ -52,7 +55,6 @@ export async function scorePayments(
     held,
     measured.map(({ logit, payment }) => ({ logit, occurredAt: payment.occurredAt })),
   );
-  const chances = await sampleChances(db, payments, policy);
   return measured.map((one) => {
     const id = newId();
     const zone = zoneOf(one.logit, thresholds);
@@ -78,15 +80,14 @@ async function measure(db: Database, payments: readonly Payment[], held: HeldSco
   if (held.signalSetVersion !== SIGNAL_SET_VERSION) {
     throw new Error(`The scorer in use knows signal set ${held.signalSetVersion}, not ${SIGNAL_SET_VERSION}`);
   }
-  const toBase = await baseAmounts(db, payments);
-  const traces = payments.map((payment) => ({
+  const timed = payments.map((payment) => ({ ...payment, occurredAtMs: payment.occurredAt.getTime() }));
+  const [toBase, history] = await Promise.all([baseAmounts(db, payments), readHistory(db, timed)]);
+  const traces = timed.map((payment) => ({
     ...payment,
-    occurredAtMs: payment.occurredAt.getTime(),
     accountOpenedAtMs: payment.accountOpenedAt?.getTime() ?? null,
     ruleHits: payment.ruleHits?.length ?? null,
     amountBaseMinor: toBase(payment.amountMinor, payment.currency, payment.occurredAt),
   }));
-  const history = await readHistory(db, traces);
   const inOrderOfTime = traces.map((trace, index) => ({ trace, index }));
   inOrderOfTime.sort((a, b) => a.trace.occurredAtMs - b.trace.occurredAtMs || a.index - b.index);
   const measured = new Array<Measured>(payments.length);

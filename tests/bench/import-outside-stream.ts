@@ -10,6 +10,7 @@ import type { Row } from "../support/bench";
 import { makePerson, TEST_PASSWORD } from "../support/people";
 import { type CookieJar, signedIn, visit } from "../support/session";
 import { quantile } from "./support/figures";
+import { ensureInstalled } from "./support/install";
 import { readRows } from "./support/stream";
 
 const FEWEST_ROWS_A_SECOND = 2_000;
@@ -119,6 +120,7 @@ async function insertPlainly(ownerUrl: string, payments: Record<string, string>[
 async function supervisor({ url, databaseUrl }: RunningApp): Promise<CookieJar> {
   const { db, close } = createDatabase(databaseUrl, 1);
   try {
+    await ensureInstalled(db);
     const { email } = await makePerson(db, ["supervisor"]);
     return await signedIn(url, email, TEST_PASSWORD);
   } finally {

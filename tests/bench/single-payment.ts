@@ -4,6 +4,7 @@ import type { Row } from "../support/bench";
 import { paymentItems } from "../transactions/payments";
 import { Api, insertKey } from "./support/api";
 import { ms, quantile } from "./support/figures";
+import { ensureInstalled } from "./support/install";
 
 const EARLIER_BATCHES = 30;
 const CALLS = 2_000;
@@ -14,6 +15,7 @@ export async function run(): Promise<Row[]> {
   const app = await startApp({ durable: true, env: { CUPEL_REQUESTS_PER_MINUTE: "1000000" } });
   const { db, close } = createDatabase(app.databaseUrl, 2);
   try {
+    await ensureInstalled(db);
     const sender = new Api(app.url, await insertKey(db, ["transactions:write"]));
     const today = Date.now();
     for (let day = EARLIER_BATCHES; day > 0; day--) {
