@@ -12,7 +12,8 @@ import { casesChanged } from "./notify";
 const BATCH = 500;
 
 /**
- * Alerts that nobody reached in their lifetime close unlabelled. Those in somebody's hands, set aside or escalated
+ * Alerts that nobody reached in their lifetime close unlabelled, and so do the cases of payments that were decided
+ * together with one and then undone. Those in somebody's hands, set aside or escalated
  * stay, and so do held payments and samples: leaving samples out would bias the estimate they are drawn for.
  */
 export async function lapseUnreachedCases(ctx: Context, signal: AbortSignal): Promise<void> {
@@ -35,7 +36,7 @@ async function lapseBatch(ctx: Context): Promise<string[]> {
         and(
           eq(cases.state, "open"),
           lte(cases.lapsesAt, now),
-          eq(cases.kind, "alert"),
+          ne(cases.kind, "sample"),
           ne(transactions.paymentState, "held"),
         ),
       )

@@ -1,5 +1,5 @@
 import "server-only";
-import { and, asc, eq, inArray, type SQL, sql } from "drizzle-orm";
+import { and, asc, desc, eq, inArray, max, type SQL, sql } from "drizzle-orm";
 import type { Tx } from "@/db/client";
 import { vectorToBytes } from "@/db/columns";
 import { cases } from "@/db/schema/cases";
@@ -9,6 +9,7 @@ import { inTransaction } from "@/db/tx";
 import { demand } from "../auth/demand";
 import type { Context } from "../context";
 import { readScorerInUse } from "../learning/held-scorer";
+import { log } from "../log";
 import { policyInForce } from "../policy/read";
 import { zoneOf } from "../policy/rules";
 import { thresholdsInForce } from "../policy/thresholds";
@@ -22,7 +23,16 @@ import { casesChanged } from "./notify";
 const LABELS_IN_BATCH = 20;
 /** A counterparty may have taken part in any number of payments; the newest are looked at. */
 const NEWEST_OF_ENTITY = 2_000;
+/** What one transaction may take on. Those beyond keep the signals they have. */
 const MOST_REFRESHED = 500;
+/** The closest ties first: many strangers may pay the same counterparty. */
+const TIES = [
+  { column: "accountId", closeness: 0 },
+  { column: "deviceId", closeness: 0 },
+  { column: "cardRef", closeness: 0 },
+  { column: "counterpartyId", closeness: 1 },
+] as const;
+type Tie = (typeof TIES)[number];
 
 type Linked = { caseId: string; transactionId: string; vector: Buffer };
 
@@ -75,7 +85,10 @@ async function refreshBatch(ctx: Context, tx: Tx, firstId: number): Promise<stri
   return changed.map(({ caseId }) => caseId);
 }
 
-/** Waiting cases that share an entity with one of the payments, the newest payments of each entity. */
+/**
+ * Waiting cases that share an entity with one of the payments: of each entity its newest payments, those of an account,
+ * device or card before those of a counterparty, and the newest first.
+ */
 async function findLinked(tx: Tx, labelled: readonly string[]): Promise<Linked[]> {
   if (labelled.length === 0) return [];
   const payments = await tx
@@ -89,27 +102,34 @@ async function findLinked(tx: Tx, labelled: readonly string[]): Promise<Linked[]
     .where(inArray(transactions.id, [...labelled]));
   const keys = new Map<string, SQL>();
   for (const payment of payments) {
-    for (const column of ["accountId", "cardRef", "deviceId", "counterpartyId"] as const) {
-      const key = payment[column];
-      if (key !== null) keys.set(`${column} ${key}`, newestOf(column, key));
+    for (const tie of TIES) {
+      const key = payment[tie.column];
+      if (key !== null) keys.set(`${tie.column} ${key}`, newestOf(tie, key));
     }
   }
+  const newest = sql.join([...keys.values()], sql` union all `);
+  const linked = sql`(select id, min(closeness) as closeness from (${newest}) tied group by id) linked`;
   const rows = await tx
     .select({ caseId: cases.id, transactionId: cases.transactionId, vector: scores.vector })
     .from(cases)
+    .innerJoin(linked, sql`linked.id = ${cases.transactionId}`)
+    .innerJoin(transactions, eq(transactions.id, cases.transactionId))
     .innerJoin(scores, eq(scores.id, cases.scoreId))
-    .where(
-      and(
-        sql`${cases.transactionId} in (select id from (${sql.join([...keys.values()], sql` union `)}) linked)`,
-        inArray(cases.state, [...UNDECIDED_STATES]),
-      ),
-    )
-    .limit(MOST_REFRESHED);
-  return rows;
+    .where(inArray(cases.state, [...UNDECIDED_STATES]))
+    .orderBy(sql`linked.closeness`, desc(transactions.occurredAt), desc(cases.number))
+    .limit(MOST_REFRESHED + 1);
+  if (rows.length > MOST_REFRESHED) {
+    log.warn(
+      { labelledPayments: labelled.length, mostRefreshed: MOST_REFRESHED },
+      "More waiting cases are linked to new labels than are refreshed at once; the closest and newest are",
+    );
+  }
+  return rows.slice(0, MOST_REFRESHED);
 }
 
-function newestOf(column: "accountId" | "cardRef" | "deviceId" | "counterpartyId", key: string): SQL {
-  return sql`(select id from ${transactions} where ${transactions[column]} = ${key}
+function newestOf({ column, closeness }: Tie, key: string): SQL {
+  return sql`(select id, ${sql.raw(String(closeness))} as closeness from ${transactions}
+    where ${transactions[column]} = ${key}
     order by ${transactions.occurredAt} desc limit ${sql.raw(String(NEWEST_OF_ENTITY))})`;
 }
 
@@ -124,28 +144,29 @@ async function writeScores(
   const policy = await policyInForce(tx, now);
   const thresholds = await thresholdsInForce(tx, policy, now);
   const { scorer, version } = await readScorerInUse(tx);
-  const inserted = await tx
-    .insert(scores)
-    .values(
-      changed.map(({ transactionId }) => {
-        const { vector, missing } = vectors.get(transactionId) as SignalVector;
-        const { logit, leverage } = scorer.score(vector);
-        return {
-          transactionId,
-          kind: "refresh" as const,
-          takenAt: now,
-          vector: vectorToBytes(vector),
-          missing: Buffer.from(missing),
-          signalSetVersion: SIGNAL_SET_VERSION,
-          scorerVersion: version,
-          policyVersion: policy.version,
-          logit,
-          leverage,
-          zone: zoneOf(logit, thresholds),
-        };
-      }),
-    )
-    .$returningId();
+  await tx.insert(scores).values(
+    changed.map(({ transactionId }) => {
+      const { vector, missing } = vectors.get(transactionId) as SignalVector;
+      const { logit, leverage } = scorer.score(vector);
+      return {
+        transactionId,
+        kind: "refresh" as const,
+        takenAt: now,
+        vector: vectorToBytes(vector),
+        missing: Buffer.from(missing),
+        signalSetVersion: SIGNAL_SET_VERSION,
+        scorerVersion: version,
+        policyVersion: policy.version,
+        logit,
+        leverage,
+        zone: zoneOf(logit, thresholds),
+      };
+    }),
+  );
+  const scoreIds = await newestRefreshes(
+    tx,
+    changed.map(({ transactionId }) => transactionId),
+  );
   const caseIds = changed.map(({ caseId }) => caseId);
   await tx
     .select({ id: cases.id })
@@ -156,9 +177,16 @@ async function writeScores(
   // One that was decided meanwhile keeps the score its verdict was given on.
   await tx.execute(sql`
     update ${cases} join ${scores} on ${scores.transactionId} = ${cases.transactionId}
-    set ${cases.scoreId} = ${scores.id}, ${cases.changedAt} = ${now}
-    where ${inArray(
-      scores.id,
-      inserted.map(({ id }) => id),
-    )} and ${inArray(cases.state, [...UNDECIDED_STATES])}`);
+    set ${cases.scoreId} = ${scores.id}, ${cases.changedAt} = ${ctx.now()}
+    where ${inArray(scores.id, scoreIds)} and ${inArray(cases.state, [...UNDECIDED_STATES])}`);
+}
+
+/** Read back: how far apart the ids of one statement's rows are is the database's own affair. */
+async function newestRefreshes(tx: Tx, transactionIds: readonly string[]): Promise<number[]> {
+  const rows = await tx
+    .select({ id: max(scores.id) })
+    .from(scores)
+    .where(and(inArray(scores.transactionId, [...transactionIds]), eq(scores.kind, "refresh")))
+    .groupBy(scores.transactionId);
+  return rows.flatMap(({ id }) => id ?? []);
 }

@@ -1,5 +1,5 @@
-import { eq, inArray } from "drizzle-orm";
-import { beforeAll, describe, expect, test } from "vitest";
+import { and, eq, inArray } from "drizzle-orm";
+import { beforeAll, describe, expect, test, vi } from "vitest";
 import { createDatabase } from "@/db/client";
 import { bytesToVector, vectorToBytes } from "@/db/columns";
 import { cases } from "@/db/schema/cases";
@@ -18,6 +18,9 @@ import { saveDraft } from "@/lib/cases/save-draft";
 import { setCaseWaiting } from "@/lib/cases/wait";
 import type { Context, PersonActor } from "@/lib/context";
 import { decideCase } from "@/lib/decisions/decide";
+import type { DecideInput } from "@/lib/decisions/schema";
+import { undoDecision } from "@/lib/decisions/undo";
+import { log } from "@/lib/log";
 import { recomputeVectors } from "@/lib/signals/recompute";
 import { testWorld, type WaitingCase, WORLD_START, type World } from "../support/world";
 
@@ -44,7 +47,7 @@ const paymentOf = async ({ transactionId }: WaitingCase) =>
   (await world.db.select().from(transactions).where(eq(transactions.id, transactionId)))[0];
 const batches = async (act: string) => world.db.select().from(trail).where(eq(trail.act, act));
 
-const decide = (id: string, person = mira, at = WORLD_START) =>
+const decide = (id: string, person = mira, at = WORLD_START, together: DecideInput["together"] = []) =>
   decideCase(world.ctx(person, at), {
     id,
     verdict: "fraudulent",
@@ -52,7 +55,7 @@ const decide = (id: string, person = mira, at = WORLD_START) =>
     confidence: "sure",
     seenVersion: 1,
     scoreWasHidden: false,
-    together: [],
+    together,
   });
 
 describe("when a lease runs out", () => {
@@ -181,6 +184,23 @@ describe("when nobody reaches an alert in its lifetime", () => {
   });
 });
 
+test("a case that was opened to be decided together with another, and then undone, lapses as alerts do", async () => {
+  const [main, sibling] = (await waiting(2, { accountId: "ACC-TOGETHER" })) as [WaitingCase, WaitingCase];
+  await world.db.delete(cases).where(eq(cases.id, sibling.caseId));
+  const { transactionId } = sibling;
+  await decide(main.caseId, mira, WORLD_START, [{ transactionId, verdict: "legitimate", typology: null }]);
+  await undoDecision(world.ctx(mira, minutes(1)), { id: main.caseId });
+  const siblingRow = async () =>
+    (await world.db.select().from(cases).where(eq(cases.transactionId, transactionId)))[0];
+  const opened = await siblingRow();
+  expect(opened).toMatchObject({ kind: "sibling", state: "open" });
+  const lapsesAt = opened?.lapsesAt as Date;
+  await lapseUnreachedCases(job(new Date(lapsesAt.getTime() - 1)), signal);
+  expect(await siblingRow()).toMatchObject({ state: "open" });
+  await lapseUnreachedCases(job(lapsesAt), signal);
+  expect(await siblingRow()).toMatchObject({ state: "lapsed", decidedAt: null });
+});
+
 describe("when a payment is labelled", () => {
   const scoresOf = ({ transactionId }: WaitingCase) =>
     world.db.select().from(scores).where(eq(scores.transactionId, transactionId)).orderBy(scores.id);
@@ -248,6 +268,42 @@ describe("when a payment is labelled", () => {
     // The ranking has its new signals too.
     const logit = await rankingOf(world.db).read(minutes(4), (view) => view.logitOf(byDevice.caseId));
     expect(Math.abs((logit as number) - fresh.logit)).toBeLessThan(1e-9);
+  });
+
+  test("of too many linked cases the closest are scored anew, then the newest, and the log says so", async () => {
+    const made = await waiting(504);
+    const [labelled, byDevice, oldest, old] = made as [WaitingCase, WaitingCase, WaitingCase, WaitingCase];
+    const change = (one: WaitingCase, values: Partial<typeof transactions.$inferInsert>) =>
+      world.db.update(transactions).set(values).where(eq(transactions.id, one.transactionId));
+    await change(labelled, { deviceId: "device-of-many" });
+    await change(byDevice, { deviceId: "device-of-many", occurredAt: days(-30) });
+    await change(oldest, { occurredAt: days(-20) });
+    await change(old, { occurredAt: days(-10) });
+    await decide(labelled.caseId);
+    const warn = vi.spyOn(log, "warn");
+    await refreshLinkedCases(job(minutes(1)), signal);
+    expect(warn).toHaveBeenCalledWith(
+      { labelledPayments: 1, mostRefreshed: 500 },
+      expect.stringContaining("linked"),
+    );
+    warn.mockRestore();
+    const refreshed = await world.db
+      .select({ transactionId: scores.transactionId })
+      .from(scores)
+      .innerJoin(cases, eq(cases.scoreId, scores.id))
+      .where(
+        and(
+          eq(scores.kind, "refresh"),
+          inArray(
+            cases.id,
+            made.map(({ caseId }) => caseId),
+          ),
+        ),
+      );
+    const ids = new Set(refreshed.map(({ transactionId }) => transactionId));
+    expect(ids.size).toBe(500);
+    expect(ids).toContain(byDevice.transactionId);
+    for (const left of [labelled, oldest, old]) expect(ids).not.toContain(left.transactionId);
   });
 
   test("two servers that refresh at once give each linked case one new score", async () => {
