@@ -6,6 +6,7 @@ const ACT_WORDS: Readonly<Record<string, string>> = {
   "case.released": "Put back",
   "case.lease_expired": "Claim ran out",
   "case.assigned": "Assigned",
+  "case.freed": "Freed, as its reviewer may no longer decide it",
   "case.escalated": "Escalated",
   "case.set_aside": "Set aside",
   "case.came_back": "Came back",

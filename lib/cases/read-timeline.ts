@@ -61,7 +61,8 @@ function peopleIn({
   onBehalfOf: string | null;
   facts: Facts;
 }) {
-  const named = [actorId, onBehalfOf, facts.to, facts.claimEndedOf, facts.claimOf, facts.lapsedClaimOf];
+  const { to, assignedFrom, claimEndedOf, claimOf, lapsedClaimOf } = facts;
+  const named = [actorId, onBehalfOf, to, assignedFrom, claimEndedOf, claimOf, lapsedClaimOf];
   return named.flatMap((id) => (typeof id === "string" && UUID.test(id) ? id : []));
 }
 

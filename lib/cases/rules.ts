@@ -1,3 +1,4 @@
+import { rolesMay } from "../auth/access";
 import type { Role } from "../auth/codes";
 import { conflict, forbidden, type KnownError, ruleBroken } from "../errors";
 import { type CaseState, LEASE_MINUTES } from "./codes";
@@ -131,6 +132,22 @@ export function assign(row: CaseStanding, to: Asker | null, now: Date): CaseChan
   const holder = holderOf(row, now);
   if (holder !== null && holder === assignedTo) return { assignedTo, escalatedAt };
   return { assignedTo, escalatedAt, state: unheldState(escalatedAt), ...UNHELD };
+}
+
+/** Whether a case may go on being this person's: nobody keeps what they have lost the right to decide. */
+export function staysWith(row: Pick<CaseStanding, "escalatedAt">, person: Asker): boolean {
+  return rolesMay(person.roles, "desk.work") && (row.escalatedAt === null || isSupervisor(person));
+}
+
+/** Takes a case from somebody who may no longer decide it; null where nothing is theirs or it may stay. */
+export function freeFrom(row: CaseStanding, person: Asker): CaseChange | null {
+  if (closed(row) || staysWith(row, person)) return null;
+  const isHeld = row.claimedBy === person.personId;
+  if (!isHeld && row.assignedTo !== person.personId) return null;
+  return {
+    assignedTo: row.assignedTo === person.personId ? null : row.assignedTo,
+    ...(isHeld ? { state: unheldState(row.escalatedAt), ...UNHELD } : {}),
+  };
 }
 
 /** What the clock does to a case; null when nothing is due. */

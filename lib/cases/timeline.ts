@@ -24,6 +24,11 @@ export function detailOf(
       const ended = nameOf(facts.claimEndedOf);
       return joined(to && `to ${to}`, ended && `the claim of ${ended} ended`);
     }
+    case "case.freed": {
+      const from = nameOf(facts.assignedFrom);
+      const ended = nameOf(facts.claimEndedOf);
+      return joined(from && `was assigned to ${from}`, ended && `the claim of ${ended} ended`);
+    }
     case "case.claimed":
     case "case.handed_out": {
       const lapsed = nameOf(facts.lapsedClaimOf);

@@ -2,6 +2,8 @@ import "server-only";
 import { eq } from "drizzle-orm";
 import { people, personRoles } from "@/db/schema/people";
 import { demand } from "../auth/demand";
+import { freeCases, lockCasesNotFor } from "../cases/free-cases";
+import { casesChanged } from "../cases/notify";
 import type { Context } from "../context";
 import { invalid } from "../errors";
 import { appendTrail } from "../trail/append";
@@ -11,11 +13,16 @@ import { readPersonOrThrow } from "./read";
 import { rolesProblem } from "./rules";
 import type { PersonView, SetRolesInput } from "./schema";
 
+/** Undecided cases that they may no longer decide go back to everybody, or to the supervisors. */
 export async function setRoles(ctx: Context, { id, roles }: SetRolesInput): Promise<PersonView> {
   demand(ctx, "people.manage");
   const problem = rolesProblem(roles);
   if (problem) throw invalid([{ path: "roles", message: problem }]);
-  return writeOnce(ctx, async (tx) => {
+  const freed: string[] = [];
+  const view = await writeOnce(ctx, async (tx) => {
+    freed.length = 0;
+    const changed = { personId: id, roles };
+    const theirCases = await lockCasesNotFor(tx, changed);
     const locked = await lockPersonOrThrow(tx, id);
     const { person } = locked;
     const now = ctx.now();
@@ -32,12 +39,17 @@ export async function setRoles(ctx: Context, { id, roles }: SetRolesInput): Prom
       .set({ sessionVersion: person.sessionVersion + 1 })
       .where(eq(people.id, id));
     const view = await readPersonOrThrow(tx, id, now);
-    await appendTrail(ctx, tx, {
+    const entries = await freeCases(tx, theirCases, changed, now);
+    freed.push(...entries.map(({ caseId }) => caseId));
+    const entry = {
       act: "person.roles_changed",
       subjectKind: "person",
       subjectId: id,
       facts: { from: person.roles, to: roles },
-    });
+    };
+    await appendTrail(ctx, tx, entry, ...entries);
     return view;
   });
+  casesChanged(freed);
+  return view;
 }

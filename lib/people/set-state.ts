@@ -2,6 +2,8 @@ import "server-only";
 import { eq } from "drizzle-orm";
 import { people } from "@/db/schema/people";
 import { demand } from "../auth/demand";
+import { freeCases, lockCasesNotFor } from "../cases/free-cases";
+import { casesChanged } from "../cases/notify";
 import type { Context } from "../context";
 import { appendTrail } from "../trail/append";
 import { writeOnce } from "../write-once";
@@ -9,7 +11,10 @@ import { lockPersonOrThrow, refuseLosingLastAdministrator } from "./lock";
 import { readPersonOrThrow } from "./read";
 import type { PersonInput, PersonView } from "./schema";
 
-/** Their sessions end with the next request, and keys that act for them stop working. */
+/**
+ * Their sessions end with the next request, keys that act for them stop working, and their undecided cases go back to
+ * everybody, or to the supervisors.
+ */
 export const deactivatePerson = (ctx: Context, input: PersonInput) => setState(ctx, input, "deactivated");
 
 export const reactivatePerson = (ctx: Context, input: PersonInput) => setState(ctx, input, "active");
@@ -20,22 +25,32 @@ async function setState(
   state: "active" | "deactivated",
 ): Promise<PersonView> {
   demand(ctx, "people.manage");
-  return writeOnce(ctx, async (tx) => {
+  const freed: string[] = [];
+  const view = await writeOnce(ctx, async (tx) => {
+    const now = ctx.now();
+    freed.length = 0;
+    const nobody = { personId: id, roles: [] };
+    const theirCases = state === "deactivated" ? await lockCasesNotFor(tx, nobody) : [];
     const locked = await lockPersonOrThrow(tx, id);
     const { person } = locked;
-    if (person.state === state) return readPersonOrThrow(tx, id, ctx.now());
+    if (person.state === state) return readPersonOrThrow(tx, id, now);
     if (state === "deactivated") refuseLosingLastAdministrator(locked, false, "id");
     await tx
       .update(people)
       .set({ state, sessionVersion: person.sessionVersion + 1 })
       .where(eq(people.id, id));
-    const view = await readPersonOrThrow(tx, id, ctx.now());
-    await appendTrail(ctx, tx, {
+    const view = await readPersonOrThrow(tx, id, now);
+    const entries = await freeCases(tx, theirCases, nobody, now);
+    freed.push(...entries.map(({ caseId }) => caseId));
+    const changed = {
       act: state === "active" ? "person.reactivated" : "person.deactivated",
       subjectKind: "person",
       subjectId: id,
       facts: {},
-    });
+    };
+    await appendTrail(ctx, tx, changed, ...entries);
     return view;
   });
+  casesChanged(freed);
+  return view;
 }
