@@ -35,6 +35,17 @@ describe("when last week's summary is due", () => {
     expect(due(mondayAt8("UTC"), "2026-12-07T08:00:00Z")).toBe("2026-W49");
   });
 
+  test("for a day at least, where the chosen hour is among the last of the week", () => {
+    const sundayAt23 = { ...mondayAt8("UTC"), weekday: 7, hour: 23 };
+    expect(due(sundayAt23, "2026-12-06T22:59:59Z")).toBeNull();
+    expect(due(sundayAt23, "2026-12-06T23:00:00Z")).toBe("2026-W48");
+    expect(due(sundayAt23, "2026-12-07T00:00:00Z")).toBe("2026-W48");
+    expect(due(sundayAt23, "2026-12-07T22:59:59Z")).toBe("2026-W48");
+    expect(due(sundayAt23, "2026-12-07T23:00:00Z")).toBeNull();
+    const late = { ...sundayAt23, subscribedAt: new Date("2026-12-06T23:00:01Z") };
+    expect(due(late, "2026-12-07T00:00:00Z")).toBeNull();
+  });
+
   test("never before the week is over where it is reckoned", () => {
     // Monday 08:00 in Auckland is Sunday 19:00 in UTC.
     expect(due(mondayAt8("Pacific/Auckland"), "2026-11-29T19:00:00Z")).toBeNull();
