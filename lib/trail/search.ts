@@ -9,6 +9,7 @@ import { invalid } from "../errors";
 import { appendTrail } from "./append";
 import { entryViews } from "./entry-views";
 import type { TrailInput, TrailView } from "./schema";
+import { searchFacts, type TrailFilters } from "./search-facts";
 
 /** One search is one entry, however many of its pages are read. */
 export async function searchTrail(ctx: Context, input: TrailInput): Promise<TrailView> {
@@ -29,20 +30,19 @@ export async function searchTrail(ctx: Context, input: TrailInput): Promise<Trai
   const last = page.at(-1);
   const items = await entryViews(ctx.db, page);
   if (!cursor) {
+    const facts = searchFacts(filters, { act: await knownAct(ctx, filters.act), caseId });
     await inTransaction(ctx.db, (tx) =>
-      appendTrail(ctx, tx, { act: "trail.read", subjectKind: "trail", subjectId: "search", facts: filters }),
+      appendTrail(ctx, tx, { act: "trail.read", subjectKind: "trail", subjectId: "search", facts }),
     );
   }
   return { items, next: rows.length > limit && last ? cursorOf(last.seq) : null };
 }
 
-type Filters = Omit<TrailInput, "cursor" | "limit">;
-
-function conditions(filters: Filters, caseId: string | undefined): (SQL | undefined)[] {
+function conditions(filters: TrailFilters, caseId: string | undefined): (SQL | undefined)[] {
   const { act, person, subject, from, to } = filters;
   const [kind = "", ...id] = subject?.split(":") ?? [];
   return [
-    act && (act.endsWith(".") ? like(trail.act, `${act.replace(/[\\%_]/g, "\\$&")}%`) : eq(trail.act, act)),
+    act && actIs(act),
     person && or(eq(trail.actorId, person), eq(trail.onBehalfOf, person)),
     caseId && eq(trail.caseId, caseId),
     subject && and(eq(trail.subjectKind, kind), eq(trail.subjectId, id.join(":"))),
@@ -50,6 +50,16 @@ function conditions(filters: Filters, caseId: string | undefined): (SQL | undefi
     to && lt(trail.at, new Date(to)),
   ].map((condition) => condition || undefined);
 }
+
+/** The act, or family of acts, that was asked for; null where the trail has no such act. */
+async function knownAct(ctx: Context, act: string | undefined): Promise<string | null> {
+  if (!act) return null;
+  const [row] = await ctx.db.select({ act: trail.act }).from(trail).where(actIs(act)).limit(1);
+  return row ? act : null;
+}
+
+const actIs = (act: string): SQL =>
+  act.endsWith(".") ? like(trail.act, `${act.replace(/[\\%_]/g, "\\$&")}%`) : eq(trail.act, act);
 
 async function caseIdOf(ctx: Context, idOrNumber: string | undefined): Promise<string | undefined | null> {
   if (idOrNumber === undefined || !/^\d+$/.test(idOrNumber)) return idOrNumber;

@@ -63,16 +63,46 @@ test("takes entries from the first moment on and up to the second", async () => 
   expect(await found("2000-01-01T00:00:00Z", at)).toBe(0);
 });
 
-test("each search is an entry with its filters; further pages of it are not", async () => {
+test("each search is an entry; further pages of it are not", async () => {
   await search({ act: "no.such_act" });
   const recorded = await search({ act: "trail.read", person: auditor.personId, limit: 1 });
-  expect(recorded.items[0]).toMatchObject({ act: "trail.read", facts: { act: "no.such_act" } });
+  expect(recorded.items[0]).toMatchObject({ act: "trail.read", facts: { filters: ["act"] } });
   const before = (await search({ act: "trail.read", limit: 500 })).items.length;
   const first = await search({ limit: 1 });
   await search({ limit: 1, cursor: first.next });
   const after = (await search({ act: "trail.read", limit: 500 })).items.length;
   // The two counting searches are entries too: one before the second count, and the one of the first page.
   expect(after - before).toBe(2);
+});
+
+test("a search leaves ids, moments and acts that exist in its entry, and nothing else that was typed", async () => {
+  const factsOf = async (filters: Record<string, unknown>) => {
+    await search(filters);
+    return (await search({ act: "trail.read", person: auditor.personId, limit: 1 })).items[0]?.facts;
+  };
+  expect(await factsOf({})).toEqual({ filters: [] });
+  expect(await factsOf({ act: "person.added" })).toEqual({ filters: ["act"], act: "person.added" });
+  expect(await factsOf({ act: "person." })).toEqual({ filters: ["act"], act: "person." });
+  expect(await factsOf({ person: addedId, subject: `person:${addedId}` })).toEqual({
+    filters: ["person", "subject"],
+    person: addedId,
+    subjectId: addedId,
+  });
+  const from = "2026-01-01T00:00:00Z";
+  expect(await factsOf({ from })).toEqual({ filters: ["from"], from: "2026-01-01T00:00:00.000Z" });
+  for (const typed of ["Nora New", "nora.", "PERSON.", "person", "person.added by Nora", "%."]) {
+    expect(await factsOf({ act: typed })).toEqual({ filters: ["act"] });
+  }
+  for (const typed of ["person:Nora New", "nora_new:Nora", `person:Nora ${addedId}`]) {
+    expect(await factsOf({ subject: typed })).toEqual({ filters: ["subject"] });
+  }
+  expect(await factsOf({ subject: `nora_new:${addedId}` })).toEqual({
+    filters: ["subject"],
+    subjectId: addedId,
+  });
+  // What no case has for its number might be any number, such as a telephone's.
+  expect(await factsOf({ case: "442071234567" })).toEqual({ filters: ["case"] });
+  expect(await factsOf({ case: addedId })).toEqual({ filters: ["case"], caseId: addedId });
 });
 
 test("pages meet without gap or repeat, and the last one says so", async () => {
