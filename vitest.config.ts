@@ -18,7 +18,7 @@ export default defineConfig({
   oxc: { jsx: { runtime: "automatic" } },
   test: {
     maxWorkers: 2,
-    testTimeout: 30_000,
+    testTimeout: 120_000,
     hookTimeout: 60_000,
     projects: [
       {
