@@ -74,6 +74,9 @@ async function settled(page: Page): Promise<void> {
   await expect(page.locator(".motion-safe\\:animate-pulse")).toHaveCount(0);
 }
 
+// Four times over every element of a page: long on a page of long tables.
+test.slow();
+
 for (const path of paths) {
   test(`${path} can be used by everybody, in both themes, on a wide and a narrow screen`, async ({
     page: signedOut,
@@ -90,20 +93,18 @@ for (const path of paths) {
 
 test.describe("what opens over a page can be used by everybody, too", () => {
   const dialogs = { "?": "Shortcuts", q: "Escalate case", a: "Set case" };
-  test("the Desk's dialogs", async ({ office, openAs }) => {
-    const person = await office.person("reviewer");
-    await office.openCases(suspiciousPayments(2), person);
-    const page = await openAs(person);
-    const desk = new DeskPage(page);
-    await desk.open();
-    for (const [key, title] of Object.entries(dialogs)) {
+  for (const [key, title] of Object.entries(dialogs)) {
+    test(`the Desk's “${title}”`, async ({ office, openAs }) => {
+      const person = await office.person("reviewer");
+      await office.openCases(suspiciousPayments(2), person);
+      const page = await openAs(person);
+      const desk = new DeskPage(page);
+      await desk.open();
       await press(page, key);
       await expect(desk.dialog.getByRole("heading", { name: title })).toBeVisible();
       await expectAccessible(page);
-      await press(page, "Escape");
-      await expect(desk.heading).toBeFocused();
-    }
-  });
+    });
+  }
 
   test("the form that proposes a policy", async ({ office, openAs }) => {
     const page = await openAs(await office.person("supervisor"));

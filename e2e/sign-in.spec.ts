@@ -153,10 +153,13 @@ test("a session that has ended asks for the password, and then the verdict that 
 }) => {
   complaints.expectStatus(401);
   const person = await office.person("reviewer");
-  await office.openCases(suspiciousPayments(2), person);
+  const opened = await office.openCases(suspiciousPayments(2), person);
   const page = await openAs(person);
   const desk = new DeskPage(page);
   const hand = await desk.open();
+  const [other] = opened.filter(({ caseId }) => caseId !== hand.caseId);
+  // Everything that the Desk fetches ahead is there.
+  await expect(desk.row(other?.number ?? 0)).toContainText("next");
   await db
     .update(people)
     .set({ sessionVersion: sql`${people.sessionVersion} + 1` })

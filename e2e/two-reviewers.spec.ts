@@ -139,6 +139,7 @@ test.describe("when a case is taken away meanwhile", () => {
     await expect(page.getByText("Live", { exact: true })).toBeVisible();
     await press(page, "f");
     await page.keyboard.type(note);
+    await expect.poll(() => readDraft(db, opened.caseId)).toBe(note);
     await office.assign([opened], another);
     await expect(desk.status).toContainText(`Case ${opened.number} is no longer in your hands`);
     await expect(desk.note).toBeFocused();
@@ -150,5 +151,6 @@ test.describe("when a case is taken away meanwhile", () => {
     expect(await findDecision(db, opened.caseId)).toBeNull();
     await press(page, "e");
     await desk.nextAfter(hand);
+    expect(await readDraft(db, opened.caseId)).toBe(note);
   });
 });
