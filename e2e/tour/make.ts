@@ -1,5 +1,6 @@
 import { type Browser, chromium, type Page } from "@playwright/test";
 import type { Role } from "@/lib/auth/codes";
+import { SignInPage } from "../pages/sign-in";
 import { CHROMIUM } from "../support/chromium";
 import { demoPerson } from "../support/demo";
 
@@ -47,9 +48,8 @@ async function take(browser: Browser, { file, role, path, theme, ready }: Pictur
 
 async function signIn(page: Page, role: Role): Promise<void> {
   const { email, password } = demoPerson(role);
-  await page.goto("/sign-in");
-  await page.getByLabel("E-mail").fill(email);
-  await page.getByLabel("Password").fill(password);
-  await page.getByRole("button", { name: "Sign in", exact: true }).click();
+  const form = new SignInPage(page);
+  await form.open();
+  await form.enter(email, password);
   await page.waitForURL((url) => url.pathname !== "/sign-in");
 }
