@@ -1,55 +1,96 @@
+import path from "node:path";
 import { type Browser, chromium, type Page } from "@playwright/test";
 import type { Role } from "@/lib/auth/codes";
-import { SignInPage } from "../pages/sign-in";
+import { startApp } from "@/tests/support/app";
+import { DeskPage } from "../pages/desk";
+import { press } from "../pages/keyboard";
+import { menuLinks, SignInPage } from "../pages/sign-in";
 import { CHROMIUM } from "../support/chromium";
 import { demoPerson } from "../support/demo";
 
-/** Makes the README's pictures from a demo that runs: `npx tsx e2e/tour/make.ts http://127.0.0.1:3000`. */
-const [address = "http://127.0.0.1:3000"] = process.argv.slice(2);
+/**
+ * Makes the README's pictures anew, on a demo of their own:
+ * `TSX_TSCONFIG_PATH=db/commands/tsconfig.json node --import tsx e2e/tour/make.ts`
+ */
+type Picture = {
+  as: Role;
+  dark?: boolean;
+  /** Brings the page to what is to be seen. */
+  show: (page: Page) => Promise<void>;
+};
 
-type Picture = { file: string; role: Role; path: string; theme: "light" | "dark"; ready: string };
+const open = (name: string) => async (page: Page) => {
+  await menuLinks(page).filter({ hasText: name }).click();
+  await page.getByRole("heading", { level: 1, name: new RegExp(`^${name}`) }).waitFor();
+};
 
-const PICTURES: readonly Picture[] = [
-  { file: "desk-light", role: "reviewer", path: "/desk", theme: "light", ready: "[data-case-id] h2" },
-  { file: "desk-dark", role: "reviewer", path: "/desk", theme: "dark", ready: "[data-case-id] h2" },
-  { file: "floor", role: "supervisor", path: "/floor", theme: "light", ready: "h1" },
-  { file: "policy", role: "risk_manager", path: "/policy", theme: "light", ready: "h1" },
-  { file: "losses", role: "risk_manager", path: "/losses", theme: "light", ready: "h1" },
-  { file: "trail", role: "auditor", path: "/trail", theme: "light", ready: "h1" },
-  { file: "intake", role: "supervisor", path: "/intake", theme: "light", ready: "h1" },
-];
+const PICTURES: Record<string, Picture> = {
+  "desk-light": {
+    as: "reviewer",
+    show: async (page) => {
+      const desk = new DeskPage(page);
+      await desk.inHand();
+      await press(page, "ArrowRight", "ArrowRight", "4");
+    },
+  },
+  "desk-dark": {
+    as: "reviewer",
+    dark: true,
+    show: async (page) => {
+      const desk = new DeskPage(page);
+      await desk.inHand();
+      await press(page, "d");
+    },
+  },
+  floor: { as: "supervisor", show: open("Floor") },
+  policy: { as: "supervisor", show: open("Policy") },
+  losses: { as: "risk_manager", show: open("Losses") },
+  trail: { as: "auditor", show: open("Trail") },
+  intake: { as: "supervisor", show: importWithFaults },
+};
 
-const browser = await chromium.launch(CHROMIUM);
-try {
-  for (const picture of PICTURES) await take(browser, picture);
-} finally {
-  await browser.close();
+/** A handful of payments, two of which cannot come in. */
+async function importWithFaults(page: Page): Promise<void> {
+  await open("Intake")(page);
+  const rows = Array.from({ length: 40 }, (_, index) => {
+    const amount = index === 11 ? "thirteen" : (8.5 + index).toFixed(2);
+    const currency = index === 23 ? "EURO" : "EUR";
+    return `N-${1000 + index},2026-11-30T${10 + (index % 10)}:15:00Z,${amount},${currency},card_present,AC-${index},SHOP-4`;
+  });
+  const head = "Payment ref,When,Value,Ccy,Channel,Customer,Merchant";
+  const buffer = Buffer.from([head, ...rows, ""].join("\r\n"));
+  const file = { name: "branch-payments.csv", mimeType: "text/csv", buffer };
+  await page.getByLabel("Choose a CSV file, or drop one here").setInputFiles(file);
+  await page.getByRole("button", { name: "Send the file" }).click();
+  await page.getByRole("link", { name: "Follow it" }).click();
+  await page.getByText("2 rows were rejected").waitFor();
 }
 
-async function take(browser: Browser, { file, role, path, theme, ready }: Picture): Promise<void> {
-  const context = await browser.newContext({
-    baseURL: address,
+async function take(browser: Browser, baseURL: string, name: string, picture: Picture): Promise<void> {
+  const page = await browser.newPage({
+    baseURL,
     viewport: { width: 1280, height: 800 },
-    colorScheme: theme,
+    colorScheme: picture.dark ? "dark" : "light",
+    reducedMotion: "reduce",
     locale: "en-GB",
     timezoneId: "Europe/Dublin",
-    reducedMotion: "reduce",
   });
-  const page = await context.newPage();
-  await signIn(page, role);
-  await page.goto(path);
-  await page.locator(ready).first().waitFor();
-  // The live stream never ends, so the network is never idle; what is on screen has had its time.
-  await page.waitForTimeout(1_500);
-  await page.screenshot({ path: `e2e/tour/${file}.png` });
-  console.log(`${file}.png`);
-  await context.close();
-}
-
-async function signIn(page: Page, role: Role): Promise<void> {
-  const { email, password } = demoPerson(role);
+  const { email, password } = demoPerson(picture.as);
   const form = new SignInPage(page);
   await form.open();
   await form.enter(email, password);
   await page.waitForURL((url) => url.pathname !== "/sign-in");
+  await picture.show(page);
+  await page.waitForTimeout(1_500);
+  await page.screenshot({ path: path.join(import.meta.dirname, `${name}.png`) });
+  await page.close();
+}
+
+const app = await startApp({ env: { CUPEL_DEMO: "1" } });
+const browser = await chromium.launch(CHROMIUM);
+try {
+  for (const [name, picture] of Object.entries(PICTURES)) await take(browser, app.url, name, picture);
+} finally {
+  await browser.close();
+  await app.stop();
 }
