@@ -13,7 +13,7 @@ import { cases, decisions } from "../schema/cases";
 import { summaryRecipients } from "../schema/mail";
 import type { DemoTransaction, Truth } from "./payment";
 import { Chance } from "./random";
-import { scenarioDays } from "./scenario";
+import { DEMO_DAYS, scenarioDays } from "./scenario";
 import { correctMistake, type Mistake, workShift } from "./shift";
 import { type Clock, clockFrom, contextAt, type Team } from "./team";
 
@@ -22,6 +22,8 @@ const SOURCE = "core-banking";
 /** Hours of the day at which the payments since the last one have come in. */
 const DELIVERIES = [6, 10, 14, 18, 24];
 const CASES_A_SHIFT = 3;
+/** Two of the reviewers are away in the end, so that whoever looks around finds work waiting. */
+const SHORT_DAYS = 3;
 const CHARGEBACK_AFTER_DAYS = 11;
 /** By the day of the scenario: proposed by a supervisor, approved by the risk manager. */
 const POLICY_CHANGES: Record<number, { reason: string; terms: Partial<PolicyTerms> }> = {
@@ -67,7 +69,8 @@ export async function liveMonth(
       await deliver(ctx, clock, happened, from, until);
       from = until;
       if (hour >= 24 || until >= now) continue;
-      for (const reviewer of hour < 10 ? team.reviewer.slice(0, 1) : team.reviewer) {
+      const isShort = hour < 10 || dayNumber >= DEMO_DAYS - SHORT_DAYS;
+      for (const reviewer of isShort ? team.reviewer.slice(0, 1) : team.reviewer) {
         mistakes.push(...(await workShift(ctx, clock, chance, reviewer, CASES_A_SHIFT, truthOf)));
       }
     }
