@@ -1,6 +1,7 @@
 import path from "node:path";
 import { type Browser, chromium, type Page } from "@playwright/test";
 import type { Role } from "@/lib/auth/codes";
+import type { QueueView } from "@/lib/cases/schema";
 import { startApp } from "@/tests/support/app";
 import { DeskPage } from "../pages/desk";
 import { press } from "../pages/keyboard";
@@ -15,6 +16,8 @@ import { demoPerson } from "../support/demo";
 type Picture = {
   as: Role;
   dark?: boolean;
+  /** Seen from so much farther away, for what needs a large screen; the picture keeps its size. */
+  zoom?: number;
   /** Brings the page to what is to be seen. */
   show: (page: Page) => Promise<void>;
 };
@@ -28,26 +31,24 @@ const PICTURES: Record<string, Picture> = {
   "desk-light": {
     as: "reviewer",
     show: async (page) => {
-      const desk = new DeskPage(page);
-      await desk.inHand();
-      await press(page, "ArrowRight", "ArrowRight", "4");
+      await openHeaviest(page);
+      await press(page, "ArrowRight", "ArrowRight", "3");
     },
   },
-  "desk-dark": {
-    as: "reviewer",
-    dark: true,
-    show: async (page) => {
-      const desk = new DeskPage(page);
-      await desk.inHand();
-      await press(page, "d");
-    },
-  },
+  "desk-dark": { as: "reviewer", dark: true, zoom: 2 / 3, show: openHeaviest },
   floor: { as: "supervisor", show: open("Floor") },
   policy: { as: "supervisor", show: open("Policy") },
   losses: { as: "risk_manager", show: open("Losses") },
-  trail: { as: "auditor", show: open("Trail") },
+  trail: { as: "auditor", show: async (page) => void (await page.goto("/trail?act=case.decided")) },
   intake: { as: "supervisor", show: importWithFaults },
 };
+
+/** The free case that the evidence speaks against most. */
+async function openHeaviest(page: Page): Promise<void> {
+  const answer = await page.request.get("/api/queue?state=open&assignee=nobody&limit=1");
+  const { items } = (await answer.json()) as QueueView;
+  await new DeskPage(page).open(items[0]?.caseId);
+}
 
 /** A handful of payments, two of which cannot come in. */
 async function importWithFaults(page: Page): Promise<void> {
@@ -67,9 +68,11 @@ async function importWithFaults(page: Page): Promise<void> {
 }
 
 async function take(browser: Browser, baseURL: string, name: string, picture: Picture): Promise<void> {
+  const { zoom = 1 } = picture;
   const page = await browser.newPage({
     baseURL,
-    viewport: { width: 1280, height: 800 },
+    viewport: { width: 1280 / zoom, height: 800 / zoom },
+    deviceScaleFactor: zoom,
     colorScheme: picture.dark ? "dark" : "light",
     reducedMotion: "reduce",
     locale: "en-GB",
