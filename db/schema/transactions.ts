@@ -144,7 +144,7 @@ export const labelledEntities = mysqlTable(
 
 export const signalSets = mysqlTable("signal_sets", {
   version: int().primaryKey(),
-  /** Keys of the catalogue in the order of the vector. */
+  /** Keys and formulas of the catalogue in the order of the vector. */
   definition: json<unknown>()().notNull(),
   createdAt: instant().notNull(),
 });

@@ -10,6 +10,7 @@ import { newId } from "../new-id";
 import { policyInForce } from "../policy/read";
 import { createScorer } from "../scorer";
 import { CATALOGUE, DIMENSION, SIGNAL_SET_VERSION } from "../signals/catalogue";
+import { formulasOf } from "../signals/signal";
 import { appendTrail } from "../trail/append";
 
 /** Puts an untrained scorer in use on a new installation; of two servers starting at once, one does it. */
@@ -43,7 +44,8 @@ export async function ensureScorerInUse(ctx: Context): Promise<void> {
         .insert(signalSets)
         .values({
           version: SIGNAL_SET_VERSION,
-          definition: CATALOGUE.map((signal) => signal.key),
+          // With their formulas: years later a score can be explained from the record alone.
+          definition: CATALOGUE.map((signal) => ({ key: signal.key, formulas: formulasOf(signal) })),
           createdAt: now,
         })
         .onDuplicateKeyUpdate({ set: { version: SIGNAL_SET_VERSION } });

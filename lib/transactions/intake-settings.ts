@@ -30,8 +30,9 @@ export async function readExemptFields(db: Executor): Promise<ExemptFields> {
   return exemptFieldsOf(await readSettings(db));
 }
 
+/** Without a prototype: a source may be called like something that every object has. */
 function exemptFieldsOf(stored: Map<string, unknown>): ExemptFields {
-  return ExemptFields.parse(stored.get(EXEMPT_FIELDS_KEY) ?? {});
+  return Object.assign(Object.create(null), ExemptFields.parse(stored.get(EXEMPT_FIELDS_KEY) ?? {}));
 }
 
 async function readSettings(db: Executor): Promise<Map<string, unknown>> {

@@ -25,6 +25,7 @@ describe("identifier fields exempt from the search for card numbers", () => {
     expect(await listExemptFields(administrator)).toEqual(wanted);
     expect((await send("ledger"))[0]?.status).toBe("created");
     expect((await send("elsewhere"))[0]?.status).toBe("rejected");
+    expect((await send("constructor"))[0]?.status).toBe("rejected");
     const [entry] = await world.db.select().from(trail).where(eq(trail.act, "intake.exemptions_set"));
     expect(JSON.parse(entry?.facts ?? "")).toEqual({ before: {}, after: wanted.exemptIdentifierFields });
   });
