@@ -49,7 +49,12 @@ export function Links({ links, evidence, ticks, level = 4 }: LinksProps) {
 
 function LinkTable({ group, showScore, ticks }: { group: LinkGroup; showScore: boolean; ticks?: Ticks }) {
   return (
-    <div className="overflow-x-auto">
+    <section
+      className="overflow-x-auto"
+      aria-label={`${BY_WORDS[group.by]}, payments`}
+      // biome-ignore lint/a11y/noNoninteractiveTabindex: what scrolls must be reachable by keyboard (WCAG 2.1.1)
+      tabIndex={0}
+    >
       <table className="w-full table-fixed text-left text-small">
         <caption className="sr-only">{BY_WORDS[group.by]}</caption>
         <colgroup>
@@ -84,7 +89,7 @@ function LinkTable({ group, showScore, ticks }: { group: LinkGroup; showScore: b
           ))}
         </tbody>
       </table>
-    </div>
+    </section>
   );
 }
 
