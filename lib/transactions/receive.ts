@@ -1,5 +1,4 @@
 import "server-only";
-import { setImmediate } from "node:timers/promises";
 import type { Tx } from "@/db/client";
 import { isDuplicate } from "@/db/errors";
 import { demand } from "../auth/demand";
@@ -11,12 +10,11 @@ import { policyInForce } from "../policy/read";
 import { appendTrail } from "../trail/append";
 import { writeOnce } from "../write-once";
 import { countArrivals } from "./arrival-days";
-import { findStored } from "./find-stored";
 import { readIntakeSettings } from "./intake-settings";
-import { type Payment, readItem } from "./read-item";
-import { acceptedResult, otherContentResult, rejectedResult } from "./results";
+import { acceptedResult } from "./results";
 import type { TransactionResult, TransactionsView } from "./schema";
 import { type ScoredPayment, scorePayments } from "./score-payments";
+import { type Slot, sortItems } from "./sort-items";
 import { type ScoredUnder, storePayments } from "./store-payments";
 
 export type Batch = {
@@ -29,7 +27,6 @@ export type Batch = {
 
 /** Two senders of the same identifier at once: the slower one finds the other's payment the next time round. */
 const RACES_AT_MOST = 5;
-const ITEMS_IN_A_ROW = 200;
 
 /**
  * Takes payments in: checks, scores, zones, and in one transaction stores them, opens cases and says so in the trail.
@@ -59,8 +56,6 @@ export async function receiveBatch(ctx: Context, batch: Batch): Promise<Transact
   }
 }
 
-/** An item's result where it is known already, or its place among the payments to store. */
-type Slot = { result: TransactionResult } | { place: number; isRepeat: boolean };
 type Prepared = { slots: Slot[]; scored: ScoredPayment[]; under: ScoredUnder };
 
 async function prepare(ctx: Context, { source, items }: Batch): Promise<Prepared> {
@@ -70,45 +65,9 @@ async function prepare(ctx: Context, { source, items }: Batch): Promise<Prepared
     policyInForce(ctx.db, now),
     readScorerInUse(ctx.db),
   ]);
-  const { slots, payments } = await sort(ctx, source, items, settings.exempt, now);
+  const { slots, payments } = await sortItems(ctx.db, source, items, settings.exempt, now);
   const scored = await scorePayments(ctx.db, payments, held, policy, settings.sampleSecret, now);
   return { slots, scored, under: { policy, scorerVersion: held.version, source, now } };
-}
-
-/** Tells bad items, repeats of stored payments and repeats within the batch from new payments. */
-async function sort(
-  ctx: Context,
-  source: string,
-  items: readonly unknown[],
-  exempt: ReadonlySet<string>,
-  now: Date,
-): Promise<{ slots: Slot[]; payments: Payment[] }> {
-  const read = [];
-  for (const [index, item] of items.entries()) {
-    if (index % ITEMS_IN_A_ROW === ITEMS_IN_A_ROW - 1) await setImmediate();
-    read.push(readItem(item, now, exempt));
-  }
-  const sound = read.flatMap((item) => ("payment" in item ? item.payment.externalId : []));
-  const stored = await findStored(ctx.db, source, sound);
-  const payments: Payment[] = [];
-  const places = new Map<string, number>();
-  const slots = read.map((item): Slot => {
-    if ("errors" in item) return { result: rejectedResult(item.externalId, item.errors) };
-    const { payment } = item;
-    const known = stored.get(payment.externalId);
-    if (known) {
-      const isSame = known.contentHash.equals(payment.contentHash);
-      return { result: isSame ? known.result : otherContentResult(payment.externalId) };
-    }
-    const place = places.get(payment.externalId);
-    if (place === undefined) {
-      places.set(payment.externalId, payments.length);
-      return { place: payments.push(payment) - 1, isRepeat: false };
-    }
-    const isSame = payments[place]?.contentHash.equals(payment.contentHash) ?? false;
-    return isSame ? { place, isRepeat: true } : { result: otherContentResult(payment.externalId) };
-  });
-  return { slots, payments };
 }
 
 async function store(
