@@ -56,7 +56,9 @@ export function CaseHead({ view, headingRef, level = 2 }: CaseHeadProps) {
             </>
           )}
         </span>
-        <TimeLeft until={view.dueAt} before="Due in" after="Overdue by" />
+        {view.state !== "decided" && view.state !== "lapsed" && (
+          <TimeLeft until={view.dueAt} before="Due in" after="Overdue by" />
+        )}
       </p>
     </div>
   );

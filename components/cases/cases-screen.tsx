@@ -4,6 +4,7 @@ import { useQueryStates } from "nuqs";
 import type { QueueView, RugView } from "@/lib/cases/schema";
 import { api } from "../api";
 import { Button } from "../ui/button";
+import { countText } from "../ui/count";
 import { EmptyState } from "../ui/empty-state";
 import { Notice } from "../ui/notice";
 import { Skeleton } from "../ui/skeleton";
@@ -57,7 +58,7 @@ export function CasesScreen() {
         <div className={list.isPlaceholderData ? "opacity-60" : ""}>
           <CaseTable items={items} total={total} lines={lines.data ?? null} />
           <p role="status" className="mt-3 flex items-center gap-4 text-small text-soft">
-            {items.length.toLocaleString("en-GB")} of {total.toLocaleString("en-GB")}
+            {countText(items.length)} of {countText(total)}
             {list.hasNextPage && (
               <Button small busy={list.isFetchingNextPage} onClick={() => void list.fetchNextPage()}>
                 Show {PAGE} more

@@ -1,6 +1,7 @@
 import type { DecideView } from "@/lib/decisions/schema";
+import { countText } from "../ui/count";
 
-const cases = (count: number): string => (count === 1 ? "1 case" : `${count.toLocaleString("en-GB")} cases`);
+const cases = (count: number): string => (count === 1 ? "1 case" : `${countText(count)} cases`);
 
 /** What one decision did to the rest: "37 cases moved; 4 now rank above the hold line; no payment changed". */
 export function movedLine(moved: DecideView["moved"]): string {

@@ -6,6 +6,7 @@ import { type KeyboardEvent, useEffect, useRef, useState } from "react";
 import type { CaseView, QueueItem } from "@/lib/cases/schema";
 import type { Thresholds } from "../case/balance-axis";
 import { Button } from "../ui/button";
+import { countText } from "../ui/count";
 import { EmptyState } from "../ui/empty-state";
 import { Notice } from "../ui/notice";
 import { Skeleton } from "../ui/skeleton";
@@ -28,7 +29,7 @@ export function RankedList({ list, ready, thresholds, onPick, onLeave }: RankedL
     <section aria-label="Waiting cases" className="flex min-h-0 flex-1 flex-col">
       <div className="flex min-h-8 items-center justify-between gap-3 px-2 text-small">
         <h2 className="font-strong">
-          Waiting <span className="figures font-plain text-soft">{list.total.toLocaleString("en-GB")}</span>
+          Waiting <span className="figures font-plain text-soft">{countText(list.total)}</span>
         </h2>
         <span role="status" className="text-soft">
           {list.orderChanged && (

@@ -40,7 +40,8 @@ export const formulasOf = (signal: Signal): string[] =>
 /** Whole numbers as such, others to two significant places, for readings. */
 export function roughly(value: number): string {
   if (!Number.isFinite(value)) return "none";
-  if (Math.abs(value) >= 100) return new Intl.NumberFormat("en-GB").format(Math.round(value));
+  if (Math.abs(value) >= 100)
+    return new Intl.NumberFormat("en-GB").format(Math.round(value)).replaceAll(",", "\u202f");
   return String(Number(value.toPrecision(2)));
 }
 

@@ -150,7 +150,7 @@ describe("a signal", () => {
       0,
     ]);
     expect(size(22_000).reading).toBe("about 220");
-    expect(size(9_000_000).reading).toBe("about 5,000 or more");
+    expect(size(9_000_000).reading).toBe("about 5\u202f000 or more");
     expect(size(null)).toEqual({
       coordinates: [0, 0, 0, 0, 0],
       available: false,
