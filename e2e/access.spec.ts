@@ -76,6 +76,7 @@ async function settled(page: Page): Promise<void> {
 
 // Four times over every element of a page: long on a page of long tables.
 test.slow();
+test.describe.configure({ mode: "parallel" });
 
 for (const path of paths) {
   test(`${path} can be used by everybody, in both themes, on a wide and a narrow screen`, async ({
