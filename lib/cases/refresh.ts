@@ -1,4 +1,5 @@
 import "server-only";
+import { setTimeout as sleep } from "node:timers/promises";
 import { and, asc, desc, eq, inArray, max, type SQL, sql } from "drizzle-orm";
 import type { Tx } from "@/db/client";
 import { vectorToBytes } from "@/db/columns";
@@ -20,7 +21,9 @@ import { UNDECIDED_STATES } from "./codes";
 import { casesChanged } from "./notify";
 
 /** Labels whose linked cases are refreshed in one go. */
-const LABELS_IN_BATCH = 20;
+const LABELS_IN_BATCH = 200;
+/** Decisions come first: between two batches this rests so many times as long as the last one took. */
+const REST_FACTOR = 6;
 /** A counterparty may have taken part in any number of payments; the newest are looked at. */
 const NEWEST_OF_ENTITY = 2_000;
 /** What one transaction may take on. Those beyond keep the signals they have. */
@@ -50,10 +53,17 @@ export async function refreshLinkedCases(ctx: Context, signal: AbortSignal): Pro
       .orderBy(asc(signalRefreshes.id))
       .limit(1);
     if (!first) return;
+    const startedMs = performance.now();
     const refreshed = await inTransaction(ctx.db, (tx) => refreshBatch(ctx, tx, first.id));
     if (refreshed === null) return;
     casesChanged(refreshed);
+    if (refreshed.length > 0) await rest(REST_FACTOR * (performance.now() - startedMs), signal);
   }
+}
+
+/** Ends early when the server stops. */
+async function rest(ms: number, signal: AbortSignal): Promise<void> {
+  await sleep(ms, undefined, { ref: false, signal }).catch(() => undefined);
 }
 
 /** @returns the refreshed cases, or null while another server is at it: one at a time, or older signals might win */
