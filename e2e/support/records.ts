@@ -26,3 +26,8 @@ export async function readDraft(db: Database, caseId: string): Promise<string | 
   const [draft] = await db.select().from(noteDrafts).where(eq(noteDrafts.caseId, caseId));
   return draft?.body ?? null;
 }
+
+/** How many cases a person has in hand and at the elbow. */
+export function countHeld(db: Database, personId: string): Promise<number> {
+  return db.$count(cases, eq(cases.claimedBy, personId));
+}
