@@ -1,4 +1,5 @@
 import { readFile } from "node:fs/promises";
+import type { Page } from "@playwright/test";
 import { and, eq } from "drizzle-orm";
 import type { Database } from "@/db/client";
 import { transactions } from "@/db/schema/transactions";
@@ -49,6 +50,19 @@ function linesOf(batch: string, habits: readonly Habit[]): string[] {
   return [HEADER, ...lines];
 }
 
+/** Keeps the file on its way, as a slow line would. @returns what lets it through */
+async function holdUpload(page: Page): Promise<() => void> {
+  let letGo = () => {};
+  const held = new Promise<void>((resolve) => {
+    letGo = resolve;
+  });
+  await page.route("**/api/imports", async (route) => {
+    if (route.request().method() === "POST") await held;
+    await route.continue();
+  });
+  return letGo;
+}
+
 test("a file with its own column names comes in, its bad rows come back as a download, and leaving the page costs nothing", async ({
   db,
   office,
@@ -75,7 +89,14 @@ test("a file with its own column names comes in, its bad rows come back as a dow
     await upload.getByRole("combobox", { name: "Basket" }).selectOption("attributes.Basket");
     await expect(standing).toHaveText("Every required field has its column.");
     await upload.getByRole("textbox", { name: "Source" }).fill(batch.toLowerCase());
+  });
+
+  await test.step("send it, and see how far it is", async () => {
+    const letGo = await holdUpload(page);
     await upload.getByRole("button", { name: "Send the file" }).click();
+    await expect(upload.getByRole("progressbar", { name: `Sending ${batch}.csv` })).toBeVisible();
+    await expect(upload.getByRole("heading", { name: `Sending ${batch}.csv` })).toBeFocused();
+    letGo();
     await expect(upload.getByText(`${batch}.csv came in whole and is being read`)).toBeVisible();
   });
 
