@@ -72,7 +72,7 @@ test("a whole shift goes by keyboard alone, from the sign-in on", async ({ page,
     hand = await desk.commit(done);
     await expect(desk.status).toContainText(`Case ${done.number} is decided customer misuse, sure.`);
     expect(await findDecision(db, done.caseId)).toMatchObject({ verdict: "customer_misuse", typology: null });
-    expect(await readNotes(db, done.caseId)).toEqual(["Delivered and signed for, quite some time ago."]);
+    expect(await readNotes(db, done.caseId)).toContain("Delivered and signed for, quite some time ago.");
   });
 
   await test.step("hides the score, and decides without it", async () => {
@@ -118,7 +118,7 @@ test("a whole shift goes by keyboard alone, from the sign-in on", async ({ page,
     hand = await desk.nextAfter(done);
     await expect(desk.status).toContainText(`Case ${done.number} is escalated.`);
     expect(await readCaseRow(db, done.caseId)).toMatchObject({ state: "escalated", claimedBy: null });
-    expect(await readNotes(db, done.caseId)).toEqual(["Names a member of staff."]);
+    expect(await readNotes(db, done.caseId)).toContain("Names a member of staff.");
   });
 
   await test.step("decides what links to a case in the same act", async () => {

@@ -5,7 +5,7 @@ export async function press(page: Page, ...keys: string[]): Promise<void> {
   for (const key of keys) await page.keyboard.press(key);
 }
 
-const MOST_STOPS = 80;
+const MOST_STOPS = 400;
 
 /** Goes to a control as somebody without a mouse does: by Tab, from wherever the focus is. */
 export async function tabTo(target: Locator, key: "Tab" | "Shift+Tab" = "Tab"): Promise<void> {
