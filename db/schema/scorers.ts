@@ -12,6 +12,7 @@ import {
   varchar,
 } from "drizzle-orm/mysql-core";
 import { LABEL_KINDS } from "../../lib/decisions/codes";
+import { SCORER_ROLES } from "../../lib/learning/codes";
 import type { ScorerOptions } from "../../lib/scorer";
 import { bytes, exactDouble, instant, json, uuid } from "../columns";
 import { cases, decisions } from "./cases";
@@ -24,7 +25,8 @@ export const scorers = mysqlTable(
     id: uuid().primaryKey(),
     name: varchar({ length: 80 }).notNull(),
     method: varchar({ length: 32 }).notNull(),
-    role: mysqlEnum(["in_use", "candidate", "retired"]).notNull(),
+    /** Retired scorers were in use once and explain the scores they gave; dropped ones never were. */
+    role: mysqlEnum(SCORER_ROLES).notNull(),
     /** 1 for the one scorer in use, else null: the unique index allows one. */
     inUse: tinyint().generatedAlwaysAs(sql`(if(role = 'in_use', 1, null))`, { mode: "stored" }),
     signalSetVersion: int().notNull(),
@@ -35,6 +37,10 @@ export const scorers = mysqlTable(
     logSeq: bigint({ mode: "number" }).notNull(),
     state: bytes({}).notNull(),
     cumulativeLoss: exactDouble().notNull(),
+    /** Last row of the log when it was made: what a candidate lost up to there was reckoned afterwards. */
+    startedSeq: bigint({ mode: "number" }).notNull().default(0),
+    createdAt: instant(),
+    createdBy: uuid().references(() => people.id),
     changedAt: instant().notNull(),
   },
   (table) => [uniqueIndex("scorers_in_use").on(table.inUse)],

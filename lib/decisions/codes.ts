@@ -25,5 +25,6 @@ export const LABEL_KINDS = [
   "outcome",
   "correction",
   "removal",
+  "matured",
 ] as const;
 export type LabelKind = (typeof LABEL_KINDS)[number];

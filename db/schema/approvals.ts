@@ -1,0 +1,34 @@
+import { sql } from "drizzle-orm";
+import { check, index, int, mysqlEnum, mysqlTable, text } from "drizzle-orm/mysql-core";
+import { APPROVAL_KINDS, APPROVAL_STATES, type ApprovalSubject } from "../../lib/approvals/codes";
+import { instant, json, uuid } from "../columns";
+import { people } from "./people";
+
+/** What needs a second person before it is done: asked for by one, approved or refused by another. */
+export const approvals = mysqlTable(
+  "approvals",
+  {
+    id: uuid().primaryKey(),
+    kind: mysqlEnum(APPROVAL_KINDS).notNull(),
+    /** What exactly shall be done: ids and codes only. */
+    subject: json<ApprovalSubject>()().notNull(),
+    state: mysqlEnum(APPROVAL_STATES).notNull(),
+    reason: text().notNull(),
+    proposedBy: uuid()
+      .notNull()
+      .references(() => people.id),
+    proposedAt: instant().notNull(),
+    settledBy: uuid().references(() => people.id),
+    settledAt: instant(),
+    revision: int().notNull().default(1),
+  },
+  (table) => [
+    index("approvals_state").on(table.state, table.proposedAt),
+    check("approvals_settled", sql`(${table.state} = 'waiting') = (${table.settledAt} is null)`),
+    // Nobody approves or refuses their own wish; only its author withdraws it.
+    check(
+      "approvals_second_person",
+      sql`${table.state} = 'waiting' or (${table.settledBy} = ${table.proposedBy}) = (${table.state} = 'withdrawn')`,
+    ),
+  ],
+);
