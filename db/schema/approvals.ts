@@ -1,5 +1,5 @@
 import { sql } from "drizzle-orm";
-import { check, index, int, mysqlEnum, mysqlTable, text } from "drizzle-orm/mysql-core";
+import { char, check, index, int, mysqlEnum, mysqlTable, text, uniqueIndex } from "drizzle-orm/mysql-core";
 import { APPROVAL_KINDS, APPROVAL_STATES, type ApprovalSubject } from "../../lib/approvals/codes";
 import { instant, json, uuid } from "../columns";
 import { people } from "./people";
@@ -13,6 +13,11 @@ export const approvals = mysqlTable(
     /** What exactly shall be done: ids and codes only. */
     subject: json<ApprovalSubject>()().notNull(),
     state: mysqlEnum(APPROVAL_STATES).notNull(),
+    /** Set while it waits: the unique index allows one wish for the same thing at a time. */
+    waitingFor: char({ length: 32 }).generatedAlwaysAs(
+      sql`(if(state = 'waiting', md5(concat(kind, ' ', subject)), null))`,
+      { mode: "stored" },
+    ),
     reason: text().notNull(),
     proposedBy: uuid()
       .notNull()
@@ -24,6 +29,7 @@ export const approvals = mysqlTable(
   },
   (table) => [
     index("approvals_state").on(table.state, table.proposedAt),
+    uniqueIndex("approvals_waiting_for").on(table.waitingFor),
     check("approvals_settled", sql`(${table.state} = 'waiting') = (${table.settledAt} is null)`),
     // Nobody approves or refuses their own wish; only its author withdraws it.
     check(

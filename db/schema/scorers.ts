@@ -37,6 +37,8 @@ export const scorers = mysqlTable(
     logSeq: bigint({ mode: "number" }).notNull(),
     state: bytes({}).notNull(),
     cumulativeLoss: exactDouble().notNull(),
+    /** Part of it that those in use before had lost beyond what this one lost beside them; null: none. */
+    carriedLoss: exactDouble(),
     /** Last row of the log when it was made: what a candidate lost up to there was reckoned afterwards. */
     startedSeq: bigint({ mode: "number" }).notNull().default(0),
     createdAt: instant(),
@@ -90,6 +92,7 @@ export const labelLog = mysqlTable(
     index("label_log_transaction").on(table.transactionId),
     index("label_log_place").on(table.place),
     index("label_log_person").on(table.personId),
+    index("label_log_at").on(table.at),
     check("label_log_label", sql`${table.label} in (-1, 0, 1)`),
     check("label_log_place_earlier", sql`${table.place} < ${table.seq}`),
   ],
