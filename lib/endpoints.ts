@@ -1,3 +1,4 @@
+import { approvalEndpoints } from "./approvals/endpoints";
 import { auditEndpoints } from "./audit/endpoints";
 import { caseEndpoints } from "./cases/endpoints";
 import { decisionEndpoints } from "./decisions/endpoints";
@@ -31,6 +32,7 @@ export const ENDPOINTS = {
   ...policyEndpoints,
   ...outcomeEndpoints,
   ...learningEndpoints,
+  ...approvalEndpoints,
   ...lossEndpoints,
 } as const satisfies EndpointTable;
 

@@ -15,7 +15,7 @@ export const approvals = mysqlTable(
     state: mysqlEnum(APPROVAL_STATES).notNull(),
     /** Set while it waits: the unique index allows one wish for the same thing at a time. */
     waitingFor: char({ length: 32 }).generatedAlwaysAs(
-      sql`(if(state = 'waiting', md5(concat(kind, ' ', subject)), null))`,
+      sql`(if(state = 'waiting', md5(concat(cast(kind as binary), cast(subject as binary))), null))`,
       { mode: "stored" },
     ),
     reason: text().notNull(),
@@ -25,6 +25,8 @@ export const approvals = mysqlTable(
     proposedAt: instant().notNull(),
     settledBy: uuid().references(() => people.id),
     settledAt: instant(),
+    /** Why it was refused. */
+    settledReason: text(),
     revision: int().notNull().default(1),
   },
   (table) => [

@@ -21,6 +21,8 @@ export const ApprovalView = z.strictObject({
   proposedAt: Instant,
   settledBy: PersonRef.nullable(),
   settledAt: Instant.nullable(),
+  /** Why it was refused. */
+  settledReason: z.string().nullable(),
 });
 export type ApprovalView = z.infer<typeof ApprovalView>;
 

@@ -29,6 +29,8 @@ export const CAPABILITIES = {
   "policy.propose": { roles: ["supervisor"], scope: "policy:write" },
   "policy.approve": { roles: ["supervisor", "risk_manager"], scope: "policy:write" },
   "scorer.read": { roles: ["supervisor", "risk_manager", "auditor"], scope: "reports:read" },
+  "scorer.manage": { roles: ["supervisor"] },
+  "approvals.settle": { roles: ["supervisor", "risk_manager"] },
   "losses.read": { roles: ["supervisor", "risk_manager", "auditor"], scope: "reports:read" },
   "summary.manage": { roles: ["risk_manager"] },
   "trail.own": { roles: ["reviewer", "supervisor", "risk_manager", "auditor"] },

@@ -132,6 +132,8 @@ describe("domains", () => {
       "learning",
       "the scorer starts from the policy's base rate, and is run anew when that changes",
     ],
+    ["approvals", "learning", "what needs a second person asks for one, and is done when one approves"],
+    ["approvals", "signals", "as above, for the team's own signals"],
     [
       "transactions",
       "outcomes",

@@ -1,0 +1,1 @@
+ALTER TABLE `approvals` ADD `settled_reason` text;

@@ -1,0 +1,37 @@
+import "server-only";
+import type { Tx } from "@/db/client";
+import type { Context } from "../context";
+import { conflict } from "../errors";
+import type { ApprovalKind, ApprovalSubject } from "./codes";
+
+/** Does what was approved, in the transaction of the approval, and writes its own trail entry. */
+export type CarryOut = (ctx: Context, tx: Tx, subject: never) => Promise<void>;
+
+type Subjects = {
+  "scorer.promote": Extract<ApprovalSubject, { scorerId: string }>;
+  "signal.switch_on": Extract<ApprovalSubject, { signalId: string }>;
+  "signal.switch_off": Extract<ApprovalSubject, { signalId: string }>;
+  "labels.remove": Extract<ApprovalSubject, { personId: string }>;
+};
+
+/** One line for every kind: the function of its domain. */
+const CARRY_OUT: {
+  [K in ApprovalKind]: ((ctx: Context, tx: Tx, subject: Subjects[K]) => Promise<void>) | null;
+} = {
+  "scorer.promote": null,
+  "signal.switch_on": null,
+  "signal.switch_off": null,
+  "labels.remove": null,
+};
+
+/** @throws KnownError conflict where this kind cannot be carried out */
+export async function carryOut<K extends ApprovalKind>(
+  ctx: Context,
+  tx: Tx,
+  kind: K,
+  subject: ApprovalSubject,
+): Promise<void> {
+  const act = CARRY_OUT[kind];
+  if (!act) throw conflict("This is not available here");
+  await act(ctx, tx, subject as Subjects[K]);
+}
