@@ -13,6 +13,7 @@ import { Links } from "../case/links";
 import { Notes } from "../case/notes";
 import { SignalBars } from "../case/signal-bars";
 import { Timeline } from "../case/timeline";
+import { WithoutSignals } from "../case/without-signals";
 import { Section } from "../ui/section";
 import { CaseActions } from "./case-actions";
 import { CaseStanding } from "./case-standing";
@@ -89,6 +90,9 @@ function Evidence({ view }: { view: CaseView }) {
     <>
       <BalanceAxis thresholds={evidence} rug={null} pointer={evidence} />
       <SignalBars evidence={evidence} most={evidence.signals.length} />
+      <div className="mt-3">
+        <WithoutSignals lines={evidence.withoutSignals} />
+      </div>
       <p className="mt-3 text-small text-soft">
         Scorer version {evidence.scorerVersion}, policy version {evidence.policyVersion}. Decibans are ten
         times the decimal logarithm of the odds: 0 is even odds, +10 is ten to one on fraud.

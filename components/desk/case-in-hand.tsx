@@ -10,6 +10,7 @@ import { Notes } from "../case/notes";
 import { Pane } from "../case/pane";
 import { SignalBars } from "../case/signal-bars";
 import { Timeline } from "../case/timeline";
+import { WithoutSignals } from "../case/without-signals";
 import { CaseTools } from "./case-tools";
 import { CommitLane } from "./commit-lane";
 import { DeskDialogs } from "./desk-dialogs";
@@ -82,6 +83,9 @@ export function CaseInHand(props: CaseInHandProps) {
             {evidence && (
               <div className="min-h-44">
                 <SignalBars key={hand.caseId} evidence={evidence} most={BARS} />
+                <div className="mt-1 px-3 sm:px-14">
+                  <WithoutSignals lines={evidence.withoutSignals} />
+                </div>
               </div>
             )}
           </>

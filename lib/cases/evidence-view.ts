@@ -3,6 +3,7 @@ import type { Evidence } from "../learning/evidence";
 import type { Thresholds } from "../policy/rules";
 import { SIGNAL_SET_VERSION } from "../signals/catalogue";
 import { everyPaymentNats, groupContributions } from "../signals/group";
+import type { WithoutSignal } from "../signals/what-would-change";
 import type { EvidenceView } from "./schema";
 
 export type Scored = {
@@ -10,6 +11,8 @@ export type Scored = {
   vector: Float64Array;
   missing: Uint8Array;
   signalSetVersion: number;
+  /** What would change it, where the scorer that gave it is at hand. */
+  without: readonly WithoutSignal[] | null;
 };
 
 /**
@@ -31,9 +34,20 @@ export function evidenceView(
       ? groupContributions(evidence.contributions, scored.vector, scored.missing)
       : [earlierSignals(evidence)],
     littleExperienceDecibans: natsToDecibans(evidence.pull),
+    withoutSignals: scored.without?.map(withoutSignalView) ?? null,
     reviewDecibans: natsToDecibans(thresholds.reviewLogit),
     holdDecibans: natsToDecibans(thresholds.holdLogit),
     ...versions,
+  };
+}
+
+export function withoutSignalView({ key, name, logit, change }: WithoutSignal) {
+  return {
+    key,
+    name,
+    totalDecibans: natsToDecibans(logit),
+    probability: probabilityOf(logit),
+    changeDecibans: natsToDecibans(change),
   };
 }
 

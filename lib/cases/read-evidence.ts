@@ -8,6 +8,7 @@ import { evidenceOf, unpackEvidence } from "../learning/evidence";
 import { readScorerInUse } from "../learning/held-scorer";
 import { policyInForce } from "../policy/read";
 import { thresholdsInForce } from "../policy/thresholds";
+import { CATALOGUE_SPANS, whatWouldChange } from "../signals/what-would-change";
 import { evidenceView } from "./evidence-view";
 import type { EvidenceView } from "./schema";
 
@@ -22,7 +23,11 @@ export async function readEvidenceNow(db: Executor, scoreId: number, now: Date):
   const { scorer, version } = await readScorerInUse(db);
   const policy = await policyInForce(db, now);
   return evidenceView(
-    { ...score, evidence: evidenceOf(scorer, score.vector) },
+    {
+      ...score,
+      evidence: evidenceOf(scorer, score.vector),
+      without: whatWouldChange(scorer, score.vector, CATALOGUE_SPANS),
+    },
     await thresholdsInForce(db, policy, now),
     { scorerVersion: version, policyVersion: policy.version },
   );
@@ -33,7 +38,7 @@ export async function readEvidenceShown(db: Executor, decision: DecisionRow): Pr
   const score = await readScoreOrThrow(db, decision.scoreId);
   const policy = await policyInForce(db, decision.decidedAt);
   return evidenceView(
-    { ...score, evidence: unpackEvidence(bytesToVector(decision.evidence)) },
+    { ...score, evidence: unpackEvidence(bytesToVector(decision.evidence)), without: null },
     await thresholdsInForce(db, policy, decision.decidedAt),
     { scorerVersion: decision.scorerVersionBefore, policyVersion: decision.policyVersion },
   );

@@ -75,6 +75,17 @@ export const SignalEvidence = z.strictObject({
 });
 export type SignalEvidence = z.infer<typeof SignalEvidence>;
 
+/** How the score would stand without one signal, all else equal. Such changes do not add up: signals act together. */
+export const WithoutSignal = z.strictObject({
+  key: z.string(),
+  name: z.string(),
+  totalDecibans: z.number(),
+  probability: z.number(),
+  /** Without it − with it. */
+  changeDecibans: z.number(),
+});
+export type WithoutSignal = z.infer<typeof WithoutSignal>;
+
 /** base rate + Σ signals + little experience = total, to 1e-9. */
 export const EvidenceView = z.strictObject({
   probability: z.number(),
@@ -82,6 +93,8 @@ export const EvidenceView = z.strictObject({
   baseRateDecibans: z.number(),
   signals: z.array(SignalEvidence),
   littleExperienceDecibans: z.number(),
+  /** The three signals that most would change the score; null for a score of the past, whose scorer is not at hand. */
+  withoutSignals: z.array(WithoutSignal).nullable(),
   reviewDecibans: z.number(),
   holdDecibans: z.number(),
   scorerVersion: z.int(),

@@ -11,10 +11,13 @@ import { stopRanking } from "@/lib/cases/ranking/ranking";
 import { caseView } from "@/lib/cases/read";
 import { CaseView } from "@/lib/cases/schema";
 import type { PersonActor } from "@/lib/context";
+import { natsToDecibans, probabilityOf } from "@/lib/decibans";
 import { decideCase } from "@/lib/decisions/decide";
 import type { DecideInput } from "@/lib/decisions/schema";
 import { undoDecision } from "@/lib/decisions/undo";
+import { readScorerInUse } from "@/lib/learning/held-scorer";
 import { DEFAULT_TERMS } from "@/lib/policy/default-terms";
+import { CATALOGUE_SPANS } from "@/lib/signals/what-would-change";
 import { testWorld, type WaitingCase, WORLD_START, type World } from "../support/world";
 
 let world: World;
@@ -70,6 +73,26 @@ describe("the evidence on a case", () => {
     expect(evidence.littleExperienceDecibans).not.toBe(0);
   });
 
+  test("names the three signals that most would change it, each with the score taken anew without it", async () => {
+    const made = await world.waitingCases(11, { seed: 101 });
+    casesChanged(made.map(({ caseId }) => caseId));
+    const [{ caseId, vector }, ...others] = made as [WaitingCase, ...WaitingCase[]];
+    for (const other of others) await decide(other.caseId);
+    const { evidence } = await view(caseId);
+    const { scorer } = await readScorerInUse(world.db);
+    const { logit } = scorer.score(vector);
+    const all = CATALOGUE_SPANS.map(({ key, from, to }) => ({
+      key,
+      logit: scorer.score(vector.slice().fill(0, from, to)).logit,
+    })).sort((a, b) => Math.abs(b.logit - logit) - Math.abs(a.logit - logit));
+    expect(evidence?.withoutSignals?.map(({ key }) => key)).toEqual(all.slice(0, 3).map(({ key }) => key));
+    for (const [at, line] of (evidence?.withoutSignals ?? []).entries()) {
+      expect(line.totalDecibans).toBe(natsToDecibans(all[at]?.logit ?? Number.NaN));
+      expect(line.probability).toBe(probabilityOf(all[at]?.logit ?? Number.NaN));
+      expect(line.changeDecibans).toBeCloseTo(line.totalDecibans - (evidence?.totalDecibans ?? 0), 9);
+    }
+  });
+
   test("stays what was shown once a verdict stands, whatever the scorer learns after it", async () => {
     const { caseId } = await one();
     const before = await view(caseId);
@@ -77,7 +100,8 @@ describe("the evidence on a case", () => {
     for (const { caseId: other } of await waiting(5))
       await decide(other, { verdict: "legitimate", typology: null });
     const after = await view(caseId);
-    expect(after.evidence).toEqual(before.evidence);
+    // What would change it is told while it can still matter; behind the verdict "Derive again" tells it.
+    expect(after.evidence).toEqual({ ...before.evidence, withoutSignals: null });
     expect(after.state).toBe("decided");
   });
 

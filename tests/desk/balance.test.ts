@@ -24,6 +24,7 @@ const evidence = (signals: SignalEvidence[], littleExperienceDecibans = 0): Evid
     baseRateDecibans,
     signals,
     littleExperienceDecibans,
+    withoutSignals: null,
     reviewDecibans: -10,
     holdDecibans: 6,
     scorerVersion: 1,
