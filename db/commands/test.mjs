@@ -47,7 +47,7 @@ async function test({ signal, onEnd }) {
 /** @returns {Promise<Counts>} */
 async function notRun() {
   console.log("Not run, because the build failed.");
-  return { passed: 0, failed: 1, skipped: [] };
+  return { passed: 0, failed: 1, skipped: [], failures: [{ name: "Not run", error: "the build failed" }] };
 }
 
 /**
@@ -68,6 +68,11 @@ function report(results) {
   const skipped = results.flatMap((result) => result.skipped);
   const passed = results.reduce((sum, result) => sum + result.passed, 0);
   const failed = results.reduce((sum, result) => sum + result.failed, 0);
+  for (const { name, ...counts } of results) {
+    if (counts.failed > 0) console.log(`\nFailed in ${name}:`);
+    if (counts.failed > counts.failures.length) console.log("- see its own output above");
+    for (const { name: test, error } of counts.failures) console.log(`- ${test}\n  ${error}`);
+  }
   console.log("");
   for (const { name, seconds, ...counts } of results) {
     console.log(`${name.padEnd(28)}${counts.passed} passed, ${counts.failed} failed in ${seconds} s`);

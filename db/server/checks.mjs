@@ -1,12 +1,14 @@
 import { existsSync, readFileSync, writeFileSync } from "node:fs";
 import path from "node:path";
+import { stripVTControlCharacters } from "node:util";
 import { buildApp } from "./build.mjs";
 import { projectFolder } from "./folders.mjs";
 import { runToEnd } from "./processes.mjs";
 
 /**
- * What one step of the whole check found.
- * @typedef {{ passed: number, failed: number, skipped: { name: string, reason: string }[] }} Counts
+ * What one step of the whole check found; `failures` names what a runner can name.
+ * @typedef {{ name: string, error: string }} Failure
+ * @typedef {{ passed: number, failed: number, skipped: { name: string, reason: string }[], failures: Failure[] }} Counts
  */
 
 /**
@@ -15,7 +17,7 @@ import { runToEnd } from "./processes.mjs";
  */
 
 /** @param {boolean} ok */
-const one = (ok) => ({ passed: ok ? 1 : 0, failed: ok ? 0 : 1, skipped: [] });
+const one = (ok) => ({ passed: ok ? 1 : 0, failed: ok ? 0 : 1, skipped: [], failures: [] });
 
 /**
  * @param {string} program script of an installed package
@@ -110,22 +112,40 @@ export async function checkBrowser(place) {
 export function counted(code, counts) {
   if (!counts) return one(false);
   const unexplained = counts.skipped.filter(({ reason }) => !reason);
-  for (const { name } of unexplained) console.error(`Skipped without a reason: ${name}`);
   const failed = counts.failed + unexplained.length;
   return {
     passed: counts.passed,
     failed: failed === 0 && code !== 0 ? 1 : failed,
     skipped: counts.skipped.filter(({ reason }) => reason),
+    failures: [
+      ...counts.failures,
+      ...unexplained.map(({ name }) => ({ name, error: "skipped without a reason" })),
+    ],
   };
 }
 
 /**
+ * The first line of what went wrong, without a terminal's colours.
+ * @param {string | undefined} message
+ */
+export function firstLine(message) {
+  const [line = ""] = stripVTControlCharacters(message ?? "")
+    .trim()
+    .split("\n");
+  return line;
+}
+
+/**
  * @typedef {{ title: string, specs?: Spec[], suites?: Suite[] }} Suite
- * @typedef {{ title: string, tests: { status: string, annotations: { type: string, description?: string }[] }[] }} Spec
+ * @typedef {{ title: string, file: string, line: number, tests: SpecTest[] }} Spec
+ * @typedef {object} SpecTest
+ * @property {string} status
+ * @property {{ type: string, description?: string }[]} annotations
+ * @property {{ errors: { message?: string }[] }[]} results
  */
 
 /**
- * @param {{ suites: Suite[], errors: unknown[] }} report Playwright's
+ * @param {{ suites: Suite[], errors: { message?: string }[] }} report Playwright's
  * @returns {Counts}
  */
 export function browserCounts(report) {
@@ -133,16 +153,24 @@ export function browserCounts(report) {
   const specsOf = (suite) => [...(suite.specs ?? []), ...(suite.suites ?? []).flatMap(specsOf)];
   const tests = report.suites
     .flatMap(specsOf)
-    .flatMap((spec) => spec.tests.map((test) => ({ ...test, name: spec.title })));
+    .flatMap((spec) =>
+      spec.tests.map((test) => ({ ...test, name: spec.title, place: `${spec.file}:${spec.line}` })),
+    );
   const skipped = tests.filter(({ status }) => status === "skipped");
+  const failed = tests.filter(({ status }) => status === "unexpected" || status === "flaky");
   return {
     passed: tests.filter(({ status }) => status === "expected").length,
-    failed:
-      tests.filter(({ status }) => status === "unexpected" || status === "flaky").length +
-      report.errors.length,
+    failed: failed.length + report.errors.length,
     skipped: skipped.map(({ name, annotations }) => ({
       name,
       reason: annotations.find(({ type }) => type === "skip" || type === "fixme")?.description ?? "",
     })),
+    failures: [
+      ...failed.map(({ place, name, results }) => ({
+        name: `${place} ${name}`,
+        error: firstLine(results.flatMap(({ errors }) => errors).find(({ message }) => message)?.message),
+      })),
+      ...report.errors.map(({ message }) => ({ name: "The runner", error: firstLine(message) })),
+    ],
   };
 }

@@ -10,8 +10,9 @@ export class Complaints {
 
   listenTo(context: BrowserContext): void {
     context.on("console", (message) => {
-      const isNews = NEWS.test(message.location().url) && message.text().includes("status of 403");
-      if (["error", "warning"].includes(message.type()) && !isNews) this.hear(message.text());
+      const { url } = message.location();
+      const isNews = NEWS.test(url) && message.text().includes("status of 403");
+      if (["error", "warning"].includes(message.type()) && !isNews) this.hear(`${message.text()} (${url})`);
     });
     context.on("weberror", (error) => this.hear(String(error.error())));
   }

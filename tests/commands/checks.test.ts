@@ -1,7 +1,7 @@
 import { cpSync, mkdirSync, mkdtempSync, rmSync, writeFileSync } from "node:fs";
 import { tmpdir } from "node:os";
 import path from "node:path";
-import { afterAll, expect, test, vi } from "vitest";
+import { afterAll, expect, test } from "vitest";
 import { sourceHash } from "../../db/server/build.mjs";
 import { browserCounts, counted } from "../../db/server/checks.mjs";
 import { checkNode, packagesFit } from "../../db/server/packages.mjs";
@@ -9,37 +9,68 @@ import { checkNode, packagesFit } from "../../db/server/packages.mjs";
 const base = mkdtempSync(path.join(tmpdir(), "cupel-checks-"));
 afterAll(() => rmSync(base, { recursive: true }));
 
+const failure = { name: "a.test.ts adds up", error: "expected 1 to be 2" };
+
 test("a runner that fails without a failing test, or leaves no report, counts as one failure", () => {
-  expect(counted(1, { passed: 3, failed: 0, skipped: [] })).toEqual({ passed: 3, failed: 1, skipped: [] });
-  expect(counted(1, { passed: 3, failed: 2, skipped: [] })).toEqual({ passed: 3, failed: 2, skipped: [] });
-  expect(counted(0, undefined)).toEqual({ passed: 0, failed: 1, skipped: [] });
-});
-
-test("a skip needs a reason, or it counts as a failure", () => {
-  const printed = vi.spyOn(console, "error").mockReturnValue();
-  const explained = { name: "a", reason: "no disk" };
-  const counts = counted(0, { passed: 1, failed: 0, skipped: [explained, { name: "b", reason: "" }] });
-  expect(counts).toEqual({ passed: 1, failed: 1, skipped: [explained] });
-  expect(printed).toHaveBeenCalledWith("Skipped without a reason: b");
-  printed.mockRestore();
-});
-
-test("browser results are counted through nested suites; flaky ones and the runner's errors fail", () => {
-  const result = (title: string, status: string, description?: string) => ({
-    title,
-    tests: [{ status, annotations: description ? [{ type: "skip", description }] : [] }],
+  const none = { passed: 3, failed: 0, skipped: [], failures: [] };
+  expect(counted(1, none)).toEqual({ ...none, failed: 1 });
+  expect(counted(1, { ...none, failed: 1, failures: [failure] })).toEqual({
+    ...none,
+    failed: 1,
+    failures: [failure],
   });
+  expect(counted(0, undefined)).toEqual({ ...none, passed: 0, failed: 1 });
+});
+
+test("a skip needs a reason, or it counts and is named as a failure", () => {
+  const explained = { name: "a", reason: "no disk" };
+  const skipped = [explained, { name: "b", reason: "" }];
+  expect(counted(0, { passed: 1, failed: 0, skipped, failures: [] })).toEqual({
+    passed: 1,
+    failed: 1,
+    skipped: [explained],
+    failures: [{ name: "b", error: "skipped without a reason" }],
+  });
+});
+
+test("browser results are counted through nested suites; flaky ones and the runner's errors fail by name", () => {
+  const result = (
+    title: string,
+    status: string,
+    annotations: { type: string; description: string }[] = [],
+  ) => ({
+    title,
+    file: "desk.spec.ts",
+    line: 7,
+    tests: [
+      {
+        status,
+        annotations,
+        results: [{ errors: [{ message: `\u001b[31mError: ${title}\u001b[39m\nmore` }] }],
+      },
+    ],
+  });
+  const skip = [{ type: "skip", description: "why" }];
   const report = {
     errors: [{ message: "the server did not start" }],
     suites: [
       { title: "file", specs: [result("a", "expected"), result("b", "unexpected")] },
       {
         title: "file",
-        suites: [{ title: "group", specs: [result("c", "flaky"), result("d", "skipped", "why")] }],
+        suites: [{ title: "group", specs: [result("c", "flaky"), result("d", "skipped", skip)] }],
       },
     ],
   };
-  expect(browserCounts(report)).toEqual({ passed: 1, failed: 3, skipped: [{ name: "d", reason: "why" }] });
+  expect(browserCounts(report)).toEqual({
+    passed: 1,
+    failed: 3,
+    skipped: [{ name: "d", reason: "why" }],
+    failures: [
+      { name: "desk.spec.ts:7 b", error: "Error: b" },
+      { name: "desk.spec.ts:7 c", error: "Error: c" },
+      { name: "The runner", error: "the server did not start" },
+    ],
+  });
 });
 
 test("packages are installed when one is missing or of another version, whatever the files' dates", () => {
