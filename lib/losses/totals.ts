@@ -1,4 +1,4 @@
-import { wilsonInterval } from "../wilson";
+import { wilsonInterval } from "../quality/wilson";
 import { divideHalfEven } from "./rounding";
 import type { LedgerLine } from "./rules";
 

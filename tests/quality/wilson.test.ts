@@ -1,5 +1,5 @@
 import { expect, test } from "vitest";
-import { wilsonInterval } from "@/lib/wilson";
+import { wilsonInterval } from "@/lib/quality/wilson";
 
 // Newcombe, "Two-sided confidence intervals for the single proportion", Statistics in Medicine 17 (1998), Table I,
 // method 3. The published values carry four places.
