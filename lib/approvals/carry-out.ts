@@ -2,10 +2,8 @@ import "server-only";
 import type { Tx } from "@/db/client";
 import type { Context } from "../context";
 import { conflict } from "../errors";
+import { promoteScorer } from "../learning/promote";
 import type { ApprovalKind, ApprovalSubject } from "./codes";
-
-/** Does what was approved, in the transaction of the approval, and writes its own trail entry. */
-export type CarryOut = (ctx: Context, tx: Tx, subject: never) => Promise<void>;
 
 type Subjects = {
   "scorer.promote": Extract<ApprovalSubject, { scorerId: string }>;
@@ -14,11 +12,11 @@ type Subjects = {
   "labels.remove": Extract<ApprovalSubject, { personId: string }>;
 };
 
-/** One line for every kind: the function of its domain. */
+/** One line for every kind: the function of its domain, which runs in the approval's transaction. */
 const CARRY_OUT: {
   [K in ApprovalKind]: ((ctx: Context, tx: Tx, subject: Subjects[K]) => Promise<void>) | null;
 } = {
-  "scorer.promote": null,
+  "scorer.promote": promoteScorer,
   "signal.switch_on": null,
   "signal.switch_off": null,
   "labels.remove": null,

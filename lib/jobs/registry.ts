@@ -2,6 +2,7 @@ import "server-only";
 import { caseJobs } from "../cases/jobs";
 import { importJobs } from "../imports/jobs";
 import type { Job } from "../job";
+import { learningJobs } from "../learning/jobs";
 import { lossJobs } from "../losses/jobs";
 import { mailJobs } from "../mail/jobs";
 import { outcomeJobs } from "../outcomes/jobs";
@@ -16,5 +17,6 @@ export const JOBS: readonly Job[] = [
   ...outcomeJobs,
   ...mailJobs,
   ...lossJobs,
+  ...learningJobs,
   ...housekeepingJobs,
 ];

@@ -1,4 +1,6 @@
+import { ApprovalView } from "../approvals/schema";
 import type { EndpointTable } from "../endpoint";
+import { CandidateInput, CandidateView, DropInput, PromotionInput } from "./learning-schema";
 import { ScorerInput, ScorerView } from "./schema";
 
 export const learningEndpoints = {
@@ -7,5 +9,26 @@ export const learningEndpoints = {
     may: "scorer.read",
     input: ScorerInput,
     output: ScorerView,
+  },
+  "POST /api/scorers": {
+    summary: "Adds a candidate that runs beside the scorer in use, from the first label on",
+    may: "scorer.manage",
+    input: CandidateInput,
+    output: CandidateView,
+    status: 201,
+  },
+  "POST /api/scorers/{id}/drop": {
+    summary: "Ends a candidate",
+    may: "scorer.manage",
+    input: DropInput,
+    output: null,
+    status: 204,
+  },
+  "POST /api/scorers/{id}/promotion": {
+    summary: "Proposes that a candidate takes the place of the scorer in use; a second person approves it",
+    may: "scorer.manage",
+    input: PromotionInput,
+    output: ApprovalView,
+    status: 201,
   },
 } as const satisfies EndpointTable;

@@ -53,7 +53,7 @@ function orThrow(held: HeldScorer | null): HeldScorer {
   return held;
 }
 
-function toHeld(row: typeof scorers.$inferSelect): HeldScorer {
+export function toHeld(row: typeof scorers.$inferSelect): HeldScorer {
   const { id, name, version, logSeq, signalSetVersion, cumulativeLoss, state } = row;
   return { id, name, version, logSeq, signalSetVersion, cumulativeLoss, scorer: restoreScorer(state) };
 }

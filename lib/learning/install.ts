@@ -38,6 +38,7 @@ export async function ensureScorerInUse(ctx: Context): Promise<void> {
         logSeq: 0,
         state: Buffer.from(scorer.snapshot()),
         cumulativeLoss: 0,
+        createdAt: now,
         changedAt: now,
       });
       await tx

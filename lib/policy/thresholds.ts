@@ -51,13 +51,38 @@ export async function refreshCut(
   if (wish.kind === "fixed") return withReviewLine(policy, logitOf(wish.probability));
   const last = await findNewestCut(db, policy.version, now);
   if (last && !(await isStale(db, last, now))) return withReviewLine(policy, last.logit);
+  return takeCut(db, policy, wish.casesPerDay, now, held, last?.logit, batch);
+}
+
+/** As `refreshCut`, however young the last cut is: another scorer has come into use. */
+export async function takeNewCut(
+  db: Executor,
+  policy: PolicyInForce,
+  now: Date,
+  held: ScorerInUse,
+): Promise<Thresholds> {
+  const wish = policy.terms.reviewThreshold;
+  if (wish.kind === "fixed") return withReviewLine(policy, logitOf(wish.probability));
+  const last = await findNewestCut(db, policy.version, now);
+  return takeCut(db, policy, wish.casesPerDay, now, held, last?.logit);
+}
+
+async function takeCut(
+  db: Executor,
+  policy: PolicyInForce,
+  casesPerDay: number,
+  now: Date,
+  held: ScorerInUse,
+  lastLogit = CUT_WITHOUT_SCORES,
+  batch: readonly ScoredArrival[] = [],
+): Promise<Thresholds> {
   const recent = await newestScores(db, SCORES_IN_CUT);
   const fromRecent = recent.count >= FEWEST_SCORES;
   const scoreCount = fromRecent ? recent.count : batch.length;
-  if (scoreCount < FEWEST_SCORES) return withReviewLine(policy, last?.logit ?? CUT_WITHOUT_SCORES);
+  if (scoreCount < FEWEST_SCORES) return withReviewLine(policy, lastLogit);
   const logit = fromRecent
-    ? await cutByScorer(db, recent, wish.casesPerDay, held)
-    : capacityCut(batch, wish.casesPerDay);
+    ? await cutByScorer(db, recent, casesPerDay, held)
+    : capacityCut(batch, casesPerDay);
   const cut = { logit, scoreCount, lastScoreId: recent.lastScoreId };
   await db
     .insert(policyCuts)
