@@ -1,6 +1,7 @@
 import { z } from "zod";
 import { CASE_KINDS } from "../cases/codes";
-import { Amount, DecisionView, EvidenceView, Id, Instant } from "../cases/schema";
+import { Amount, DecisionView, EvidenceView, Id, Instant, WithoutSignal } from "../cases/schema";
+import { DECISION_KINDS } from "../decisions/codes";
 import { ZONES } from "../policy/codes";
 import { PolicyRecord } from "../policy/schema";
 import { TrailEntryView } from "../trail/schema";
@@ -37,3 +38,64 @@ export const DecisionRecordView = z.strictObject({
   entries: z.array(TrailEntryView),
 });
 export type DecisionRecordView = z.infer<typeof DecisionRecordView>;
+
+/** Which scorer gave a score. */
+const ScorerOfVersion = z.strictObject({ name: z.string(), version: z.int() });
+
+const SCORE_KINDS = ["arrival", "refresh", "decision"] as const;
+
+export const ScoresInput = z.strictObject({ id: Id });
+export type ScoresInput = z.infer<typeof ScoresInput>;
+
+/** Every score that a case's payment was given, oldest first. */
+export const ScoresView = z.strictObject({
+  /** The policy hides scores until the verdict: nothing is listed. */
+  hidden: z.boolean(),
+  /** Older than those listed, which are the newest. */
+  leftOut: z.int(),
+  items: z.array(
+    z.strictObject({
+      /** Of a score its number, of what was shown with a verdict the decision's id. */
+      scoreId: z.string(),
+      /** Taken at arrival, taken anew because a linked payment was labelled, or shown with a verdict. */
+      kind: z.enum(SCORE_KINDS),
+      at: Instant,
+      /** Whose verdict, and which kind; null for the others. */
+      decision: z.strictObject({ kind: z.enum(DECISION_KINDS), by: z.string() }).nullable(),
+      /** Null where no scorer ever had the version that the record names. */
+      scorer: ScorerOfVersion.nullable(),
+      policyVersion: z.int(),
+      totalDecibans: z.number(),
+      probability: z.number(),
+      /** Whether the asker may have it derived again. */
+      derivable: z.boolean(),
+    }),
+  ),
+});
+export type ScoresView = z.infer<typeof ScoresView>;
+
+export const DerivationInput = z.strictObject({
+  id: Id,
+  scoreId: z.union([z.string().regex(/^[1-9]\d{0,14}$/, "is a score's number or a decision's id"), Id]),
+});
+export type DerivationInput = z.infer<typeof DerivationInput>;
+
+/** A score of the past beside the one that the scorer of its version gives, folded anew from the label log. */
+export const DerivationView = z.strictObject({
+  scoreId: z.string(),
+  kind: z.enum(SCORE_KINDS),
+  at: Instant,
+  scorer: ScorerOfVersion.nullable(),
+  /** Labels that the scorer of that version had learned. */
+  labels: z.int().nullable(),
+  /** Log-odds in nats, to the last bit: as kept, and as derived. */
+  kept: z.number(),
+  derived: z.number().nullable(),
+  /** Everything that was kept comes out bit for bit: log-odds and leverage, with a verdict every contribution. */
+  equal: z.boolean(),
+  /** Why nothing could be derived. */
+  problem: z.string().nullable(),
+  /** What most would have changed the score, by the scorer of that version. */
+  withoutSignals: z.array(WithoutSignal),
+});
+export type DerivationView = z.infer<typeof DerivationView>;
