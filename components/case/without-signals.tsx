@@ -4,15 +4,16 @@ import { percentOf, signedDecibans } from "../ui/probability";
 type WithoutSignalsProps = {
   /** The strongest first; null where the scorer that gave the score is not at hand. */
   lines: readonly WithoutSignal[] | null;
+  title?: string;
 };
 
 /** What would change the score most: where it would stand without one signal. */
-export function WithoutSignals({ lines }: WithoutSignalsProps) {
+export function WithoutSignals({ lines, title = "What would change this" }: WithoutSignalsProps) {
   if (!lines) return null;
   return (
     <div className="text-small">
       <p>
-        <span className="font-strong">What would change this</span>
+        <span className="font-strong">{title}</span>
         <span className="text-soft">
           {lines.length > 0
             ? " One signal away, the rest as they are. Signals act together, so these do not add up."

@@ -11,6 +11,7 @@ import { silentSignals } from "../case/evidence-rows";
 import { Facts } from "../case/facts";
 import { Links } from "../case/links";
 import { Notes } from "../case/notes";
+import { ScoresOverTime } from "../case/scores-over-time";
 import { SignalBars } from "../case/signal-bars";
 import { Timeline } from "../case/timeline";
 import { WithoutSignals } from "../case/without-signals";
@@ -52,6 +53,12 @@ export function CaseScreen({ initial, ...rights }: CaseRights & { initial: CaseV
         lead={decided ? "As it was shown with the verdict that stands." : "As the scorer weighs it now."}
       >
         <Evidence view={view} />
+      </Section>
+      <Section
+        title="Scores over time"
+        lead="Each can be derived again from the labels that the scorer had learned when it gave it."
+      >
+        <ScoresOverTime caseId={view.caseId} />
       </Section>
       <Section title="Verdicts">
         <Decisions decisions={view.decisions} linked />
