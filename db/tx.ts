@@ -10,7 +10,8 @@ const ATTEMPTS = 5;
 export async function inTransaction<T>(db: Database, work: (tx: Tx) => Promise<T>): Promise<T> {
   for (let attempt = 1; ; attempt++) {
     try {
-      return await db.transaction(work, { isolationLevel: "read committed" });
+      // The level is the session's (`createDatabase`): naming it here would cost every transaction a statement.
+      return await db.transaction(work);
     } catch (error) {
       if (attempt >= ATTEMPTS || !isWorthRetrying(error)) throw error;
       await new Promise((resolve) => setTimeout(resolve, 5 * 2 ** attempt * (0.5 + Math.random())));

@@ -37,8 +37,7 @@ export async function changeCase(
  * @throws KnownError conflict when the person holds as many cases as one may
  */
 export async function lockRoomForClaim(tx: Tx, personId: string, now: Date): Promise<ShareCount> {
-  await tx.insert(handOuts).values({ personId }).onDuplicateKeyUpdate({ set: { personId } });
-  const [row] = await tx.select().from(handOuts).where(eq(handOuts.personId, personId)).for("update");
+  const row = (await lockHandOuts(tx, personId)) ?? (await beginHandOuts(tx, personId));
   const [held] = await tx
     .select({ count: count() })
     .from(cases)
@@ -46,7 +45,18 @@ export async function lockRoomForClaim(tx: Tx, personId: string, now: Date): Pro
   if ((held?.count ?? 0) >= MOST_CLAIMS) {
     throw conflict(`You hold ${MOST_CLAIMS} cases already; decide one, give one back or set one aside first`);
   }
-  return row ?? { sinceOverdue: 0, sinceSample: 0 };
+  return row;
+}
+
+async function lockHandOuts(tx: Tx, personId: string): Promise<ShareCount | undefined> {
+  const [row] = await tx.select().from(handOuts).where(eq(handOuts.personId, personId)).for("update");
+  return row;
+}
+
+/** The first time; of two requests at once the second waits here and then finds the first one's row. */
+async function beginHandOuts(tx: Tx, personId: string): Promise<ShareCount> {
+  await tx.insert(handOuts).values({ personId }).onDuplicateKeyUpdate({ set: { personId } });
+  return (await lockHandOuts(tx, personId)) ?? { sinceOverdue: 0, sinceSample: 0 };
 }
 
 export function stateView(row: LockedCase): CaseStateView {

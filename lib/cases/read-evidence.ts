@@ -1,12 +1,12 @@
 import "server-only";
 import { eq } from "drizzle-orm";
-import type { Executor } from "@/db/client";
+import type { Database, Executor } from "@/db/client";
 import { bytesToVector } from "@/db/columns";
 import type { decisions } from "@/db/schema/cases";
 import { scores } from "@/db/schema/transactions";
 import { evidenceOf, unpackEvidence } from "../learning/evidence";
-import { readScorerInUse } from "../learning/held-scorer";
-import { policyInForce } from "../policy/read";
+import { readScorerForScoring } from "../learning/held-scorer";
+import { type PolicyInForce, policyInForce } from "../policy/read";
 import { thresholdsInForce } from "../policy/thresholds";
 import { CATALOGUE_SPANS, whatWouldChange } from "../signals/what-would-change";
 import { evidenceView } from "./evidence-view";
@@ -18,10 +18,14 @@ type DecisionRow = Pick<
 >;
 
 /** How the evidence stands now. */
-export async function readEvidenceNow(db: Executor, scoreId: number, now: Date): Promise<EvidenceView> {
+export async function readEvidenceNow(
+  db: Database,
+  scoreId: number,
+  policy: PolicyInForce,
+  now: Date,
+): Promise<EvidenceView> {
   const score = await readScoreOrThrow(db, scoreId);
-  const { scorer, version } = await readScorerInUse(db);
-  const policy = await policyInForce(db, now);
+  const { scorer, version } = await readScorerForScoring(db);
   return evidenceView(
     {
       ...score,

@@ -11,7 +11,7 @@ import type { Context } from "../context";
 import { probabilityOf } from "../decibans";
 import { forbidden, notFound } from "../errors";
 import { formatAmount } from "../money";
-import { policyInForce } from "../policy/read";
+import { type PolicyInForce, policyInForce } from "../policy/read";
 import { readBaseCurrency } from "../transactions/base-currency";
 import { UNDECIDED_STATES } from "./codes";
 import { rankingOf } from "./ranking/ranking";
@@ -37,6 +37,7 @@ export async function caseView(ctx: Context, input: { id: string }): Promise<Cas
   const reader = readerOf(ctx.actor);
   const decidedIt = verdicts.some(({ decision }) => decision.personId === reader.personId);
   if (!maySee(row, reader) && !decidedIt) throw forbidden("This case is not yours");
+  const policy = await policyInForce(db, now);
   const holder = holderOf(row, now);
   const isMine = holder !== null && holder === reader.personId;
   return {
@@ -54,8 +55,8 @@ export async function caseView(ctx: Context, input: { id: string }): Promise<Cas
     claimExpiresAt: instant(row.claimExpiresAt),
     mine: isMine,
     transaction: transactionView(transaction, await readBaseCurrency(db)),
-    evidence: await readEvidence(ctx, row, verdicts),
-    links: await withPresentScores(ctx, await readLinks(db, transaction)),
+    evidence: await readEvidence(ctx, row, verdicts, policy),
+    links: await withPresentScores(ctx, await readLinks(db, transaction), policy),
     decisions: verdicts.map(decisionView),
     notes: await readNotes(db, caseId),
     draft: await readDraft(db, caseId, reader.personId),
@@ -92,19 +93,22 @@ async function readEvidence(
   ctx: Context,
   row: CaseRow,
   verdicts: readonly Verdict[],
+  policy: PolicyInForce,
 ): Promise<EvidenceView | null> {
-  const now = ctx.now();
-  if (UNDECIDED_STATES.some((undecided) => undecided === row.state)) {
-    const { terms } = await policyInForce(ctx.db, now);
-    if (terms.hideScoreUntilVerdict) return null;
-  }
+  const isUndecided = UNDECIDED_STATES.some((undecided) => undecided === row.state);
+  if (isUndecided && policy.terms.hideScoreUntilVerdict) return null;
   const standing = verdicts.find(({ decision }) => stands(decision))?.decision;
-  return standing ? readEvidenceShown(ctx.db, standing) : readEvidenceNow(ctx.db, row.scoreId, now);
+  return standing
+    ? readEvidenceShown(ctx.db, standing)
+    : readEvidenceNow(ctx.db, row.scoreId, policy, ctx.now());
 }
 
 /** A linked case that waits has the probability it has in the queue, unless the policy hides it. */
-async function withPresentScores(ctx: Context, links: CaseView["links"]): Promise<CaseView["links"]> {
-  const { terms } = await policyInForce(ctx.db, ctx.now());
+async function withPresentScores(
+  ctx: Context,
+  links: CaseView["links"],
+  { terms }: PolicyInForce,
+): Promise<CaseView["links"]> {
   if (terms.hideScoreUntilVerdict) {
     return links.map((link) => (link.verdict === null ? { ...link, probability: null } : link));
   }

@@ -1,6 +1,6 @@
 import "server-only";
 import { eq } from "drizzle-orm";
-import type { Executor, Tx } from "@/db/client";
+import type { Database, Executor, Tx } from "@/db/client";
 import { scorers } from "@/db/schema/scorers";
 import { restoreScorer, type Scorer } from "../scorer";
 
@@ -26,6 +26,28 @@ export async function readScorerInUse(db: Executor): Promise<HeldScorer> {
 export async function findScorerInUse(db: Executor): Promise<HeldScorer | null> {
   const [row] = await db.select().from(scorers).where(eq(scorers.inUse, 1)).limit(1);
   return row ? toHeld(row) : null;
+}
+
+export type ScoringScorer = Pick<HeldScorer, "id" | "version" | "signalSetVersion" | "scorer">;
+
+// One version of one scorer is one state, so the last one read serves everybody until there is a newer one.
+const scoring = new WeakMap<Database, ScoringScorer>();
+
+/**
+ * The scorer in use for those who only score with it: whoever learns needs one of their own.
+ * @throws Error on an installation without a scorer
+ */
+export async function readScorerForScoring(db: Database): Promise<ScoringScorer> {
+  const [head] = await db
+    .select({ id: scorers.id, version: scorers.version })
+    .from(scorers)
+    .where(eq(scorers.inUse, 1))
+    .limit(1);
+  const known = scoring.get(db);
+  if (head && known?.id === head.id && known.version === head.version) return known;
+  const fresh = await readScorerInUse(db);
+  scoring.set(db, fresh);
+  return fresh;
 }
 
 /** Locks the scorer in use until the transaction ends. Case rows must be locked before it, the trail's head after. */

@@ -4,7 +4,7 @@ import { isDuplicate } from "@/db/errors";
 import { demand } from "../auth/demand";
 import { casesChanged } from "../cases/notify";
 import type { Context } from "../context";
-import { readScorerInUse } from "../learning/held-scorer";
+import { readScorerForScoring } from "../learning/held-scorer";
 import { applyKeptOutcomes } from "../outcomes/apply-kept";
 import { policyInForce } from "../policy/read";
 import { appendTrail } from "../trail/append";
@@ -63,7 +63,7 @@ async function prepare(ctx: Context, { source, items }: Batch): Promise<Prepared
   const [settings, policy, held] = await Promise.all([
     readIntakeSettings(ctx.db, source, now),
     policyInForce(ctx.db, now),
-    readScorerInUse(ctx.db),
+    readScorerForScoring(ctx.db),
   ]);
   const { slots, payments } = await sortItems(ctx.db, source, items, settings.exempt, now);
   const scored = await scorePayments(ctx.db, payments, held, policy, settings.sampleSecret, now);

@@ -1,7 +1,7 @@
 import "server-only";
 import { setImmediate } from "node:timers/promises";
 import type { Database } from "@/db/client";
-import type { HeldScorer } from "../learning/held-scorer";
+import type { ScoringScorer } from "../learning/held-scorer";
 import { newId } from "../new-id";
 import type { Zone } from "../policy/codes";
 import type { PolicyInForce } from "../policy/read";
@@ -38,7 +38,7 @@ const PAYMENTS_IN_A_ROW = 100;
 export async function scorePayments(
   db: Database,
   payments: readonly Payment[],
-  held: HeldScorer,
+  held: ScoringScorer,
   policy: PolicyInForce,
   sampleSecret: Buffer,
   now: Date,
@@ -76,7 +76,7 @@ type Measured = SignalVector & {
   leverage: number;
 };
 
-async function measure(db: Database, payments: readonly Payment[], held: HeldScorer): Promise<Measured[]> {
+async function measure(db: Database, payments: readonly Payment[], held: ScoringScorer): Promise<Measured[]> {
   if (held.signalSetVersion !== SIGNAL_SET_VERSION) {
     throw new Error(`The scorer in use knows signal set ${held.signalSetVersion}, not ${SIGNAL_SET_VERSION}`);
   }

@@ -1,6 +1,6 @@
 import fc from "fast-check";
 import { describe, expect, test } from "vitest";
-import { firstBehind, isBehind, type Place, type Rankable, rank } from "@/lib/cases/ranking/order";
+import { firstBehind, isBehind, Order, type Place, type Rankable, rank } from "@/lib/cases/ranking/order";
 import { sortDescending } from "@/lib/cases/ranking/sort";
 import { logitOf, probabilityOf } from "@/lib/decibans";
 import { DEFAULT_TERMS } from "@/lib/policy/default-terms";
@@ -27,7 +27,7 @@ const rankable = (items: readonly Item[]): Rankable => ({
 });
 
 const named = (items: readonly Item[], terms: PolicyTerms) =>
-  Array.from(rank(rankable(items), terms, NOW_MS).order, (i) => items[i]?.name).join(" ");
+  Array.from(rank(rankable(items), terms, NOW_MS).order.all(), (i) => items[i]?.name).join(" ");
 
 const terms = (more: Partial<PolicyTerms>): PolicyTerms => ({
   ...DEFAULT_TERMS,
@@ -155,8 +155,8 @@ describe("properties", () => {
         fc.constantFrom(...(["probability", "value_at_risk", "learning_value"] as const)),
         (list, order) => {
           const ranking = rank(rankable(list), terms({ order }), NOW_MS);
-          expect([...ranking.order].sort((a, b) => a - b)).toEqual(list.map((_, i) => i));
-          const places: Place[] = Array.from(ranking.order, (i, index) => ({
+          expect([...ranking.order.all()].sort((a, b) => a - b)).toEqual(list.map((_, i) => i));
+          const places: Place[] = Array.from(ranking.order.all(), (i, index) => ({
             expiring: index < ranking.expiring,
             key: ranking.keys[i] as number,
             number: i,
@@ -165,6 +165,24 @@ describe("properties", () => {
             expect(firstBehind(places.length, (at) => places[at] as Place, place)).toBe(index + 1);
             if (index > 0) expect(isBehind(place, places[index - 1] as Place)).toBe(true);
           }
+        },
+      ),
+    );
+  });
+
+  test("the front that is worked out by itself is the front of the whole order", () => {
+    fc.assert(
+      fc.property(
+        fc.integer({ min: 0, max: 400 }),
+        fc.integer({ min: 1, max: 40 }),
+        fc.array(fc.nat({ max: 399 }), { maxLength: 220 }),
+        fc.infiniteStream(fc.integer({ min: 0, max: 1_000 })),
+        (count, distinct, wanted, stream) => {
+          const keys = Float64Array.from({ length: count }, () => (stream.next().value as number) % distinct);
+          const first = [...new Set(wanted)].filter((i) => i < count).sort((a, b) => a - b);
+          const whole = new Order(keys, first).all();
+          const front = new Order(keys, first);
+          expect(Array.from({ length: count }, (_, index) => front.at(index))).toEqual([...whole]);
         },
       ),
     );
@@ -179,7 +197,7 @@ describe("properties", () => {
         (list, pick, order) => {
           const at = pick % list.length;
           const placeOf = (cases: typeof list) =>
-            rank(rankable(cases), terms({ order }), NOW_MS).order.indexOf(at);
+            rank(rankable(cases), terms({ order }), NOW_MS).order.all().indexOf(at);
           const lifted = list.map((item, i) => (i === at ? { ...item, logit: item.logit + 1.5 } : item));
           expect(placeOf(lifted)).toBeLessThanOrEqual(placeOf(list));
           expect(probabilityOf((lifted[at] as Item).logit)).toBeGreaterThan(

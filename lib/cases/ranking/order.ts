@@ -1,6 +1,7 @@
 import { probabilityOf } from "../../decibans";
 import { valueAtRisk } from "../../policy/rules";
 import type { PolicyTerms } from "../../policy/schema";
+import { Best } from "./best";
 import { sortDescending } from "./sort";
 
 /** Cases in order of arrival, as the ranking sees them. */
@@ -16,8 +17,7 @@ export type Rankable = {
 };
 
 export type Ranking = {
-  /** Positions in order of arrival, best case first. */
-  order: Uint32Array;
+  order: Order;
   /** How many at the front are holds about to expire. */
   expiring: number;
   /** Key of every position: larger is better. An expiring hold's key is its amount. */
@@ -60,7 +60,40 @@ export function keysOf(cases: Rankable, terms: PolicyTerms, nowMs: number): Keys
 
 /** The second half of `rank`. */
 export function inOrder({ keys, expiring, goodUntilMs }: Keys): Ranking {
-  return { keys, goodUntilMs, order: withFirst(expiring, keys), expiring: expiring.length };
+  return { keys, goodUntilMs, order: new Order(keys, expiring), expiring: expiring.length };
+}
+
+/** So many at the front serve whoever takes the next case, and the first page of the list. */
+const FRONT = 160;
+
+/**
+ * Positions by arrival, best case first, worked out as far as they are asked for: a decision wants the front of ten
+ * thousand cases anew, and sorting them all for it would cost more than anything else about it.
+ */
+export class Order {
+  private front: Uint32Array | null = null;
+  private whole: Uint32Array | null = null;
+
+  /** @param first positions that come before all others, whatever their keys */
+  constructor(
+    private readonly keys: Float64Array,
+    private readonly first: readonly number[],
+  ) {}
+
+  get length(): number {
+    return this.keys.length;
+  }
+
+  at(index: number): number {
+    if (!this.whole && index < FRONT) this.front ??= frontOf(this.keys, this.first, FRONT);
+    if (this.front && index < FRONT) return this.front[index] as number;
+    return this.all()[index] as number;
+  }
+
+  all(): Uint32Array {
+    this.whole ??= withFirst(this.first, this.keys);
+    return this.whole;
+  }
 }
 
 function orderKey(cases: Rankable, i: number, terms: PolicyTerms): number {
@@ -80,8 +113,7 @@ function orderKey(cases: Rankable, i: number, terms: PolicyTerms): number {
 function withFirst(first: readonly number[], keys: Float64Array): Uint32Array {
   const sorted = sortDescending(keys);
   if (first.length === 0) return sorted;
-  const inFront = new Uint8Array(keys.length);
-  for (const i of first) inFront[i] = 1;
+  const inFront = maskOf(first, keys.length);
   const order = new Uint32Array(keys.length);
   let front = 0;
   let behind = first.length;
@@ -90,6 +122,23 @@ function withFirst(first: readonly number[], keys: Float64Array): Uint32Array {
     else order[behind++] = i;
   }
   return order;
+}
+
+/** The beginning of `withFirst`, by one pass over the keys. */
+function frontOf(keys: Float64Array, first: readonly number[], length: number): Uint32Array {
+  const inFront = maskOf(first, keys.length);
+  const best = new Best(keys, length);
+  for (const i of first) best.offer(i);
+  const chosen = best.take();
+  const rest = new Best(keys, length - chosen.length);
+  for (let i = 0; i < keys.length; i++) if (inFront[i] === 0) rest.offer(i);
+  return Uint32Array.from([...chosen, ...rest.take()]);
+}
+
+function maskOf(positions: readonly number[], length: number): Uint8Array {
+  const mask = new Uint8Array(length);
+  for (const i of positions) mask[i] = 1;
+  return mask;
 }
 
 /** Where a case stood when a page of the list ended. */

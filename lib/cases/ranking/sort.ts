@@ -1,5 +1,7 @@
 const DIGITS = 4;
 const BUCKETS = 1 << 16;
+/** Kept: a fresh quarter of a megabyte for every sort keeps the collector busy. */
+const starts = new Uint32Array(BUCKETS);
 
 /**
  * Positions of the keys, largest key first; equal keys keep their order. Keys are finite.
@@ -12,9 +14,8 @@ export function sortDescending(keys: Float64Array): Uint32Array {
   let order = new Uint32Array(count);
   for (let i = 0; i < count; i++) order[i] = i;
   let other = new Uint32Array(count);
-  const starts = new Uint32Array(BUCKETS);
   for (let digit = 0; digit < DIGITS; digit++) {
-    if (!fillStarts(starts, digits, digit)) continue;
+    if (!fillStarts(digits, digit)) continue;
     for (let at = 0; at < count; at++) {
       const i = order[at] as number;
       const bucket = digits[DIGITS * i + digit] as number;
@@ -45,7 +46,7 @@ function descendingDigits(keys: Float64Array): Uint16Array {
 }
 
 /** First position of each bucket; false where all keys share the digit, so that nothing moves. */
-function fillStarts(starts: Uint32Array, digits: Uint16Array, digit: number): boolean {
+function fillStarts(digits: Uint16Array, digit: number): boolean {
   starts.fill(0);
   for (let at = digit; at < digits.length; at += DIGITS) {
     const bucket = digits[at] as number;

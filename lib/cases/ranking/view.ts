@@ -69,7 +69,7 @@ export class RankingView {
   }
 
   placeAt(index: number): Place {
-    const position = this.ranking.order[index] as number;
+    const position = this.ranking.order.at(index);
     const { number } = this.caseAt(index);
     return { expiring: index < this.expiring, key: this.ranking.keys[position] as number, number };
   }
@@ -98,7 +98,8 @@ export class RankingView {
 
   /** Cases assigned to a person that are no holds about to expire, best first. */
   assignedTo(personId: string): CaseFacts[] {
-    const inFront = new Set(this.ranking.order.subarray(0, this.expiring));
+    const inFront = new Set<number>();
+    for (let index = 0; index < this.expiring; index++) inFront.add(this.ranking.order.at(index));
     const placed: { facts: CaseFacts; place: Place }[] = [];
     for (const caseId of this.cases.assignedTo(personId)) {
       const position = this.cases.positionOf(caseId);
@@ -117,6 +118,6 @@ export class RankingView {
   }
 
   private slotAt(index: number): number {
-    return this.slots[this.ranking.order[index] as number] as number;
+    return this.slots[this.ranking.order.at(index)] as number;
   }
 }
