@@ -2,6 +2,7 @@ import { sql } from "drizzle-orm";
 import {
   bigint,
   check,
+  index,
   int,
   mysqlEnum,
   mysqlTable,
@@ -11,7 +12,8 @@ import {
   uniqueIndex,
   varchar,
 } from "drizzle-orm/mysql-core";
-import { DRIFT_KINDS, OWN_SIGNAL_STATES } from "../../lib/learning/codes";
+import { DRIFT_KINDS, INFLUENCE_RUN_STATES, OWN_SIGNAL_STATES } from "../../lib/learning/codes";
+import type { InfluenceResult } from "../../lib/learning/influence-schema";
 import { bytes, exactDouble, instant, json, uuid } from "../columns";
 import { people } from "./people";
 import { labelLog, scorers } from "./scorers";
@@ -75,6 +77,30 @@ export const driftWarnings = mysqlTable("drift_warnings", {
   seenBy: uuid().references(() => people.id),
   seenAt: instant(),
 });
+
+/** What each person's labels do to the scorer in use, reckoned for the log up to a row. */
+export const influenceRuns = mysqlTable(
+  "influence_runs",
+  {
+    id: bigint({ mode: "number" }).primaryKey().autoincrement(),
+    scorerId: uuid()
+      .notNull()
+      .references(() => scorers.id),
+    asOfSeq: bigint({ mode: "number" }).notNull(),
+    state: mysqlEnum(INFLUENCE_RUN_STATES).notNull(),
+    /** 1 while it runs, else null: the unique index lets one server at a time be at it. */
+    isRunning: tinyint().generatedAlwaysAs(sql`(if(state = 'running', 1, null))`, { mode: "stored" }),
+    startedAt: instant().notNull(),
+    /** Until when its server must have said that it is still at it. */
+    leaseExpiresAt: instant().notNull(),
+    finishedAt: instant(),
+    result: json<InfluenceResult>()(),
+  },
+  (table) => [
+    uniqueIndex("influence_runs_running").on(table.isRunning),
+    index("influence_runs_newest").on(table.state, table.scorerId, table.asOfSeq),
+  ],
+);
 
 /** The team's own signals: a formula over a payment's fields. A position, once given, is never given again. */
 export const ownSignals = mysqlTable(

@@ -6,3 +6,5 @@ export type DriftKind = (typeof DRIFT_KINDS)[number];
 
 export const OWN_SIGNAL_STATES = ["draft", "on", "off"] as const;
 export type OwnSignalState = (typeof OWN_SIGNAL_STATES)[number];
+
+export const INFLUENCE_RUN_STATES = ["running", "done", "failed"] as const;

@@ -52,6 +52,13 @@ export const PersonInfluence = z.strictObject({
 });
 export type PersonInfluence = z.infer<typeof PersonInfluence>;
 
+/** What a reckoning found, as it is kept: without names. */
+export const InfluenceResult = z.strictObject({
+  payments: PaymentsLookedAt,
+  people: z.array(PersonInfluence.omit({ person: true }).extend({ personId: Id })),
+});
+export type InfluenceResult = z.infer<typeof InfluenceResult>;
+
 export const InfluenceView = z.strictObject({
   /** `pending`: effects are being reckoned for the log as it is now; those shown, if any, are for `asOfSeq`. */
   state: z.enum(["ready", "pending"]),
