@@ -19,6 +19,7 @@ const ACT_WORDS: Readonly<Record<string, string>> = {
   "person.signed_out": "Signed out",
   "person.sign_in_refused": "Sign-in refused",
   "person.locked": "Account locked",
+  "access.refused": "Access refused",
   "person.password_change_refused": "Password change refused",
   "key.added": "Key made",
   "trail.read": "Trail read",

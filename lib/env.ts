@@ -10,6 +10,13 @@ const Environment = z.object({
   AUTH_SECRET: z.string().min(32, "needs at least 32 characters"),
   APP_URL: z.url({ protocol: /^https?$/ }).default("http://localhost:3000"),
   CUPEL_DEMO: z.enum(["0", "1"]).default("0"),
+  /** Proxies of ours in front of the app: how many addresses at the end of X-Forwarded-For are to be believed. */
+  CUPEL_TRUSTED_PROXIES: z.coerce.number().int().min(0).max(10).default(0),
+  /** Requests a minute for one person or key and process; far above what work by hand or a steady feed needs. */
+  CUPEL_REQUESTS_PER_MINUTE: z.coerce.number().int().min(1).default(6_000),
+  /** Sign-ins a minute from one address; each costs a slow hash and a trail entry. */
+  CUPEL_SIGN_INS_PER_MINUTE: z.coerce.number().int().min(1).default(120),
+  LOG_LEVEL: z.enum(["fatal", "error", "warn", "info", "debug", "trace", "silent"]).default("info"),
   CUPEL_ADMIN_EMAIL: z.email().optional(),
   CUPEL_ADMIN_PASSWORD: z.string().min(15, "needs at least 15 characters").optional(),
 });

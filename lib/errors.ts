@@ -10,6 +10,8 @@ const STATUS = {
   invalid: 422,
   rule_broken: 422,
   too_many: 429,
+  gone_away: 499,
+  unavailable: 503,
 } as const;
 
 export type ErrorCode = keyof typeof STATUS;

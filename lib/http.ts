@@ -4,12 +4,15 @@ import type { z } from "zod";
 import { sharedDatabase } from "@/db/client";
 import { demand } from "./auth/demand";
 import { identify } from "./auth/identify";
+import { isForbidden, recordRefusedAccess } from "./auth/refused-access";
 import type { Actor, Context } from "./context";
 import { type Endpoint, pathParameters } from "./endpoint";
 import { ENDPOINTS, type EndpointKey } from "./endpoints";
 import { environment } from "./env";
 import { invalid } from "./errors";
 import { fieldErrors } from "./field-errors";
+import { orGoneAway } from "./gone-away";
+import { refuseUntilInstalled } from "./installed";
 import { log } from "./log";
 import { observeCall } from "./metrics";
 import { newId } from "./new-id";
@@ -43,15 +46,17 @@ export function route<K extends EndpointKey>(key: K, handler: Handler<K>) {
   return async (request: Request, { params }: RouteArguments): Promise<Response> => {
     const requestId = newId();
     const startedMs = performance.now();
-    let actor: Actor | null = null;
+    let ctx: Context | null = null;
     let response: Response;
     try {
-      const ctx = await contextOf(request, endpoint, requestId);
-      actor = ctx.actor;
+      ctx = await contextOf(request, endpoint, requestId);
+      await admit(ctx, endpoint, request);
       const input = await readInput(key, endpoint, request, await params);
       const keyed = { ...ctx, idempotency: idempotencyOf(request, key, endpoint, input) };
       response = toResponse(await handler(keyed, input as InputOf<K>, request), endpoint);
-    } catch (error) {
+    } catch (thrown) {
+      const error = orGoneAway(thrown, request.signal);
+      if (ctx && isForbidden(error)) await recordRefusedAccess(ctx, { route: key, may: endpoint.may });
       response =
         error instanceof ReplayedAnswer
           ? toResponse(error.answer, endpoint)
@@ -65,7 +70,7 @@ export function route<K extends EndpointKey>(key: K, handler: Handler<K>) {
       requestId,
       route: key,
       status: response.status,
-      actor: actor ? actorLabel(actor) : null,
+      actor: ctx ? actorLabel(ctx.actor) : null,
       ms: Math.round(ms),
     });
     return response;
@@ -76,13 +81,16 @@ async function contextOf(request: Request, endpoint: Endpoint, requestId: string
   const db = sharedDatabase(environment().DATABASE_URL);
   const base = { db, now: () => new Date(), requestId, idempotency: null };
   if (endpoint.may === "anyone") return { ...base, actor: { kind: "anonymous" } };
-  const actor = await identify(request.url, request.headers, db, base.now());
-  const ctx: Context = { ...base, actor };
-  // Refused before the input is read, so that a stranger learns nothing about it.
-  demand(ctx, endpoint.may);
-  refuseForeignOrigin(request, actor);
-  await spendFromBudget(actor);
-  return ctx;
+  refuseUntilInstalled();
+  return { ...base, actor: await identify(request.url, request.headers, db, base.now()) };
+}
+
+/** Refuses before the input is read, so that whoever may not learns nothing about it. */
+async function admit(ctx: Context, { may }: Endpoint, request: Request): Promise<void> {
+  if (may === "anyone") return;
+  demand(ctx, may);
+  refuseForeignOrigin(request, ctx.actor);
+  await spendFromBudget(ctx.actor);
 }
 
 async function readInput(

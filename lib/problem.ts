@@ -31,7 +31,7 @@ function problem(
   headers: Readonly<Record<string, string>> = {},
 ): Response {
   const body = {
-    title: STATUS_CODES[status],
+    title: STATUS_CODES[status] ?? "No answer",
     status,
     detail,
     instance: `urn:uuid:${requestId}`,

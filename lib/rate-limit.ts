@@ -1,31 +1,30 @@
 import "server-only";
 import { RateLimiterMemory, RateLimiterRes } from "rate-limiter-flexible";
 import type { Actor } from "./context";
+import { environment } from "./env";
 import { KnownError } from "./errors";
 
-/** Requests a minute for one person or key and process; far above what work by hand or a steady feed needs. */
-const REQUESTS_PER_MINUTE = Number(process.env.CUPEL_REQUESTS_PER_MINUTE ?? 6_000);
-
-const budget = new RateLimiterMemory({ points: REQUESTS_PER_MINUTE, duration: 60 });
-
-/**
- * Sign-ins a minute from one address; each costs a slow hash and a trail entry. The address is the last one of
- * X-Forwarded-For, the one that the proxy nearest to us has seen.
- */
-const SIGN_INS_PER_MINUTE = Number(process.env.CUPEL_SIGN_INS_PER_MINUTE ?? 120);
-
-const signInBudget = new RateLimiterMemory({ points: SIGN_INS_PER_MINUTE, duration: 60 });
+/** Made with the first request, since the settings are read when the server runs and not when it is built. */
+const budgetOf = (setting: "CUPEL_REQUESTS_PER_MINUTE" | "CUPEL_SIGN_INS_PER_MINUTE") => {
+  let budget: RateLimiterMemory | undefined;
+  return () => {
+    budget ??= new RateLimiterMemory({ points: environment()[setting], duration: 60 });
+    return budget;
+  };
+};
+const requestBudget = budgetOf("CUPEL_REQUESTS_PER_MINUTE");
+const signInBudget = budgetOf("CUPEL_SIGN_INS_PER_MINUTE");
 
 /** @throws KnownError too_many with Retry-After */
 export async function spendFromBudget(actor: Actor): Promise<void> {
   const name =
     actor.kind === "person" ? (actor.key?.id ?? actor.personId) : actor.kind === "key" ? actor.id : null;
-  if (name !== null) await consume(budget, name);
+  if (name !== null) await consume(requestBudget(), name);
 }
 
 /** @throws KnownError too_many with Retry-After */
 export async function spendSignInBudget(address: string): Promise<void> {
-  await consume(signInBudget, address);
+  await consume(signInBudget(), address);
 }
 
 async function consume(limiter: RateLimiterMemory, name: string): Promise<void> {

@@ -4,6 +4,7 @@ import type { AuthOptions } from "next-auth";
 import type { JWT } from "next-auth/jwt";
 import Credentials from "next-auth/providers/credentials";
 import { sharedDatabase } from "@/db/client";
+import { callerAddress } from "../caller-address";
 import type { Context } from "../context";
 import { environment } from "../env";
 import { KnownError } from "../errors";
@@ -72,11 +73,8 @@ async function authorize(given: Record<string, unknown> | undefined, headers: Re
   const { email, password, newPassword } = given ?? {};
   const input = SignInInput.safeParse({ email, password, ...(newPassword ? { newPassword } : {}) });
   if (!input.success) throw new Error("refused");
-  const address =
-    String(headers["x-forwarded-for"] ?? "")
-      .split(",")
-      .at(-1)
-      ?.trim() ?? "";
+  const { CUPEL_TRUSTED_PROXIES } = environment();
+  const address = callerAddress(String(headers["x-forwarded-for"] ?? ""), CUPEL_TRUSTED_PROXIES);
   try {
     await spendSignInBudget(address);
   } catch (error) {

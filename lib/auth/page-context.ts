@@ -11,6 +11,7 @@ import { ASKED_PATH_HEADER } from "./asked-path";
 import { mayDo } from "./demand";
 import { identifySession } from "./identify";
 import { PAGES, type PagePath } from "./pages";
+import { isForbidden, recordRefusedAccess } from "./refused-access";
 
 export type PageContext = Context & { actor: PersonActor };
 
@@ -19,7 +20,7 @@ export async function pageContext(path: PagePath): Promise<PageContext> {
   const page = PAGES[path];
   const ctx = await signedInContext();
   if (!ctx) redirect(`/sign-in?from=${encodeURIComponent(await askedFor(path))}`);
-  if (page.may !== "anyone" && !mayDo(ctx.actor, page.may)) renderForbidden();
+  if (page.may !== "anyone" && !mayDo(ctx.actor, page.may)) await refuse(ctx, path);
   return ctx;
 }
 
@@ -43,12 +44,17 @@ export const signedInContext = cache(async (): Promise<PageContext | null> => {
 });
 
 /** What a page reads: a refusal of the read becomes the page's 404 or 403. */
-export async function forPage<T>(reading: Promise<T>): Promise<T> {
+export async function forPage<T>(ctx: PageContext, path: PagePath, reading: Promise<T>): Promise<T> {
   try {
     return await reading;
   } catch (error) {
     if (error instanceof KnownError && error.code === "not_found") notFound();
-    if (error instanceof KnownError && error.code === "forbidden") renderForbidden();
+    if (isForbidden(error)) return refuse(ctx, path);
     throw error;
   }
+}
+
+async function refuse(ctx: PageContext, path: PagePath): Promise<never> {
+  await recordRefusedAccess(ctx, { route: path, may: PAGES[path].may });
+  renderForbidden();
 }

@@ -4,6 +4,7 @@ import { sharedDatabase } from "@/db/client";
 import { rankingOf } from "../cases/ranking/ranking";
 import { environment } from "../env";
 import { faultOf } from "../fault";
+import { noteInstalled } from "../installed";
 import { log } from "../log";
 import { newId } from "../new-id";
 import { prepareInstallation } from "./prepare";
@@ -14,7 +15,7 @@ const RETRY_MS = 5_000;
 
 /**
  * Begins the server's own work as soon as the database is reachable and migrated, and ends it with the process.
- * Until then the app answers, but says at its readiness address that it is not ready.
+ * Until then the app answers that it is getting ready.
  * @throws Error where the environment cannot be used
  */
 export function startServerWork(): void {
@@ -24,6 +25,7 @@ export function startServerWork(): void {
   const scheduler = whenPrepared(async () => {
     const actor = { kind: "system" as const, job: "start" };
     await prepareInstallation({ db, now, actor, requestId: newId(), idempotency: null });
+    noteInstalled();
     // Loaded before the first reviewer asks for the queue.
     rankingOf(db);
     return startScheduler({ db, now }, JOBS);

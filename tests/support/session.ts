@@ -43,11 +43,13 @@ export async function sendSignIn(
   url: string,
   jar: CookieJar,
   credentials: Record<string, string>,
+  headers: Record<string, string> = {},
 ): Promise<Response> {
   const csrf = await visit(url, "/api/auth/csrf", jar);
   const { csrfToken } = (await csrf.json()) as { csrfToken: string };
   return visit(url, "/api/auth/callback/credentials", jar, {
     method: "POST",
+    headers,
     body: new URLSearchParams({ callbackUrl: url, ...credentials, csrfToken, json: "true" }),
   });
 }

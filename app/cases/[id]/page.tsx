@@ -13,6 +13,8 @@ export default async function CasePage({ params }: { params: Promise<{ id: strin
   const ctx = await pageContext("/cases/[id]");
   const input = CaseInput.safeParse(await params);
   const view = await forPage(
+    ctx,
+    "/cases/[id]",
     input.success ? caseView(ctx, input.data) : Promise.reject(notFound("This case")),
   );
   return (

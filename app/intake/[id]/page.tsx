@@ -12,6 +12,8 @@ export default async function ImportPage({ params }: { params: Promise<{ id: str
   const ctx = await pageContext("/intake/[id]");
   const input = ImportInput.safeParse(await params);
   const view = await forPage(
+    ctx,
+    "/intake/[id]",
     input.success ? showImport(ctx, input.data) : Promise.reject(notFound("The import")),
   );
   return <ImportScreen key={view.id} first={view} maySeeTrail={mayDo(ctx.actor, "trail.read")} />;

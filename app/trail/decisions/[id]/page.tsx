@@ -20,6 +20,8 @@ export default async function DecisionPage({ params }: { params: Promise<{ id: s
   const ctx = await pageContext("/trail/decisions/[id]");
   const input = DecisionRecordInput.safeParse(await params);
   const record = await forPage(
+    ctx,
+    "/trail/decisions/[id]",
     input.success ? readDecisionRecord(ctx, input.data) : Promise.reject(notFound("This decision")),
   );
   const { evidence } = record;
