@@ -6,6 +6,9 @@ import { addOuter, addToDiagonal, multiply, triangleLength } from "./triangle";
 import type { Label } from "./types";
 import { checkVector, dot } from "./vector";
 
+/** Multiplications between two pauses: a few milliseconds. */
+const WORK_BETWEEN_PAUSES = 2e6;
+
 /** Predicted decrease, as a part of the loss, below which full Newton steps are taken unchecked. */
 const CLOSE = 1e-9;
 
@@ -39,6 +42,21 @@ export function bestInHindsight(
   weightBound: number,
   offset = 0,
 ): Fit {
+  return atOnce(bestInHindsightInSteps(vectors, labels, weightBound, offset));
+}
+
+/**
+ * As `bestInHindsight`, pausing every few milliseconds of work, so that whoever drives it can let others have their
+ * turn. How it is driven changes nothing of the result.
+ * @param start weights within the bound to begin from, such as those of a shorter log; default 0
+ */
+export function* bestInHindsightInSteps(
+  vectors: readonly Float64Array[],
+  labels: ArrayLike<Label>,
+  weightBound: number,
+  offset = 0,
+  start?: Float64Array,
+): Generator<void, Fit> {
   if (vectors.length === 0) throw new DimensionError("hindsight needs at least one vector");
   if (labels.length !== vectors.length) {
     throw new DimensionError(`${vectors.length} vectors but ${labels.length} labels`);
@@ -46,11 +64,20 @@ export function bestInHindsight(
   if (!(Number.isFinite(weightBound) && weightBound > 0))
     throw new OptionsError("weightBound must be positive");
   if (!Number.isFinite(offset)) throw new OptionsError("offset must be finite");
-  for (const x of vectors) checkVector(x, (vectors[0] as Float64Array).length);
+  const { length } = vectors[0] as Float64Array;
+  for (const x of vectors) checkVector(x, length);
+  if (start) checkVector(start, length);
   for (let i = 0; i < labels.length; i++) {
     if (Math.abs(labels[i] as number) !== 1) throw new LabelError(`label ${i} must be 1 or -1`);
   }
-  return fitInBall({ vectors, labels, weightBound, regularization: 0, offset });
+  return yield* fitInSteps({ vectors, labels, weightBound, regularization: 0, offset, start });
+}
+
+function atOnce<T>(steps: Generator<void, T>): T {
+  for (;;) {
+    const step = steps.next();
+    if (step.done) return step.value;
+  }
 }
 
 /**
@@ -58,12 +85,16 @@ export function bestInHindsight(
  * along the line to that point, which stays inside since the ball is convex.
  */
 export function fitInBall(problem: FitProblem): Fit {
+  return atOnce(fitInSteps(problem));
+}
+
+function* fitInSteps(problem: FitProblem): Generator<void, Fit> {
   const dimension = (problem.vectors[0] as Float64Array).length;
   let weights: Float64Array = problem.start?.slice() ?? new Float64Array(dimension);
-  let loss = lossAt(problem, weights);
+  let loss = yield* lossAt(problem, weights);
   let lastDecrease = Number.POSITIVE_INFINITY;
   for (let round = 0; round < 200; round++) {
-    const { gradient, hessian } = modelAt(problem, weights);
+    const { gradient, hessian } = yield* modelInSteps(problem, weights);
     const b = new Float64Array(dimension);
     multiply(hessian, weights, b);
     for (let i = 0; i < dimension; i++) b[i] = (b[i] as number) - (gradient[i] as number);
@@ -72,7 +103,7 @@ export function fitInBall(problem: FitProblem): Fit {
     const decrease = -dot(gradient, target);
     if (!(decrease > 0)) break;
     if (decrease > CLOSE * loss) {
-      const next = searchLine(problem, weights, target, loss, decrease);
+      const next = yield* searchLine(problem, weights, target, loss, decrease);
       if (next === null) break;
       weights = next.weights;
       loss = next.loss;
@@ -81,51 +112,60 @@ export function fitInBall(problem: FitProblem): Fit {
       if (decrease >= lastDecrease) break;
       lastDecrease = decrease;
       for (let i = 0; i < dimension; i++) weights[i] = (weights[i] as number) + (target[i] as number);
-      loss = lossAt(problem, weights);
+      loss = yield* lossAt(problem, weights);
     }
   }
   projectOntoBall(weights, problem.weightBound);
-  return { weights, loss: lossAt(problem, weights) };
+  return { weights, loss: yield* lossAt(problem, weights) };
 }
 
-function searchLine(
+function* searchLine(
   problem: FitProblem,
   from: Float64Array,
   direction: Float64Array,
   loss: number,
   decrease: number,
-): Fit | null {
+): Generator<void, Fit | null> {
   for (let part = 1; part > 1e-10; part /= 2) {
     const weights = from.map((weight, i) => weight + part * (direction[i] as number));
-    const reached = lossAt(problem, weights);
+    const reached = yield* lossAt(problem, weights);
     if (reached <= loss - 1e-4 * part * decrease) return { weights, loss: reached };
   }
   return null;
 }
 
-function lossAt(problem: FitProblem, weights: Float64Array): number {
+function* lossAt(problem: FitProblem, weights: Float64Array): Generator<void, number> {
+  const pause = Math.ceil(WORK_BETWEEN_PAUSES / weights.length / 8);
   let sum = problem.regularization * dot(weights, weights);
-  problem.vectors.forEach((x, n) => {
+  for (let n = 0; n < problem.vectors.length; n++) {
+    if (n % pause === pause - 1) yield;
+    const x = problem.vectors[n] as Float64Array;
     sum += weightOf(problem, n) * logLoss(problem.offset + dot(weights, x), problem.labels[n] as number);
-  });
+  }
   return sum;
 }
 
+type Model = { gradient: Float64Array; hessian: Float64Array };
+
 /** Gradient and Hessian (a triangle) of the loss. */
-export function modelAt(
-  problem: FitProblem,
-  weights: Float64Array,
-): { gradient: Float64Array; hessian: Float64Array } {
+export function modelAt(problem: FitProblem, weights: Float64Array): Model {
+  return atOnce(modelInSteps(problem, weights));
+}
+
+function* modelInSteps(problem: FitProblem, weights: Float64Array): Generator<void, Model> {
   const dimension = weights.length;
+  const pause = Math.ceil(WORK_BETWEEN_PAUSES / triangleLength(dimension));
   const gradient = weights.map((weight) => 2 * problem.regularization * weight);
   const hessian = new Float64Array(triangleLength(dimension));
-  problem.vectors.forEach((x, n) => {
+  for (let n = 0; n < problem.vectors.length; n++) {
+    if (n % pause === pause - 1) yield;
+    const x = problem.vectors[n] as Float64Array;
     const label = problem.labels[n] as number;
     const p = logistic(-label * (problem.offset + dot(weights, x)));
     const pull = weightOf(problem, n) * label * p;
     for (let i = 0; i < dimension; i++) gradient[i] = (gradient[i] as number) - pull * (x[i] as number);
     addOuter(hessian, x, weightOf(problem, n) * p * (1 - p));
-  });
+  }
   addToDiagonal(hessian, dimension, 2 * problem.regularization);
   return { gradient, hessian };
 }

@@ -1,5 +1,6 @@
 export { DimensionError, LabelError, NotFiniteError, OptionsError, SnapshotError, StepError } from "./errors";
-export { bestInHindsight, type Fit } from "./hindsight";
+export { bestInHindsight, bestInHindsightInSteps, type Fit } from "./hindsight";
+export { type LabelBound, labelBound } from "./label-bound";
 export { logLoss, probabilityOf } from "./logistic";
 export { scoreByCard } from "./scorecard";
 export { createScorer, restoreScorer } from "./scorer";
