@@ -10,7 +10,7 @@ export function seededUnit(seed: number): () => number {
 }
 
 /** Beyond this mean, the normal distribution stands in for the Poisson distribution. */
-const SMALL_MEAN = 60;
+const SMALL_MEAN = 20;
 
 /** A Poisson count of the mean: by inversion (Knuth, Seminumerical Algorithms 3.4.1), rounded normal for a large mean. */
 export function poissonCount(mean: number, unit: () => number): number {
