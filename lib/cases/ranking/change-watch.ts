@@ -2,8 +2,10 @@ import "server-only";
 import type { Database } from "@/db/client";
 import { fillGaps, gapsBehind, joinGaps, type NumberGap } from "./number-gaps";
 import {
+  type ChangeDigest,
   type ChangedCase,
-  readChangedSince,
+  readChangeDigests,
+  readChangedIn,
   readNewestNumbers,
   readNumberedBehind,
   readNumberedIn,
@@ -27,6 +29,8 @@ type Place = {
   /** The highest number seen. Lower ones may still turn up: numbers are given before the commit. */
   highest: number;
   gaps: readonly NumberGap[];
+  /** What has been taken in, by the second of its change: most of what is looked at again has not changed. */
+  digests: ReadonlyMap<number, string>;
 };
 
 export type Look = { rows: ChangedCase[]; place: Place };
@@ -44,17 +48,25 @@ export class ChangeWatch {
     const [lowest = 0] = numbers.length < NUMBERS_AT_START ? [] : numbers;
     const highest = numbers.at(-1) ?? 0;
     const gaps = joinGaps(gapsBehind(lowest, numbers, now), MOST_GAPS);
-    return new ChangeWatch({ lookedAt: now, lookedLongAt: now, isLongDue: true, highest, gaps });
+    return new ChangeWatch({
+      lookedAt: now,
+      lookedLongAt: now,
+      isLongDue: true,
+      highest,
+      gaps,
+      digests: new Map(),
+    });
   }
 
   /** Looks, and moves on only with `settle`: what was found and not taken in is found once more. */
   async look(db: Database, now: Date): Promise<Look> {
-    const { lookedAt, lookedLongAt, isLongDue, highest, gaps } = this.place;
+    const { lookedAt, lookedLongAt, isLongDue, highest, gaps, digests } = this.place;
     const isLong = isLongDue || now.getTime() - lookedLongAt.getTime() >= LONG_LOOK_EVERY_MS;
     const arrived = await readNumberedBehind(db, highest);
     const late = await readNumberedIn(db, gaps);
     const since = isLong ? lookedLongAt.getTime() - LONG_OVERLAP_MS : lookedAt.getTime() - OVERLAP_MS;
-    const changed = await readChangedSince(db, new Date(since));
+    const seen = await readChangeDigests(db, new Date(since));
+    const changed = await readChangedIn(db, secondsToRead(seen, digests));
     const numbersOf = (rows: readonly ChangedCase[]) => rows.map(({ number }) => number);
     const stillMissing = fillGaps(gaps, numbersOf(late)).filter(
       ({ foundAt }) => now.getTime() - foundAt.getTime() < GAP_KEPT_MS,
@@ -66,6 +78,7 @@ export class ChangeWatch {
         lookedLongAt: isLong ? now : lookedLongAt,
         isLongDue: false,
         highest: arrived.at(-1)?.number ?? highest,
+        digests: keptDigests(digests, seen, now.getTime() - 2 * LONG_OVERLAP_MS),
         gaps: joinGaps([...stillMissing, ...gapsBehind(highest, numbersOf(arrived), now)], MOST_GAPS),
       },
     };
@@ -74,4 +87,17 @@ export class ChangeWatch {
   settle({ place }: Look): void {
     this.place = place;
   }
+}
+
+const secondsToRead = (seen: readonly ChangeDigest[], known: ReadonlyMap<number, string>) =>
+  seen.filter(({ second, digest }) => known.get(second) !== digest).map(({ second }) => second);
+
+function keptDigests(
+  known: ReadonlyMap<number, string>,
+  seen: readonly ChangeDigest[],
+  fromMs: number,
+): Map<number, string> {
+  const kept = new Map([...known].filter(([second]) => second * 1_000 >= fromMs));
+  for (const { second, digest } of seen) kept.set(second, digest);
+  return kept;
 }

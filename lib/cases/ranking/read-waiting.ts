@@ -1,5 +1,5 @@
 import "server-only";
-import { and, asc, between, count, desc, eq, gt, gte, inArray, lte, or } from "drizzle-orm";
+import { and, asc, between, count, desc, eq, gt, gte, inArray, lt, lte, or, sql } from "drizzle-orm";
 import type { Executor } from "@/db/client";
 import { bytesToVector } from "@/db/columns";
 import { cases } from "@/db/schema/cases";
@@ -78,8 +78,34 @@ const changed = {
   changedAt: cases.changedAt,
 };
 
-export async function readChangedSince(db: Executor, since: Date): Promise<ChangedCase[]> {
-  return db.select(changed).from(cases).where(gte(cases.changedAt, since));
+/** What the cases that changed within a second look like together: equal digests, equal cases. */
+export type ChangeDigest = { second: number; digest: string };
+
+/** Seconds since 1970, whatever zone the database's session is in. */
+const secondOf = sql<number>`timestampdiff(second, '1970-01-01', ${cases.changedAt})`;
+
+export async function readChangeDigests(db: Executor, since: Date): Promise<ChangeDigest[]> {
+  const one = sql`crc32(concat_ws(' ', ${cases.id}, ${cases.state}, ${cases.revision}, ${cases.scoreId}, ${cases.changedAt}))`;
+  return db
+    .select({
+      second: secondOf.mapWith(Number),
+      digest: sql<string>`concat(count(*), ' ', bit_xor(${one}), ' ', sum(${one}))`,
+    })
+    .from(cases)
+    .where(gte(cases.changedAt, since))
+    .groupBy(secondOf);
+}
+
+/** @param seconds rising */
+export async function readChangedIn(db: Executor, seconds: readonly number[]): Promise<ChangedCase[]> {
+  if (seconds.length === 0) return [];
+  const during = seconds.map((second) =>
+    and(gte(cases.changedAt, new Date(second * 1_000)), lt(cases.changedAt, new Date((second + 1) * 1_000))),
+  );
+  return db
+    .select(changed)
+    .from(cases)
+    .where(or(...during));
 }
 
 /** Cases of every state that were numbered behind `after`, in order of their numbers. */
