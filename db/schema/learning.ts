@@ -43,6 +43,8 @@ export const hindsightFits = mysqlTable(
     id: bigint({ mode: "number" }).primaryKey().autoincrement(),
     signalSetVersion: int().notNull(),
     weightBound: exactDouble().notNull(),
+    /** Vectors are scaled down to it, as for the scorer that the fit is held against. */
+    featureBound: exactDouble().notNull(),
     offset: exactDouble().notNull(),
     asOfSeq: bigint({ mode: "number" }).notNull(),
     labels: int().notNull(),
@@ -55,6 +57,7 @@ export const hindsightFits = mysqlTable(
     uniqueIndex("hindsight_fits_place").on(
       table.signalSetVersion,
       table.weightBound,
+      table.featureBound,
       table.offset,
       table.asOfSeq,
     ),
