@@ -9,29 +9,41 @@ import { useZone } from "../ui/time";
 import { ApprovalsSection } from "./approvals-section";
 import { CalibrationSection } from "./calibration-section";
 import { CurveSection } from "./curve-section";
+import { driftLine } from "./drift-line";
+import { DriftSection } from "./drift-section";
+import { ExportSection } from "./export-section";
+import { InfluenceSection } from "./influence-section";
 import { LearningFigures } from "./learning-figures";
+import { PassedSection } from "./passed-section";
 import { ScorersSection } from "./scorers-section";
-import { useApprovals, useComparison, useRenewal } from "./use-learning";
+import { useApprovals, useComparison, useDrift, useInfluence, usePassed, useRenewal } from "./use-learning";
 import { windowOf } from "./window";
 
 type LearningScreenProps = {
   /** As the server read them, and the window it was asked for. */
   first: { view: LearningView; approvals: ApprovalsView; asked: { from?: string; to?: string } };
+  reviewDecibans: number;
   personId: string;
   mayManage: boolean;
   maySettle: boolean;
 };
 
 /** How well the scorer predicts what reviewers find, and whether another would do better. */
-export function LearningScreen({ first, personId, mayManage, maySettle }: LearningScreenProps) {
+export function LearningScreen(props: LearningScreenProps) {
+  const { first, reviewDecibans, personId, mayManage, maySettle } = props;
   const zone = useZone();
   const [fields, setFields] = useQueryStates({ from: parseAsString, to: parseAsString }, { history: "push" });
   const { unreadable, ...asked } = windowOf(fields, zone);
   const comparison = useComparison(asked, first);
   const approvals = useApprovals(first).data ?? first.approvals;
   const renew = useRenewal();
+  const drift = useDrift();
+  const influence = useInfluence();
   const view = comparison.data ?? first.view;
-  const names = new Map(view.scorers.map(({ id, name }) => [id, name]));
+  const names = new Map([
+    ...view.scorers.map(({ id, name }) => [id, name] as const),
+    ...(influence.data?.people.map(({ person }) => [person.id, person.name] as const) ?? []),
+  ]);
   return (
     <Page>
       <PageHead
@@ -46,7 +58,7 @@ export function LearningScreen({ first, personId, mayManage, maySettle }: Learni
           </Button>
         </Notice>
       )}
-      <LearningFigures view={view} drift={{ value: "…", note: "" }} />
+      <LearningFigures view={view} drift={driftLine(drift.data, drift.isError)} />
       <ApprovalsSection
         approvals={approvals}
         names={names}
@@ -66,6 +78,10 @@ export function LearningScreen({ first, personId, mayManage, maySettle }: Learni
       />
       <CurveSection view={view} />
       <CalibrationSection scorers={view.scorers} />
+      <DriftSection query={drift} mayManage={mayManage} onSeen={renew} />
+      <PassedSection query={usePassed()} reviewDecibans={reviewDecibans} />
+      <InfluenceSection query={influence} personId={personId} mayManage={mayManage} onDone={renew} />
+      <ExportSection />
     </Page>
   );
 }

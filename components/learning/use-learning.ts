@@ -2,7 +2,10 @@
 import { keepPreviousData, useQuery, useQueryClient } from "@tanstack/react-query";
 import { useCallback } from "react";
 import type { ApprovalsView } from "@/lib/approvals/schema";
+import type { DriftView } from "@/lib/learning/drift-schema";
+import type { InfluenceView } from "@/lib/learning/influence-schema";
 import type { LearningInput, LearningView } from "@/lib/learning/learning-schema";
+import type { PassedView } from "@/lib/learning/passed-schema";
 import { type ApiProblem, api } from "../api";
 
 /** Everything on the screen stands under it, so that one act can renew all of it. */
@@ -43,4 +46,32 @@ async function answer<View>(call: Promise<View | null>): Promise<View> {
   const view = await call;
   if (view === null) throw new Error("The server answered with nothing");
   return view;
+}
+
+/** Read after the first paint: each is a question of its own to the server. */
+export function useDrift() {
+  return useQuery<DriftView, ApiProblem>({
+    queryKey: [LEARNING, "drift"],
+    queryFn: ({ signal }) => answer(api("GET /api/learning/drift", {}, { signal })),
+    refetchInterval: REFRESH_MS,
+  });
+}
+
+export function usePassed() {
+  return useQuery<PassedView, ApiProblem>({
+    queryKey: [LEARNING, "passed"],
+    queryFn: ({ signal }) => answer(api("GET /api/learning/passed", {}, { signal })),
+    refetchInterval: REFRESH_MS,
+  });
+}
+
+const RECKONING_MS = 5_000;
+
+/** Asked for more often while effects are being reckoned. */
+export function useInfluence() {
+  return useQuery<InfluenceView, ApiProblem>({
+    queryKey: [LEARNING, "influence"],
+    queryFn: ({ signal }) => answer(api("GET /api/learning/influence", {}, { signal })),
+    refetchInterval: ({ state }) => (state.data?.state === "pending" ? RECKONING_MS : REFRESH_MS),
+  });
 }
