@@ -12,3 +12,13 @@ export class Breath {
     this.since = performance.now();
   }
 }
+
+/** Drives a computation that pauses every few milliseconds, so that others have their turn at its pauses. */
+export async function inBreaths<T>(steps: Generator<void, T>): Promise<T> {
+  const breath = new Breath();
+  for (;;) {
+    const step = steps.next();
+    if (step.done) return step.value;
+    await breath.take();
+  }
+}

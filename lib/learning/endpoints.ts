@@ -1,6 +1,13 @@
 import { ApprovalView } from "../approvals/schema";
 import type { EndpointTable } from "../endpoint";
-import { CandidateInput, CandidateView, DropInput, PromotionInput } from "./learning-schema";
+import {
+  CandidateInput,
+  CandidateView,
+  DropInput,
+  LearningInput,
+  LearningView,
+  PromotionInput,
+} from "./learning-schema";
 import { ScorerInput, ScorerView } from "./schema";
 
 export const learningEndpoints = {
@@ -9,6 +16,12 @@ export const learningEndpoints = {
     may: "scorer.read",
     input: ScorerInput,
     output: ScorerView,
+  },
+  "GET /api/learning": {
+    summary: "The scorer in use and the candidates beside it, judged on the same labels",
+    may: "scorer.read",
+    input: LearningInput,
+    output: LearningView,
   },
   "POST /api/scorers": {
     summary: "Adds a candidate that runs beside the scorer in use, from the first label on",

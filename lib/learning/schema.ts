@@ -9,6 +9,11 @@ export const ScorerView = z.strictObject({
   decisions: z.int(),
   /** Sum in nats of the losses of the scores given before each label, as they were lived. */
   cumulativeLoss: z.number(),
+  /** Loss in nats of the best fixed weights within the bound, over the first `hindsightLabels` labels in force. */
+  hindsightLoss: z.number().nullable(),
+  hindsightLabels: z.int().nullable(),
+  /** What was lived up to that label beyond the loss in hindsight; null until it has been computed. */
+  regret: z.number().nullable(),
   /** Log-odds of the base rate, in nats. */
   offset: z.number(),
   /** Upper bound on the regret so far in nats, where the method has one. */

@@ -4,12 +4,15 @@ import type { Context } from "../context";
 import { CATALOGUE, OFFSETS } from "../signals/catalogue";
 import { coordinatesOf } from "../signals/signal";
 import { readScorerInUse } from "./held-scorer";
+import { regretLived } from "./regret-lived";
 import type { ScorerView } from "./schema";
 
 export async function showScorer(ctx: Context): Promise<ScorerView> {
   demand(ctx, "scorer.read");
-  const { version, cumulativeLoss, scorer } = await readScorerInUse(ctx.db);
+  const held = await readScorerInUse(ctx.db);
+  const { version, cumulativeLoss, scorer } = held;
   const { options } = scorer;
+  const regret = await regretLived(ctx.db, held);
   const weights = scorer.weights();
   return {
     version,
@@ -18,6 +21,9 @@ export async function showScorer(ctx: Context): Promise<ScorerView> {
     featureBound: options.featureBound ?? 0,
     decisions: scorer.labels,
     cumulativeLoss,
+    hindsightLoss: regret?.hindsightLoss ?? null,
+    hindsightLabels: regret?.labels ?? null,
+    regret: regret?.value ?? null,
     offset: options.offset ?? 0,
     certificate: scorer.certificate(),
     signals: CATALOGUE.map((signal, index) => {

@@ -1,3 +1,4 @@
+import { atOnce } from "../steps";
 import { poissonCount, seededUnit } from "./seeded";
 import { precisionOverGroups, type TieGroups, tieGroupsOf } from "./tie-groups";
 
@@ -6,6 +7,8 @@ export type BootstrapInterval = { low: number; high: number; draws: number; seed
 /** More groups than this are joined with their neighbours, which bounds the cost whatever the number of payments. */
 const MOST_GROUPS = 3_000;
 const DRAWS = 500;
+/** A few milliseconds of work. */
+const DRAWS_BETWEEN_PAUSES = 10;
 
 /**
  * 95 % interval of average precision by the percentile bootstrap (Efron 1979) in its Poisson form, in which every
@@ -21,6 +24,15 @@ export function averagePrecisionInterval(
   labels: Int8Array,
   seed = 1,
 ): BootstrapInterval | null {
+  return atOnce(averagePrecisionIntervalInSteps(scores, labels, seed));
+}
+
+/** As `averagePrecisionInterval`, pausing every few milliseconds, so that others can have their turn. */
+export function* averagePrecisionIntervalInSteps(
+  scores: Float64Array,
+  labels: Int8Array,
+  seed = 1,
+): Generator<void, BootstrapInterval | null> {
   const exact = tieGroupsOf(scores, labels);
   const value = precisionOverGroups(exact);
   const frauds = exact.frauds.reduce((sum, count) => sum + count, 0);
@@ -43,6 +55,7 @@ export function averagePrecisionInterval(
     if (precision === null) continue;
     values[draw] = precision;
     draw += 1;
+    if (draw % DRAWS_BETWEEN_PAUSES === 0) yield;
   }
   values.sort();
   const at = (share: number) => Math.min(1, Math.max(0, quantile(values, share) + shift));
