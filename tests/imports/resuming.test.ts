@@ -9,6 +9,7 @@ import type { Context } from "@/lib/context";
 import { importJobs } from "@/lib/imports/jobs";
 import { type ClaimedImport, claimImport, LostLease } from "@/lib/imports/lease";
 import { runImport } from "@/lib/imports/run";
+import { signalled } from "../support/signalled";
 import { testWorld, WORLD_START } from "../support/world";
 import { csv, gzip, row, rows, shown, upload } from "./uploads";
 
@@ -105,27 +106,54 @@ test("two servers that look for work at once share the imports out", async () =>
 });
 
 test("a server killed in the middle of a batch: another one goes on, nothing lost and nothing twice", async () => {
-  const { id } = await upload(supervisor, csv(rows(4 * ROWS)), { source: "killed" });
+  const { id } = await upload(supervisor, csv(rows(ROWS)), { source: "killed" });
   const progress = async () => (await shown(supervisor, id)).rowsDone;
+  const first = holdTrailHead();
+  await first.had;
   const child = startRunner();
   const exited = once(child, "exit");
-  await expect.poll(progress, { timeout: 60_000, interval: 5 }).toBeGreaterThanOrEqual(BATCH);
-  await db.transaction(async (tx) => {
-    // Whoever holds the trail's head keeps every batch from its end.
-    await tx.select().from(trailHead).for("update");
-    child.kill("SIGKILL");
-    expect(await exited).toEqual([null, "SIGKILL"]);
-  });
-  expect(await shown(supervisor, id)).toMatchObject({ state: "running" });
-  expect(await progress()).toBeLessThan(4 * ROWS);
+  // The database lets them through in turn: one batch of the child's, and then us again, before its second one ends.
+  await expect.poll(countWaitingForHead, { timeout: 60_000 }).toBe(1);
+  const second = holdTrailHead();
+  await expect.poll(countWaitingForHead, { timeout: 60_000 }).toBe(2);
+  await first.release();
+  await second.had;
+  expect(await progress()).toBe(BATCH);
+  child.kill("SIGKILL");
+  expect(await exited).toEqual([null, "SIGKILL"]);
+  await second.release();
+  expect(await shown(supervisor, id)).toMatchObject({ state: "running", rowsDone: BATCH });
   const state = async () => {
     await runJobs(runner(later(2)));
     return (await shown(supervisor, id)).state;
   };
   // The database may still be undoing what the dead server had begun.
-  await expect.poll(state, { timeout: 30_000 }).toBe("done");
-  await expectWhole(id, "killed", 4 * ROWS);
-}, 120_000);
+  await expect.poll(state, { timeout: 60_000 }).toBe("done");
+  await expectWhole(id, "killed");
+});
+
+/** Holds the head of the trail from `had` on, which every batch locks at its end. */
+function holdTrailHead() {
+  const [had, released] = [signalled(), signalled()];
+  const done = db.transaction(async (tx) => {
+    await tx.select().from(trailHead).for("update");
+    had.resolve();
+    await released.promise;
+  });
+  const release = async () => {
+    released.resolve();
+    await done;
+  };
+  return { had: had.promise, release };
+}
+
+/** The pattern is put together, so that this question does not count itself. */
+async function countWaitingForHead(): Promise<number> {
+  const [rows] = await world.pool.query(
+    "select count(*) as waiting from information_schema.processlist where db = database() and info like concat('select%trail', '_head%for update')",
+  );
+  return Number((rows as { waiting: number }[])[0]?.waiting);
+}
 
 function startRunner() {
   return spawn(process.execPath, ["--import", "tsx", "tests/imports/import-runner.ts"], {

@@ -17,6 +17,7 @@ import { runJob } from "@/lib/jobs/run-job";
 import { startScheduler } from "@/lib/jobs/scheduler";
 import { log } from "@/lib/log";
 import { problemResponse } from "@/lib/problem";
+import { signalled } from "../support/signalled";
 import { testWorld, WORLD_START, type World } from "../support/world";
 
 let world: World;
@@ -38,14 +39,6 @@ const job = (name: string, run: Job["run"], slot: Job["slot"] = slotOfMinutes(15
   run,
 });
 const runsOf = (name: string) => world.db.select().from(jobRuns).where(eq(jobRuns.job, name));
-
-function signalled() {
-  let resolve = () => {};
-  const promise = new Promise<void>((done) => {
-    resolve = done;
-  });
-  return { promise, resolve };
-}
 
 describe("a job with time slots", () => {
   test("runs once per slot, however many servers try at the same moment", async () => {

@@ -87,7 +87,7 @@ class Listener {
   }
 
   async until(holds: (listener: Listener) => boolean): Promise<void> {
-    const deadline = Date.now() + 10_000;
+    const deadline = Date.now() + 60_000;
     while (!holds(this)) {
       if (Date.now() > deadline) throw new Error(`Not among ${JSON.stringify(this.events)}`);
       await new Promise((resolve) => setTimeout(resolve, 10));

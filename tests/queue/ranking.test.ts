@@ -110,7 +110,7 @@ function expectSameRanking(
 
 async function converged(model: RankingModel): Promise<void> {
   const { version } = await readScorerInUse(world.db);
-  const deadline = Date.now() + 10_000;
+  const deadline = Date.now() + 60_000;
   while (model.version !== version) {
     if (Date.now() > deadline)
       throw new Error(`The other server stands at ${model.version}, not at ${version}`);

@@ -27,12 +27,12 @@ export async function readMail(catcherUrl: string, address: string): Promise<Cau
 
 /** Waits until the address has at least so many messages; for senders that work in the background. */
 export async function awaitMail(catcherUrl: string, address: string, count = 1): Promise<CaughtMail[]> {
-  const deadline = Date.now() + 10_000;
+  const deadline = Date.now() + 60_000;
   for (;;) {
     const mails = await readMail(catcherUrl, address);
     if (mails.length >= count) return mails;
     if (Date.now() > deadline) {
-      throw new Error(`${address} got ${mails.length} messages, not ${count}, within 10 s`);
+      throw new Error(`${address} got ${mails.length} messages, not ${count}, within a minute`);
     }
     await new Promise((resolve) => setTimeout(resolve, pollMs));
   }
