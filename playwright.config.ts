@@ -34,7 +34,7 @@ export default defineConfig({
   },
   webServer: {
     command: `exec node db/commands/start.mjs --throw-away ${process.env.CUPEL_E2E_DATA}`,
-    url: `${baseURL}/api/health/live`,
+    url: `${baseURL}/api/health/ready`,
     timeout: 240_000,
     gracefulShutdown: { signal: "SIGTERM", timeout: 30_000 },
     stdout: "pipe",

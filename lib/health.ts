@@ -6,6 +6,7 @@ import type { Database } from "@/db/client";
 import journal from "@/db/migrations/meta/_journal.json";
 import type { Context } from "./context";
 import { environment } from "./env";
+import { isInstalled } from "./installed";
 import { log } from "./log";
 import type { Readiness } from "./platform-endpoints";
 
@@ -25,8 +26,9 @@ export async function readReadiness(ctx: Context): Promise<Response> {
     holds("migrations", () => refuseOldSchema(ctx.db)),
     holds("mail", () => greetMailServer(environment().SMTP_URL)),
   ]);
-  const readiness: Readiness = { database, migrations, mail };
-  return Response.json(readiness, { status: database && migrations && mail ? 200 : 503 });
+  const installed = isInstalled();
+  const readiness: Readiness = { database, migrations, installed, mail };
+  return Response.json(readiness, { status: database && migrations && installed && mail ? 200 : 503 });
 }
 
 async function holds(part: string, check: () => Promise<unknown>): Promise<boolean> {

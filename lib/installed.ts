@@ -12,9 +12,11 @@ export function noteInstalled(): void {
   shared.cupelInstalled = true;
 }
 
+export const isInstalled = (): boolean => shared.cupelInstalled === true;
+
 /** @throws KnownError unavailable, with Retry-After, between the start of the process and `noteInstalled` */
 export function refuseUntilInstalled(): void {
-  if (shared.cupelInstalled) return;
+  if (isInstalled()) return;
   throw new KnownError("unavailable", "The server is getting ready; send the request again in a moment", {
     headers: { "Retry-After": String(RETRY_AFTER_SECONDS) },
   });

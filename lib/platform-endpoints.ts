@@ -6,6 +6,8 @@ const Nothing = z.strictObject({});
 export const Readiness = z.strictObject({
   database: z.boolean(),
   migrations: z.boolean(),
+  /** A policy and a scorer are in use. */
+  installed: z.boolean(),
   mail: z.boolean(),
 });
 export type Readiness = z.infer<typeof Readiness>;

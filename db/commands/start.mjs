@@ -1,6 +1,6 @@
 import { rmSync } from "node:fs";
 import { parseArgs } from "node:util";
-import { startApp, untilLive } from "../server/app.mjs";
+import { startApp, untilReady } from "../server/app.mjs";
 import { buildApp, isBuildFresh } from "../server/build.mjs";
 import { ensureDemoData, migrate, openDatabase } from "../server/database.mjs";
 import { appEnvironment, checkEnvironment, portFrom } from "../server/environment.mjs";
@@ -65,7 +65,7 @@ async function start(session) {
   const app = startApp(appEnv, { dev });
   session.watch(app);
   occupancy.addChild(app);
-  await untilLive(app, appEnv, signal);
+  await untilReady(app, appEnv, signal);
   occupancy.note({ appUrl: appEnv.APP_URL, smtpUrl, mailUrl: mail?.url });
   printWelcome({ appUrl: appEnv.APP_URL ?? "", mailUrl: mail?.url, people: await readPeople(url) });
 

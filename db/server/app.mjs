@@ -25,13 +25,34 @@ export function startApp(env, { dev = false, output } = {}) {
 }
 
 /**
- * Waits until the app says that it is live.
+ * Waits until the process answers.
  * @param {import("./processes.mjs").Service} service
  * @param {NodeJS.ProcessEnv} env the app's
  * @param {AbortSignal} [signal]
  */
-export async function untilLive(service, env, signal) {
-  const url = `http://127.0.0.1:${env.PORT}/api/health/live`;
+export const untilLive = (service, env, signal) =>
+  untilSaid(service, env, signal, "/api/health/live", ({ status }) => status === 200);
+
+/**
+ * Waits until the app takes requests: its database is migrated, and a policy and a scorer are in use. Mail may be away.
+ * @param {import("./processes.mjs").Service} service
+ * @param {NodeJS.ProcessEnv} env the app's
+ * @param {AbortSignal} [signal]
+ */
+export const untilReady = (service, env, signal) =>
+  untilSaid(service, env, signal, "/api/health/ready", ({ body }) => /"installed":true/.test(body));
+
+/** @typedef {{ status?: number, body: string }} Answer */
+
+/**
+ * @param {import("./processes.mjs").Service} service
+ * @param {NodeJS.ProcessEnv} env
+ * @param {AbortSignal | undefined} signal
+ * @param {string} path
+ * @param {(answer: Answer) => boolean} isSaid
+ */
+async function untilSaid(service, env, signal, path, isSaid) {
+  const url = `http://127.0.0.1:${env.PORT}${path}`;
   /** @type {string | undefined} */
   let ended;
   void service.ended.then((how) => {
@@ -42,10 +63,10 @@ export async function untilLive(service, env, signal) {
     signal?.throwIfAborted();
     if (ended) throw new Refusal(`The app did not start (${ended}); its messages are above.`);
     const answer = await answerOf(url);
-    if (answer === 200) return;
+    if (isSaid(answer)) return;
     if (Date.now() > deadline) {
       throw new Refusal(
-        `The app was not live after ${startWaitMs / 1000} s: ${url} answers ${answer ?? "nothing"}.`,
+        `The app did not get ready within ${startWaitMs / 1000} s: ${url} answers ${answer.status ?? "nothing"} ${answer.body}`,
       );
     }
     await sleep(100);
@@ -55,15 +76,19 @@ export async function untilLive(service, env, signal) {
 /**
  * Asks on a connection of its own: one kept alive would hold up the app's stop.
  * @param {string} url
- * @returns {Promise<number | undefined>} status, or undefined while nobody answers
+ * @returns {Promise<Answer>} without a status while nobody answers
  */
 function answerOf(url) {
   return new Promise((resolve) => {
     const request = get(url, { agent: false, timeout: 10_000 }, (response) => {
-      response.resume();
-      resolve(response.statusCode);
+      let body = "";
+      response.setEncoding("utf8").on("data", (text) => {
+        body += text;
+      });
+      response.once("end", () => resolve({ status: response.statusCode, body }));
+      response.once("error", () => resolve({ body: "" }));
     });
     request.once("timeout", () => request.destroy());
-    request.once("error", () => resolve(undefined));
+    request.once("error", () => resolve({ body: "" }));
   });
 }

@@ -10,11 +10,14 @@ const { db, close } = createDatabase(inject("mariadb").url);
 afterAll(close);
 const get = (path: string, headers: Record<string, string> = {}) => fetch(new URL(path, url), { headers });
 
-test("the process says that it lives, and that database, migrations and mail are there", async () => {
+test("the process says that it lives, and that database, migrations, installation and mail are there", async () => {
   const live = await get("/api/health/live");
   expect([live.status, await live.json()]).toEqual([200, { live: true }]);
   const ready = await get("/api/health/ready");
-  expect([ready.status, await ready.json()]).toEqual([200, { database: true, migrations: true, mail: true }]);
+  expect([ready.status, await ready.json()]).toEqual([
+    200,
+    { database: true, migrations: true, installed: true, mail: true },
+  ]);
 });
 
 test("a key with reports:read reads the figures; they count calls by pattern, not by address", async () => {

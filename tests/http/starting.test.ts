@@ -18,6 +18,7 @@ beforeAll(async () => {
   await onServer(`CREATE DATABASE ${schema}`);
   late = await startApp({
     beside: { ...shared, databaseUrl: inSchema(shared.databaseUrl) },
+    untilInstalled: false,
     env: { CUPEL_SIGN_INS_PER_MINUTE: "3", CUPEL_TRUSTED_PROXIES: "1" },
   });
 });
@@ -38,6 +39,11 @@ const ask = (path: string) => fetch(new URL(path, late.url));
 test("until the installation is there the API says so and when to ask again; then it answers", async () => {
   expect((await ask("/api/health/live")).status).toBe(200);
   expect((await ask("/api/openapi.json")).status).toBe(200);
+  const readiness = await ask("/api/health/ready");
+  expect([readiness.status, await readiness.json()]).toEqual([
+    503,
+    { database: true, migrations: false, installed: false, mail: true },
+  ]);
   for (const path of ["/api/queue", "/api/profile", "/api/metrics"]) {
     const response = await ask(path);
     expect(response.status).toBe(503);

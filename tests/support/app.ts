@@ -1,6 +1,6 @@
 import { closeSync, existsSync, openSync, readFileSync } from "node:fs";
 import path from "node:path";
-import { startApp as startNext, untilLive } from "../../db/server/app.mjs";
+import { startApp as startNext, untilLive, untilReady } from "../../db/server/app.mjs";
 import { buildApp, isBuildFresh } from "../../db/server/build.mjs";
 import { ensureDemoData, migrate } from "../../db/server/database.mjs";
 import { appEnvironment, checkEnvironment } from "../../db/server/environment.mjs";
@@ -22,12 +22,19 @@ type Options = {
   env?: Record<string, string>;
   /** MariaDB as in production, for benchmarks; tests give durability up. */
   durable?: boolean;
+  /** Not for a process whose database has not been migrated. */
+  untilInstalled?: boolean;
   /** A further process on the database and mail catcher of an app that runs already. */
   beside?: AppFacts;
 };
 
 /** Starts the built app (building it first where that is stale) with a database and mail catcher of its own. */
-export async function startApp({ env = {}, durable = false, beside }: Options = {}): Promise<RunningApp> {
+export async function startApp({
+  env = {},
+  durable = false,
+  untilInstalled = true,
+  beside,
+}: Options = {}): Promise<RunningApp> {
   const base = { ...checkEnvironment(process.env), CUPEL_DEMO: "0", ...env };
   if (!isBuildFresh(base) && (await buildApp(base)) !== 0) throw new Error("The build failed");
 
@@ -40,7 +47,7 @@ export async function startApp({ env = {}, durable = false, beside }: Options = 
     const services = beside ?? (await startServices(folder, durable, toStop));
     const { app, url, output } = await startOn(services, folder, base);
     toStop.push(app.stop);
-    await untilLive(app, { ...base, PORT: new URL(url).port });
+    await (untilInstalled ? untilReady : untilLive)(app, { ...base, PORT: new URL(url).port });
     return { ...services, url, pid: app.identity.pid, output, stop };
   } catch (error) {
     const printed = printedIn(folder);
