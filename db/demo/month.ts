@@ -3,6 +3,7 @@ import { assignCase } from "@/lib/cases/assign";
 import { UNDECIDED_STATES } from "@/lib/cases/codes";
 import { caseJobs } from "@/lib/cases/jobs";
 import type { Context, PersonActor } from "@/lib/context";
+import { createCandidate } from "@/lib/learning/create-candidate";
 import { receiveOutcomes } from "@/lib/outcomes/receive";
 import { approvePolicy } from "@/lib/policy/approve";
 import { proposePolicy } from "@/lib/policy/propose";
@@ -37,6 +38,13 @@ const POLICY_CHANGES: Record<number, { reason: string; terms: Partial<PolicyTerm
   },
 };
 
+/** Begun on a day of the scenario by a supervisor; they catch up once the server runs. */
+const CANDIDATES_ON_DAY = 9;
+const CANDIDATES = [
+  { name: "Six rules together", method: "aggregate", options: {} },
+  { name: "Without holding back", method: "implicit", options: { regularization: 0.1 } },
+] as const;
+
 type Counts = { payments: number; decided: number; waiting: number };
 
 /** Lives the scenario up to `now` through the product's own use cases, on a clock of its own. */
@@ -61,6 +69,9 @@ export async function liveMonth(
     past.push(happened);
     const change = POLICY_CHANGES[dayNumber];
     if (change) await changePolicy(ctx, clock, team, change);
+    if (dayNumber === CANDIDATES_ON_DAY) {
+      for (const candidate of CANDIDATES) await createCandidate(contextAt(ctx, supervisor, clock), candidate);
+    }
     await chargeBack(ctx, clock, past[dayNumber - CHARGEBACK_AFTER_DAYS] ?? []);
     let from = day;
     for (const hour of DELIVERIES) {
