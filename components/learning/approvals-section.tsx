@@ -32,32 +32,32 @@ export function ApprovalsSection({
     onSettled();
   };
   return (
-    <div id="approvals" className="scroll-mt-4">
-      <Section
-        title="Waiting for approval"
-        lead="Promotions of scorers, own signals and removals of labels. A second person decides: whoever proposes something cannot approve it."
-      >
-        <div aria-live="polite">{said && <Notice className="mb-4">{said}</Notice>}</div>
-        {waiting.length === 0 ? (
-          <EmptyState title="Nothing waits for approval">
-            Proposals stand here until somebody else decides them.
-          </EmptyState>
-        ) : (
-          <div className="grid items-start gap-4 lg:grid-cols-2">
-            {waiting.map((approval) => (
-              <ApprovalCard
-                key={approval.approvalId}
-                approval={approval}
-                names={names}
-                personId={personId}
-                maySettle={maySettle}
-                onDone={done}
-              />
-            ))}
-          </div>
-        )}
-        {settled.length > 0 && <SettledTable approvals={settled} names={names} />}
-      </Section>
-    </div>
+    <Section
+      title="Waiting for approval"
+      lead="Promotions of scorers, own signals and removals of labels. A second person decides: whoever proposes something cannot approve it."
+    >
+      <div id="approvals" aria-live="polite" className="scroll-mt-28">
+        {said && <Notice className="mb-4">{said}</Notice>}
+      </div>
+      {waiting.length === 0 ? (
+        <EmptyState title="Nothing waits for approval">
+          Proposals stand here until somebody else decides them.
+        </EmptyState>
+      ) : (
+        <div className="grid items-start gap-4 lg:grid-cols-2">
+          {waiting.map((approval) => (
+            <ApprovalCard
+              key={approval.approvalId}
+              approval={approval}
+              names={names}
+              personId={personId}
+              maySettle={maySettle}
+              onDone={done}
+            />
+          ))}
+        </div>
+      )}
+      {settled.length > 0 && <SettledTable approvals={settled} names={names} />}
+    </Section>
   );
 }

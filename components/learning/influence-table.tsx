@@ -70,7 +70,13 @@ function Span({ of: { firstAt, lastAt } }: { of: PersonInfluence }) {
   if (!firstAt || !lastAt) return null;
   return (
     <span className="block text-small text-soft">
-      <Time at={firstAt} as="day" /> to <Time at={lastAt} as="day" />
+      <Time at={firstAt} as="day" />
+      {firstAt.slice(0, 10) !== lastAt.slice(0, 10) && (
+        <>
+          {" "}
+          to <Time at={lastAt} as="day" />
+        </>
+      )}
     </span>
   );
 }

@@ -74,7 +74,7 @@ function Estimates({ view, reviewDecibans }: { view: PassedView; reviewDecibans:
         note={interval(estimate.fraudulent, about)}
       />
       <Figure
-        label="In 1\u202f000 passed"
+        label={`In ${countText(1000)} passed`}
         value={estimate.perThousand.value.toFixed(2)}
         note={interval(estimate.perThousand, (value) => value.toFixed(2))}
       />

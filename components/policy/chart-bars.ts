@@ -25,7 +25,3 @@ export function chartBars({ bins, binDecibans }: ScoreHistogram): Bar[] {
       height: Math.sqrt(count / most),
     }));
 }
-
-export function csvOf(bars: readonly Bar[]): string {
-  return ["decibans_from,payments", ...bars.map(({ from, count }) => `${from},${count}`), ""].join("\r\n");
-}

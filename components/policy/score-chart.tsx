@@ -1,7 +1,9 @@
 import type { ScoreHistogram } from "@/lib/policy/schema";
 import { AXIS_DECIBANS, axisPlace } from "../ui/axis-scale";
+import { type ChartColumn, ChartData } from "../ui/chart-data";
+import { countText } from "../ui/count";
 import { signedDecibans } from "../ui/probability";
-import { chartBars, csvOf } from "./chart-bars";
+import { type Bar, chartBars } from "./chart-bars";
 
 export type ChartLine = { decibans: number; name: string; proposed?: boolean };
 
@@ -11,6 +13,16 @@ type ScoreChartProps = { recent: ScoreHistogram; lines: readonly ChartLine[] };
 const LINE_NAME_REM = 1.2;
 const TICKS = [-30, -20, -10, 0, 10, 20, 30];
 const tickText = (tick: number) => (tick > 0 ? `+${tick}` : `${tick}`.replace("-", "−"));
+
+const COLUMNS: readonly ChartColumn<Bar>[] = [
+  {
+    name: "Decibans from",
+    field: "decibans_from",
+    value: ({ from }) => from,
+    say: ({ from }) => signedDecibans(from),
+  },
+  { name: "Payments", field: "payments", value: ({ count }) => count, say: ({ count }) => countText(count) },
+];
 
 /** How the recent scores lie along the axis of evidence, and where the lines cut them. */
 export function ScoreChart({ recent, lines }: ScoreChartProps) {
@@ -58,39 +70,12 @@ export function ScoreChart({ recent, lines }: ScoreChartProps) {
         Evidence in decibans; 0 is even odds. Heights grow with the square root of the count, so that the few
         high scores show. What lies beyond ±{AXIS_DECIBANS} stands at the ends.
       </figcaption>
-      <details className="mt-2">
-        <summary className="w-fit text-small underline decoration-edge underline-offset-4">
-          Show as table
-        </summary>
-        <table className="mt-2 text-small">
-          <caption className="sr-only">Recent payments by evidence</caption>
-          <thead>
-            <tr>
-              <th scope="col" className="pr-6 text-left font-strong">
-                Decibans from
-              </th>
-              <th scope="col" className="text-right font-strong">
-                Payments
-              </th>
-            </tr>
-          </thead>
-          <tbody>
-            {bars.map(({ from, count }) => (
-              <tr key={from}>
-                <td className="figures pr-6">{signedDecibans(from)}</td>
-                <td className="figures text-right">{count}</td>
-              </tr>
-            ))}
-          </tbody>
-        </table>
-        <a
-          download="recent-scores.csv"
-          href={`data:text/csv;charset=utf-8,${encodeURIComponent(csvOf(bars))}`}
-          className="mt-2 inline-block text-small underline decoration-edge underline-offset-4"
-        >
-          Download as CSV
-        </a>
-      </details>
+      <ChartData
+        caption="Recent payments by evidence"
+        fileName="recent-scores"
+        columns={COLUMNS}
+        rows={bars}
+      />
     </figure>
   );
 }
