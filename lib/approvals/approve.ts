@@ -6,7 +6,7 @@ import { forbidden } from "../errors";
 import { readScorerInUse } from "../learning/held-scorer";
 import { appendTrail } from "../trail/append";
 import { writeOnce } from "../write-once";
-import { carryOut } from "./carry-out";
+import { carryOut, foldAheadOf } from "./carry-out";
 import { approvalOrThrow } from "./read";
 import type { ApprovalView, SettleApprovalInput } from "./schema";
 import { lockWaiting, settle } from "./waiting";
@@ -14,6 +14,9 @@ import { lockWaiting, settle } from "./waiting";
 /** Approves what somebody else proposed and does it in the same transaction. Waiting cases are ranked anew after it. */
 export async function approveProposal(ctx: Context, input: SettleApprovalInput): Promise<ApprovalView> {
   const person = demandPerson(ctx, "approvals.settle");
+  const wish = await approvalOrThrow(ctx.db, input.id);
+  const mayBeDone = wish.state === "waiting" && wish.proposedBy.id !== person.personId;
+  const ahead = mayBeDone ? await foldAheadOf(ctx.db, wish.kind, wish.subject) : undefined;
   const approval = await writeOnce(ctx, async (tx) => {
     const { id, kind, subject, proposedBy } = await lockWaiting(tx, input.id);
     if (proposedBy === person.personId)
@@ -21,7 +24,7 @@ export async function approveProposal(ctx: Context, input: SettleApprovalInput):
     if ("personId" in subject && subject.personId === person.personId)
       throw forbidden("These labels are yours; somebody else has to approve their removal");
     await settle(tx, id, "approved", person.personId, ctx.now());
-    await carryOut(ctx, tx, kind, subject);
+    await carryOut(ctx, tx, kind, subject, ahead);
     await appendTrail(ctx, tx, {
       act: "approval.approved",
       subjectKind: "approval",

@@ -1,8 +1,10 @@
 import "server-only";
-import type { Tx } from "@/db/client";
+import type { Database, Tx } from "@/db/client";
 import type { Context } from "../context";
 import { conflict } from "../errors";
 import { promoteScorer } from "../learning/promote";
+import { foldRemovalAhead, removeLabels } from "../learning/remove-labels";
+import type { FoldAhead } from "../learning/replace";
 import type { ApprovalKind, ApprovalSubject } from "./codes";
 
 type Subjects = {
@@ -14,13 +16,24 @@ type Subjects = {
 
 /** One line for every kind: the function of its domain, which runs in the approval's transaction. */
 const CARRY_OUT: {
-  [K in ApprovalKind]: ((ctx: Context, tx: Tx, subject: Subjects[K]) => Promise<void>) | null;
+  [K in ApprovalKind]:
+    | ((ctx: Context, tx: Tx, subject: Subjects[K], ahead: FoldAhead | undefined) => Promise<void>)
+    | null;
 } = {
   "scorer.promote": promoteScorer,
   "signal.switch_on": null,
   "signal.switch_off": null,
-  "labels.remove": null,
+  "labels.remove": removeLabels,
 };
+
+/** The long part of what was approved, before anything is locked. */
+export async function foldAheadOf(
+  db: Database,
+  kind: ApprovalKind,
+  subject: ApprovalSubject,
+): Promise<FoldAhead | undefined> {
+  return kind === "labels.remove" && "personId" in subject ? foldRemovalAhead(db, subject) : undefined;
+}
 
 /** @throws KnownError conflict where this kind cannot be carried out */
 export async function carryOut<K extends ApprovalKind>(
@@ -28,8 +41,9 @@ export async function carryOut<K extends ApprovalKind>(
   tx: Tx,
   kind: K,
   subject: ApprovalSubject,
+  ahead: FoldAhead | undefined,
 ): Promise<void> {
   const act = CARRY_OUT[kind];
   if (!act) throw conflict("This is not available here");
-  await act(ctx, tx, subject as Subjects[K]);
+  await act(ctx, tx, subject as Subjects[K], ahead);
 }

@@ -1,6 +1,13 @@
 import { ApprovalView } from "../approvals/schema";
 import type { EndpointTable } from "../endpoint";
 import {
+  InfluenceInput,
+  InfluenceView,
+  RemovalInput,
+  RemovalPreview,
+  RemovalPreviewInput,
+} from "./influence-schema";
+import {
   CandidateInput,
   CandidateView,
   DropInput,
@@ -41,6 +48,25 @@ export const learningEndpoints = {
     summary: "Proposes that a candidate takes the place of the scorer in use; a second person approves it",
     may: "scorer.manage",
     input: PromotionInput,
+    output: ApprovalView,
+    status: 201,
+  },
+  "GET /api/learning/influence": {
+    summary: "What each person's labels do to the scorer in use; while it is reckoned anew, the last figures",
+    may: "scorer.read",
+    input: InfluenceInput,
+    output: InfluenceView,
+  },
+  "GET /api/learning/removals/preview": {
+    summary: "What removing one person's labels would do to the scorer in use",
+    may: "scorer.read",
+    input: RemovalPreviewInput,
+    output: RemovalPreview,
+  },
+  "POST /api/learning/removals": {
+    summary: "Proposes that one person's labels are taken out of the scorer; a second person approves it",
+    may: "scorer.manage",
+    input: RemovalInput,
     output: ApprovalView,
     status: 201,
   },

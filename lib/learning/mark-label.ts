@@ -1,5 +1,5 @@
 import "server-only";
-import { eq } from "drizzle-orm";
+import { eq, inArray } from "drizzle-orm";
 import type { Tx } from "@/db/client";
 import { labelledEntities, transactions } from "@/db/schema/transactions";
 import type { Label } from "../scorer";
@@ -20,12 +20,24 @@ export async function markLabel(
   label: Label | null,
   now: Date,
 ): Promise<void> {
+  await tx.update(transactions).set({ label }).where(eq(transactions.id, transaction.id));
+  if (label === null) await forgetEntities(tx, [transaction.id]);
+  else await markEntities(tx, transaction, label, now);
+}
+
+/** Takes the transactions out of the index of labelled entities, which history signals are drawn from. */
+export async function forgetEntities(tx: Tx, transactionIds: readonly string[]): Promise<void> {
+  await tx.delete(labelledEntities).where(inArray(labelledEntities.transactionId, [...transactionIds]));
+}
+
+/** Has the entities of a transaction known as labelled. */
+export async function markEntities(
+  tx: Tx,
+  transaction: LabelledTransaction,
+  label: Label,
+  now: Date,
+): Promise<void> {
   const { id: transactionId, occurredAt } = transaction;
-  await tx.update(transactions).set({ label }).where(eq(transactions.id, transactionId));
-  if (label === null) {
-    await tx.delete(labelledEntities).where(eq(labelledEntities.transactionId, transactionId));
-    return;
-  }
   const keys = [
     ["account", transaction.accountId],
     ["counterparty", transaction.counterpartyId],

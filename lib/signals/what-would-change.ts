@@ -1,6 +1,7 @@
 import type { Scorer } from "../scorer";
-import { CATALOGUE, OFFSETS } from "./catalogue";
+import { CATALOGUE, DIMENSION, OFFSETS } from "./catalogue";
 import { coordinatesOf } from "./signal";
+import type { SignalSet } from "./signal-set";
 
 /** A signal and its coordinates in the vector: those at `from` and after, before `to`. */
 export type SignalSpan = { key: string; name: string; from: number; to: number };
@@ -19,6 +20,18 @@ export const CATALOGUE_SPANS: readonly SignalSpan[] = CATALOGUE.map((signal, s) 
   const from = OFFSETS[s] as number;
   return { key: signal.key, name: signal.name, from, to: from + coordinatesOf(signal) };
 });
+
+/** The catalogue's signals and the team's own ones that are on. */
+export function spansOf({ own }: Pick<SignalSet, "own">): SignalSpan[] {
+  const ours = own.filter(({ isOn }) => isOn);
+  return [
+    ...CATALOGUE_SPANS,
+    ...ours.map(({ key, name, position }) => {
+      const from = DIMENSION + position;
+      return { key, name, from, to: from + 1 };
+    }),
+  ];
+}
 
 /**
  * The signals that most would change a score: each in turn has all its coordinates set to 0, where a signal speaks for

@@ -135,6 +135,11 @@ describe("domains", () => {
     ["approvals", "learning", "what needs a second person asks for one, and is done when one approves"],
     ["approvals", "signals", "as above, for the team's own signals"],
     [
+      "learning",
+      "outcomes",
+      "where a person's label is taken out of the log, an outcome that had only agreed with it speaks again",
+    ],
+    [
       "transactions",
       "outcomes",
       "an outcome that came first is applied in the very transaction in which its payment arrives",
