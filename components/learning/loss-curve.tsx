@@ -71,6 +71,18 @@ export function LossCurve({ view: { curve, scorers } }: LossCurveProps) {
                 className={value === 0 ? "stroke-edge" : "stroke-rule"}
               />
             ))}
+            {lines
+              .filter(({ look }) => look === "hindsight")
+              .map((line) => (
+                <path
+                  key={line.id}
+                  d={marksOf(line)}
+                  vectorEffect="non-scaling-stroke"
+                  strokeWidth={6}
+                  strokeLinecap="round"
+                  className={LOOKS.hindsight.stroke}
+                />
+              ))}
             {lines.toReversed().map((line) => (
               <path
                 key={line.id}
@@ -109,6 +121,11 @@ function pathOf({ points }: LossLine): string {
         `${index === 0 ? "M" : "L"}${(x * 1000).toFixed(1)} ${(1000 - y * 1000).toFixed(1)}`,
     )
     .join("");
+}
+
+/** The best fixed weights are reckoned now and then only: a dot for each time. */
+function marksOf({ points }: LossLine): string {
+  return points.map(({ x, y }) => `M${(x * 1000).toFixed(1)} ${(1000 - y * 1000).toFixed(1)}h0.01`).join("");
 }
 
 function HeightScale({ ticks }: { ticks: readonly { value: number; y: number }[] }) {

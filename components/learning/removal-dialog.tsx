@@ -21,7 +21,8 @@ export function RemovalDialog({ of: { person }, onClose, onDone }: RemovalDialog
   const { unreadable: _, ...span } = windowOf(days, zone);
   const preview = useQuery<RemovalPreview | null, ApiProblem>({
     queryKey: ["learning", "removal", person.id, span.from ?? null, span.to ?? null],
-    queryFn: ({ signal }) => api("GET /api/learning/removal", { personId: person.id, ...span }, { signal }),
+    queryFn: ({ signal }) =>
+      api("GET /api/learning/removals/preview", { personId: person.id, ...span }, { signal }),
     placeholderData: keepPreviousData,
   });
   return (
@@ -30,7 +31,7 @@ export function RemovalDialog({ of: { person }, onClose, onDone }: RemovalDialog
       says="Nothing changes until a second person approves it. Then the log is run again as if these labels had never been given; decisions and what was lived stay as they were."
       hint={`Whoever approves it reads this first. ${person.name} can neither propose nor approve it.`}
       verb="Propose"
-      act={(reason) => api("POST /api/learning/removal", { personId: person.id, ...span, reason })}
+      act={(reason) => api("POST /api/learning/removals", { personId: person.id, ...span, reason })}
       onClose={onClose}
       onDone={onDone}
     >

@@ -9,6 +9,7 @@ export const PAGES = {
   "/cases/[id]": { may: "cases.read", name: "Case" },
   "/floor": { may: "floor.read", name: "Floor" },
   "/policy": { may: "policy.read", name: "Policy" },
+  "/learning": { may: "scorer.read", name: "Learning" },
   "/losses": { may: "losses.read", name: "Losses" },
   "/trail": { may: "trail.read", name: "Trail" },
   "/trail/decisions/[id]": { may: "trail.own", name: "Decision" },
