@@ -31,11 +31,11 @@ export const exactDouble = customType<{ data: number; driverData: Buffer }>({
 });
 
 /** JSON kept as text by MariaDB; parsed here because the driver is told to hand it over as a string. */
-export const json = <T>() =>
+export const json = <T>(read: (text: string) => T = (text) => JSON.parse(text) as T) =>
   customType<{ data: T; driverData: string }>({
     dataType: () => "json",
     toDriver: (value) => JSON.stringify(value),
-    fromDriver: (value) => (typeof value === "string" ? (JSON.parse(value) as T) : (value as T)),
+    fromDriver: (value) => (typeof value === "string" ? read(value) : (value as T)),
   });
 
 /** A vector of doubles as little-endian bytes. */

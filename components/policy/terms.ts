@@ -213,6 +213,13 @@ export const TERM_GROUPS: readonly TermGroup[] = [
         kind: "days",
         unit: "days",
       },
+      {
+        path: "maturedUnlabelled",
+        label: "Payments without a label by then",
+        hint: "A random few a day, no more than were decided by people, may teach the scorer as legitimate.",
+        kind: "choice",
+        words: { ignored: "Teach nothing", legitimate: "Count as legitimate" },
+      },
     ],
   },
   {

@@ -10,7 +10,7 @@ import {
   uniqueIndex,
 } from "drizzle-orm/mysql-core";
 import { POLICY_STATES } from "../../lib/policy/codes";
-import type { PolicyTerms } from "../../lib/policy/schema";
+import { type PolicyTerms, readStoredTerms } from "../../lib/policy/schema";
 import { instant, json, uuid } from "../columns";
 import { people } from "./people";
 
@@ -21,7 +21,7 @@ export const policies = mysqlTable(
     /** Given at approval; null while proposed, declined or withdrawn. */
     version: int(),
     state: mysqlEnum(POLICY_STATES).notNull(),
-    terms: json<PolicyTerms>()().notNull(),
+    terms: json<PolicyTerms>(readStoredTerms)().notNull(),
     basedOnVersion: int(),
     reason: text().notNull(),
     proposedBy: uuid().references(() => people.id),

@@ -12,6 +12,9 @@ export type PolicyState = (typeof POLICY_STATES)[number];
 export const ON_HOLD = ["hold", "refuse", "let_go"] as const;
 export const AT_EXPIRY = ["release", "refuse"] as const;
 
+/** What passed payments without a label teach the scorer once their labels would be final. */
+export const MATURED_UNLABELLED = ["ignored", "legitimate"] as const;
+
 /** The payer or the payee already has the money or the goods: nothing is left to hold. */
 export const CHANNELS_WITHOUT_HOLD: readonly Channel[] = [
   "card_present",

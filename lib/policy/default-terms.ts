@@ -24,6 +24,7 @@ export const DEFAULT_TERMS: PolicyTerms = {
   undoMinutes: 10,
   secondReviewWindowDays: 7,
   maturityDays: { cards: 120, other: 90 },
+  maturedUnlabelled: "ignored",
   hideScoreUntilVerdict: false,
   takeNextOnly: false,
   channels: {

@@ -1,6 +1,6 @@
 import { z } from "zod";
 import { CHANNELS } from "../transactions/codes";
-import { AT_EXPIRY, ON_HOLD, ORDERS, POLICY_STATES } from "./codes";
+import { AT_EXPIRY, MATURED_UNLABELLED, ON_HOLD, ORDERS, POLICY_STATES } from "./codes";
 import { termsFaults } from "./consistency";
 
 const Probability = z.number().min(0).max(1);
@@ -55,6 +55,8 @@ export const PolicyTerms = z.strictObject({
     cards: z.number().int().min(1).max(400),
     other: z.number().int().min(1).max(400),
   }),
+  /** What passed payments that nobody labelled teach after those days; `legitimate` learns a random few of them a day. */
+  maturedUnlabelled: z.enum(MATURED_UNLABELLED),
   hideScoreUntilVerdict: z.boolean(),
   takeNextOnly: z.boolean(),
   channels: z.strictObject(
@@ -65,6 +67,11 @@ export const PolicyTerms = z.strictObject({
   ),
 });
 export type PolicyTerms = z.infer<typeof PolicyTerms>;
+
+/** Terms as stored: the record of an older version lacks what came later, and reads as what held then. */
+export function readStoredTerms(stored: string): PolicyTerms {
+  return { maturedUnlabelled: "ignored", ...JSON.parse(stored) };
+}
 
 const Id = z.uuid();
 const Instant = z.iso.datetime();
