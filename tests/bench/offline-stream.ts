@@ -6,14 +6,10 @@ import type { Row } from "../support/bench";
 import { holdCertificate } from "./support/hold-certificate";
 import { compareWithIntake } from "./support/intake-agreement";
 import { type Judgement, judgeWeek } from "./support/judge-week";
-import { FIRST_REVIEW_DAY, liveStream } from "./support/live-stream";
+import { FIRST_CHARGEBACK_DAY, FIRST_REVIEW_DAY, liveStream, TEST_FROM_DAY } from "./support/live-stream";
 import { readStream, thinFraud } from "./support/stream-payments";
 import { StreamVectors } from "./support/stream-vectors";
 
-/** 2018-06-05, counted from the first of the stream, 2018-05-01. */
-const TEST_FROM_DAY = 35;
-/** A chargeback comes seven days after the payment: the first of the stream's on its eighth day. */
-const FIRST_CHARGEBACK_DAY = 7;
 const ONE_IN = 1_000;
 
 type Options = Omit<ScorerOptions, "dimension" | "offset">;

@@ -5,6 +5,10 @@ import { StreamLabels, type StreamVectors } from "./stream-vectors";
 
 /** Days of the stream count from 0: review begins on the fifteenth. */
 export const FIRST_REVIEW_DAY = 14;
+/** A chargeback comes seven days after the payment: the first on the eighth day. */
+export const FIRST_CHARGEBACK_DAY = 7;
+/** 2018-06-05, counted from the first of the stream, 2018-05-01: the week that is judged. */
+export const TEST_FROM_DAY = 35;
 const ACCOUNTS_A_DAY = 100;
 const CHARGEBACK_AFTER_DAYS = 7;
 
@@ -30,6 +34,8 @@ export type LivedStream = {
   labels: Label[];
   /** Of labels by reviewers and chargebacks, each predicted again right before it was learned. */
   loss: number;
+  /** How many labels those were. */
+  known: number;
   /** How many payments were learned as matured, and how many of those are fraudulent in truth. */
   matured: { count: number; wrong: number };
 };
@@ -59,7 +65,7 @@ class Life {
   ) {
     this.payments = stream.payments;
     const logits = new Float64Array(this.payments.length).fill(Number.NaN);
-    this.lived = { logits, vectors: [], labels: [], loss: 0, matured: { count: 0, wrong: 0 } };
+    this.lived = { logits, vectors: [], labels: [], loss: 0, known: 0, matured: { count: 0, wrong: 0 } };
   }
 
   live(): LivedStream {
@@ -108,6 +114,7 @@ class Life {
   private decide(index: number): void {
     const payment = this.payments[index] as StreamPayment;
     this.lived.loss += this.learn(index, payment.isFraud ? 1 : -1, 1);
+    this.lived.known += 1;
     this.labelled.add(index);
     this.known.add(payment);
   }
