@@ -14,6 +14,8 @@ export type Endpoint = {
   also?: readonly number[];
   /** Media type of the body; `raw` leaves the request's body to the handler. */
   body?: "json" | "raw";
+  /** Set where the handler of a raw body honours the Idempotency-Key itself, with `keyOf`. */
+  keyed?: true;
   /** Media type of the answer where it is not JSON. */
   produces?: string;
 };

@@ -1,5 +1,4 @@
 import "server-only";
-import { createHash } from "node:crypto";
 import type { z } from "zod";
 import { sharedDatabase } from "@/db/client";
 import { demand } from "./auth/demand";
@@ -12,6 +11,7 @@ import { environment } from "./env";
 import { invalid } from "./errors";
 import { fieldErrors } from "./field-errors";
 import { orGoneAway } from "./gone-away";
+import { idempotencyOf, keyOf } from "./idempotency-key";
 import { refuseUntilInstalled } from "./installed";
 import { log } from "./log";
 import { observeCall } from "./metrics";
@@ -20,7 +20,6 @@ import { refuseForeignOrigin } from "./origin";
 import { problemResponse } from "./problem";
 import { spendFromBudget } from "./rate-limit";
 import { readJsonBody } from "./request-body";
-import { canonicalJson } from "./trail/chain";
 import { ReplayedAnswer } from "./write-once";
 
 type InputOf<K extends EndpointKey> = z.output<(typeof ENDPOINTS)[K]["input"]>;
@@ -52,7 +51,8 @@ export function route<K extends EndpointKey>(key: K, handler: Handler<K>) {
       ctx = await contextOf(request, endpoint, requestId);
       await admit(ctx, endpoint, request);
       const input = await readInput(key, endpoint, request, await params);
-      const keyed = { ...ctx, idempotency: idempotencyOf(request, key, endpoint, input) };
+      const sent = endpoint.body === "raw" ? null : keyOf(request);
+      const keyed = { ...ctx, idempotency: idempotencyOf(sent, { route: key, input }) };
       response = toResponse(await handler(keyed, input as InputOf<K>, request), endpoint);
     } catch (thrown) {
       const error = orGoneAway(thrown, request.signal);
@@ -112,15 +112,6 @@ async function readInput(
   const parsed = endpoint.input.safeParse({ ...sent, ...fromPath });
   if (!parsed.success) throw invalid(fieldErrors(parsed.error));
   return parsed.data;
-}
-
-function idempotencyOf(request: Request, route: string, endpoint: Endpoint, input: unknown) {
-  const key = request.headers.get("Idempotency-Key");
-  if (request.method !== "POST" || key === null || endpoint.body === "raw") return null;
-  if (!/^[\x21-\x7e]{1,128}$/.test(key)) {
-    throw invalid([{ path: "Idempotency-Key", message: "needs 1 to 128 visible ASCII characters" }]);
-  }
-  return { key, requestHash: createHash("sha256").update(canonicalJson({ route, input })).digest() };
 }
 
 function toResponse(answer: unknown, endpoint: Endpoint): Response {

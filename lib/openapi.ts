@@ -86,7 +86,7 @@ function operation(key: string, endpoint: Endpoint): JsonSchema {
       required: required?.includes(name) ?? false,
       schema: properties[name],
     })),
-    ...(method === "POST" && !asQuery ? [IDEMPOTENCY_KEY] : []),
+    ...(method === "POST" && (!asQuery || endpoint.keyed) ? [IDEMPOTENCY_KEY] : []),
   ];
   return {
     operationId: operationId(key),

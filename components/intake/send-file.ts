@@ -2,7 +2,8 @@ import type { ImportView } from "@/lib/imports/schema";
 import { type ApiProblem, api, noAnswer, problemFrom } from "../api";
 import type { Target } from "./columns";
 
-export type Upload = { file: File; source: string; mapping: Record<string, Target> };
+/** `sentId` is its idempotency key: the same one sent again after a lost answer makes no second import. */
+export type Upload = { sentId: string; file: File; source: string; mapping: Record<string, Target> };
 
 type Options = { onProgress: (sentBytes: number) => void; signal: AbortSignal };
 
@@ -19,7 +20,7 @@ export async function sendFile(upload: Upload, options: Options): Promise<Import
 }
 
 function post(
-  { file, source, mapping }: Upload,
+  { sentId, file, source, mapping }: Upload,
   { onProgress, signal }: Options,
   resolve: (view: ImportView | null) => void,
   reject: (problem: ApiProblem) => void,
@@ -30,6 +31,7 @@ function post(
   form.set("file", file);
   const request = new XMLHttpRequest();
   request.open("POST", "/api/imports");
+  request.setRequestHeader("Idempotency-Key", sentId);
   request.upload.onprogress = (event) => onProgress(Math.min(event.loaded, file.size));
   request.onload = () => {
     if (request.status === 202) resolve(JSON.parse(request.responseText) as ImportView);

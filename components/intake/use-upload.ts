@@ -3,12 +3,20 @@ import { useQueryClient } from "@tanstack/react-query";
 import { useEffect, useRef, useState } from "react";
 import type { ImportField } from "@/lib/imports/fields";
 import type { ImportView } from "@/lib/imports/schema";
+import { newId } from "@/lib/new-id";
 import { ApiProblem } from "../api";
 import { guessTargets, mappingOf, type Target } from "./columns";
 import { type FileColumn, readFileHead } from "./file-head";
 import { sendFile } from "./send-file";
 
-export type Chosen = { file: File; columns: FileColumn[]; targets: Target[]; source: string };
+export type Chosen = {
+  /** Another one whenever what is to be sent changes. */
+  sentId: string;
+  file: File;
+  columns: FileColumn[];
+  targets: Target[];
+  source: string;
+};
 export type UploadStage =
   | { at: "choosing"; problem: string | null; sent: ImportView | null }
   | { at: "mapping"; chosen: Chosen; problem: ApiProblem | null }
@@ -38,13 +46,15 @@ export function useUpload(fields: readonly ImportField[]) {
       head.columns.map(({ name }) => name),
       fields,
     );
-    const chosen = { file, columns: head.columns, targets, source: DEFAULT_SOURCE };
+    const chosen = { sentId: newId(), file, columns: head.columns, targets, source: DEFAULT_SOURCE };
     setStage({ at: "mapping", chosen, problem: null });
   }
 
   function change(changes: Partial<Pick<Chosen, "targets" | "source">>) {
     setStage((now) =>
-      now.at === "mapping" ? { ...now, problem: null, chosen: { ...now.chosen, ...changes } } : now,
+      now.at === "mapping"
+        ? { ...now, problem: null, chosen: { ...now.chosen, ...changes, sentId: newId() } }
+        : now,
     );
   }
 
@@ -57,7 +67,12 @@ export function useUpload(fields: readonly ImportField[]) {
       setStage((now) => (now.at === "sending" ? { ...now, sentBytes } : now));
     try {
       const sent = await sendFile(
-        { file: chosen.file, source: chosen.source, mapping: mappingOf(names, chosen.targets) },
+        {
+          sentId: chosen.sentId,
+          file: chosen.file,
+          source: chosen.source,
+          mapping: mappingOf(names, chosen.targets),
+        },
         { onProgress, signal: controller.signal },
       );
       if (sent === null) setStage({ at: "mapping", chosen, problem: null });

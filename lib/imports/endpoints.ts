@@ -11,6 +11,7 @@ export const importEndpoints = {
     output: ImportView,
     status: 202,
     body: "raw",
+    keyed: true,
   },
   "GET /api/imports": {
     summary: "Imports, the newest first",

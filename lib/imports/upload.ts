@@ -1,15 +1,17 @@
 import "server-only";
+import { createHash } from "node:crypto";
 import { and, eq } from "drizzle-orm";
 import type { Database } from "@/db/client";
 import { importChunks, imports } from "@/db/schema/transactions";
-import { inTransaction } from "@/db/tx";
 import { demandPerson } from "../auth/demand";
 import type { Context } from "../context";
 import { invalid, KnownError } from "../errors";
 import { fieldErrors } from "../field-errors";
+import { idempotencyOf, keyOf } from "../idempotency-key";
 import { newId } from "../new-id";
 import { appendTrail } from "../trail/append";
 import { holdsCardNumber } from "../transactions/card-number";
+import { writeOnce } from "../write-once";
 import { abandonUpload, uploadLeaseEnd } from "./abandon";
 import { LARGEST_FILE_BYTES, LARGEST_FILE_WORDS } from "./limits";
 import { BrokenOff, type FormFields, type FormFile, readForm } from "./multipart";
@@ -21,6 +23,7 @@ const CHUNK_BYTES = 1024 ** 2;
 /**
  * Takes a file in, piece by piece into the database, where any server finds it, and queues it for reading.
  * One that is refused leaves nothing; one that breaks off leaves an import that says so, and nothing of its content.
+ * With an Idempotency-Key the same file again is let go once it is in whole, and the first import is the answer.
  */
 export function uploadImport(ctx: Context, _input: object, request: Request): Promise<ImportView> {
   return uploadUpTo(LARGEST_FILE_BYTES, ctx, request);
@@ -29,8 +32,9 @@ export function uploadImport(ctx: Context, _input: object, request: Request): Pr
 export async function uploadUpTo(largestBytes: number, ctx: Context, request: Request): Promise<ImportView> {
   const { personId } = demandPerson(ctx, "intake.upload");
   const id = newId();
+  const key = keyOf(request);
   try {
-    await readForm(request, largestBytes, async (form, givenName, file) => {
+    const content = await readForm(request, largestBytes, async (form, givenName, file) => {
       const fields = parseFields(form);
       const fileName = nameOf(givenName);
       await ctx.db.insert(imports).values({
@@ -42,19 +46,19 @@ export async function uploadUpTo(largestBytes: number, ctx: Context, request: Re
         createdAt: ctx.now(),
         leaseExpiresAt: uploadLeaseEnd(ctx.now()),
       });
-      await storeChunks(ctx, id, file);
+      return { ...fields, fileName, sha256: await storeChunks(ctx, id, file) };
     });
-    await queue(ctx, id);
+    const idempotency = idempotencyOf(key, { route: "POST /api/imports", content });
+    return await queue({ ...ctx, idempotency }, id);
   } catch (error) {
     if (error instanceof BrokenOff) await abandonUpload(ctx.db, id, ctx.now());
     else await forget(ctx.db, id);
     throw error;
   }
-  return readImportOrThrow(ctx.db, id);
 }
 
-async function queue(ctx: Context, id: string): Promise<void> {
-  await inTransaction(ctx.db, async (tx) => {
+function queue(ctx: Context, id: string): Promise<ImportView> {
+  return writeOnce(ctx, async (tx) => {
     const [row] = await tx
       .select()
       .from(imports)
@@ -68,6 +72,7 @@ async function queue(ctx: Context, id: string): Promise<void> {
       subjectId: id,
       facts: { source: row.source, sizeBytes: row.sizeBytes },
     });
+    return readImportOrThrow(tx, id);
   });
 }
 
@@ -78,8 +83,12 @@ async function forget(db: Database, id: string): Promise<void> {
   });
 }
 
-/** Each piece is counted at once, so that the list shows how far a transfer is and tells a dead one. */
-async function storeChunks(ctx: Context, importId: string, file: FormFile): Promise<void> {
+/**
+ * Each piece is counted at once, so that the list shows how far a transfer is and tells a dead one.
+ * @returns the SHA-256 of the whole, in hexadecimal digits
+ */
+async function storeChunks(ctx: Context, importId: string, file: FormFile): Promise<string> {
+  const hash = createHash("sha256");
   let part = 0;
   let pieces: Buffer[] = [];
   let held = 0;
@@ -98,6 +107,7 @@ async function storeChunks(ctx: Context, importId: string, file: FormFile): Prom
   };
   for await (const piece of file) {
     pieces.push(piece);
+    hash.update(piece);
     held += piece.byteLength;
     sizeBytes += piece.byteLength;
     if (held >= CHUNK_BYTES) await flush();
@@ -109,6 +119,7 @@ async function storeChunks(ctx: Context, importId: string, file: FormFile): Prom
     );
   await flush();
   if (sizeBytes === 0) throw invalid([{ path: "file", message: "is empty" }]);
+  return hash.digest("hex");
 }
 
 function parseFields({ mapping: mappingText, ...rest }: FormFields): UploadFields {

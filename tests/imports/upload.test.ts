@@ -1,10 +1,11 @@
-import { expect, test } from "vitest";
+import { describe, expect, test } from "vitest";
 import { importChunks, imports } from "@/db/schema/transactions";
 import { abandonSilentUploads } from "@/lib/imports/abandon";
 import { claimImport } from "@/lib/imports/lease";
 import { listImports } from "@/lib/imports/read";
-import { ImportsInput } from "@/lib/imports/schema";
+import { ImportsInput, type ImportView } from "@/lib/imports/schema";
 import { uploadImport, uploadUpTo } from "@/lib/imports/upload";
+import { ReplayedAnswer } from "@/lib/write-once";
 import { testWorld, WORLD_START } from "../support/world";
 import { csv, rows, shown, upload, uploadRequest } from "./uploads";
 
@@ -222,5 +223,52 @@ test("the list is paged, newest first, and searched by state and file name", asy
   expect(await listImports(supervisor, ImportsInput.parse(second))).toMatchObject({
     items: [{ fileName: "Week 9.csv" }],
     next: null,
+  });
+});
+
+describe("with an Idempotency-Key", () => {
+  /** The answer of an upload, or the one that the door gives in its place. */
+  const answerTo = (content: Buffer, form: Parameters<typeof upload>[2]) =>
+    upload(supervisor, content, form).catch((error: unknown) => {
+      if (error instanceof ReplayedAnswer) return error.answer as ImportView;
+      throw error;
+    });
+
+  test("the same file again is the same import, also when both come at once", async () => {
+    const content = csv(rows(12));
+    const first = await answerTo(content, { key: "k-1" });
+    const before = await kept();
+    expect(await answerTo(content, { key: "k-1" })).toEqual(first);
+    expect(await kept()).toEqual(before);
+    const both = await Promise.all([answerTo(content, { key: "k-2" }), answerTo(content, { key: "k-2" })]);
+    expect(both[0]).toEqual(both[1]);
+    expect(both[0].id).not.toBe(first.id);
+    expect(await kept()).toEqual({ imports: before.imports + 1, chunks: before.chunks + 1 });
+  });
+
+  test.each([
+    ["another file", csv(rows(13)), {}],
+    ["another name", csv(rows(14)), { fileName: "other.csv" }],
+    ["another source", csv(rows(14)), { source: "other" }],
+    ["another mapping", csv(rows(14)), { mapping: '{"amount":null}' }],
+  ])("%s under the same key is refused, and leaves nothing", async (what, content, form) => {
+    const key = what.replace(" ", "-");
+    await answerTo(csv(rows(14)), { key });
+    const before = await kept();
+    await expect(upload(supervisor, content, { ...form, key })).rejects.toMatchObject({
+      status: 422,
+      errors: [{ path: "Idempotency-Key" }],
+    });
+    expect(await kept()).toEqual(before);
+  });
+
+  test("a key of one person is none of another's, and an unusable one is named", async () => {
+    const content = csv(rows(15));
+    const first = await answerTo(content, { key: "k-3" });
+    const other = world.ctx(await world.person("supervisor"));
+    expect((await upload(other, content, { key: "k-3" })).id).not.toBe(first.id);
+    await expect(upload(supervisor, content, { key: "x".repeat(129) })).rejects.toMatchObject({
+      errors: [{ path: "Idempotency-Key" }],
+    });
   });
 });

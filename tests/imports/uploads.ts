@@ -22,15 +22,19 @@ export const rows = (count: number) => Array.from({ length: count }, (_, index) 
 export const csv = (lines: readonly string[]) => Buffer.from(`${[HEADER, ...lines].join("\r\n")}\r\n`);
 export const gzip = (content: Buffer) => gzipSync(content);
 
-type Form = { source?: string; mapping?: string; fileName?: string };
+type Form = { source?: string; mapping?: string; fileName?: string; key?: string };
 
 /** The request that a browser makes of such a form. */
-export function uploadRequest(content: Buffer, { source, mapping, fileName = "payments.csv" }: Form = {}) {
+export function uploadRequest(
+  content: Buffer,
+  { source, mapping, fileName = "payments.csv", key }: Form = {},
+) {
   const form = new FormData();
   if (source !== undefined) form.set("source", source);
   if (mapping !== undefined) form.set("mapping", mapping);
   form.set("file", new File([new Uint8Array(content)], fileName));
-  return new Request("http://cupel.test/api/imports", { method: "POST", body: form });
+  const headers: HeadersInit = key === undefined ? {} : { "Idempotency-Key": key };
+  return new Request("http://cupel.test/api/imports", { method: "POST", body: form, headers });
 }
 
 export const upload = (ctx: Context, content: Buffer, form: Form = {}) =>
