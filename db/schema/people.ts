@@ -84,7 +84,6 @@ export const idempotencyKeys = mysqlTable(
     actor: varchar({ length: 80 }).notNull(),
     key: varchar({ length: 128 }).notNull(),
     requestHash: bytes({ length: 32, fixed: true }).notNull(),
-    status: int(),
     answer: json<unknown>()(),
     /** 0 while the figures worked out after the commit are still missing from the answer. */
     complete: tinyint().notNull().default(0),

@@ -28,6 +28,8 @@ export const policies = mysqlTable(
     proposedAt: instant().notNull(),
     settledBy: uuid().references(() => people.id),
     settledAt: instant(),
+    /** Why somebody declined it. */
+    refusalReason: text(),
     /** Moment from which intake and ranking use it. */
     effectiveAt: instant(),
     revision: int().notNull().default(1),
