@@ -22,6 +22,8 @@ const ACT_WORDS: Readonly<Record<string, string>> = {
   "access.refused": "Access refused",
   "person.password_change_refused": "Password change refused",
   "key.added": "Key made",
+  "scorer.drift_warned": "Warning of drift",
+  "scorer.drift_seen": "Warning of drift seen",
   "trail.read": "Trail read",
   "trail.verified": "Chain verified",
   "transaction.received": "Payment received",

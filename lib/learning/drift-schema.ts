@@ -7,7 +7,7 @@ const Instant = z.iso.datetime();
 export const MovedSignal = z.strictObject({
   key: z.string(),
   name: z.string(),
-  /** Mean over the recent labels minus mean over those before, in standard deviations of those before. */
+  /** Mean over the recent labels minus mean over those before, in standard deviations. */
   shift: z.number(),
   meanBefore: z.number(),
   meanRecent: z.number(),
@@ -53,7 +53,7 @@ export const DriftGauge = z.strictObject({
 });
 
 export const DriftView = z.strictObject({
-  /** Decided labels that are watched: those of reviewed cases, since the scorer in use began or warned last. */
+  /** Labels that are watched: decisions on reviewed cases since the scorer in use began, the warm-up aside. */
   watched: z.int(),
   /** Labels a scorer learns from before it is watched. */
   warmUp: z.int(),

@@ -1,5 +1,6 @@
 import { ApprovalView } from "../approvals/schema";
 import type { EndpointTable } from "../endpoint";
+import { DriftInput, DriftSeenInput, DriftView } from "./drift-schema";
 import {
   InfluenceInput,
   InfluenceView,
@@ -15,6 +16,7 @@ import {
   LearningView,
   PromotionInput,
 } from "./learning-schema";
+import { PassedInput, PassedView } from "./passed-schema";
 import { ScorerInput, ScorerView } from "./schema";
 
 export const learningEndpoints = {
@@ -69,5 +71,24 @@ export const learningEndpoints = {
     input: RemovalInput,
     output: ApprovalView,
     status: 201,
+  },
+  "GET /api/learning/drift": {
+    summary: "Whether recent labels are what the scores promised, and the warnings there have been",
+    may: "scorer.read",
+    input: DriftInput,
+    output: DriftView,
+  },
+  "POST /api/learning/drift/{id}/seen": {
+    summary: "Says that a warning has been seen; the same statistic can warn again from there on",
+    may: "scorer.manage",
+    input: DriftSeenInput,
+    output: null,
+    status: 204,
+  },
+  "GET /api/learning/passed": {
+    summary: "Fraud among the payments below the review threshold, estimated from the random sample of them",
+    may: "scorer.read",
+    input: PassedInput,
+    output: PassedView,
   },
 } as const satisfies EndpointTable;
