@@ -17,6 +17,7 @@ import { settleRecoveries } from "../losses/recoveries";
 import { applyOutcomesAgain } from "../outcomes/apply-again";
 import { appendTrail } from "../trail/append";
 import { completeAnswer, writeOnce } from "../write-once";
+import { labelOf } from "./rules";
 import type { RelearnView } from "./schema";
 import { findLastDecision, lockAct, type StandingDecision } from "./standing";
 
@@ -42,8 +43,10 @@ export async function undoDecision(ctx: Context, input: { id: string }): Promise
       for (const standing of act) {
         await takeBack(tx, standing, person, standing.caseRow.id === input.id, now);
         const label = inForce.get(standing.transaction.id);
-        if (label?.decisionId !== standing.decision.id) continue;
-        replacements.push(undoOf(standing, person, label.place));
+        // Without one, the verdict gave none, or the scorer has been made to forget it while the payment kept it.
+        if (label ? label.decisionId !== standing.decision.id : labelOf(standing.decision.verdict) === null)
+          continue;
+        if (label) replacements.push(undoOf(standing, person, label.place));
         await markLabel(tx, standing.transaction, null, now);
         await settleRecoveries(tx, recoveriesOf(standing), false, now);
         await tx.insert(signalRefreshes).values({ transactionId: standing.transaction.id, createdAt: now });
