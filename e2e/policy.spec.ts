@@ -67,20 +67,40 @@ test("one supervisor proposes, cannot approve it, and the risk manager does; wha
     expect(approved?.terms).toMatchObject({ reviewCostMinorPerHour: 4_850 });
   });
 
-  await test.step("the terms of before are put back, by two people again", async () => {
+  const proposeAgain = async (earlier: number, words: string) => {
     await theirs.goto("/policy");
     const before = theirs.getByRole("region", { name: "History" }).getByRole("row", {
-      name: new RegExp(`^${version} `),
+      name: new RegExp(`^${earlier} `),
     });
     await before.getByRole("button", { name: "Propose these again" }).click();
     const editor = theirs.getByRole("region", { name: "Propose a change" });
     await expect(editor.getByRole("row").filter({ hasText: "An hour of review" })).toBeVisible();
-    await editor.getByRole("textbox", { name: "Reason" }).fill(`Back again: ${reason}`);
+    await editor.getByRole("textbox", { name: "Reason" }).fill(words);
     await editor.getByRole("button", { name: "Propose", exact: true }).click();
     await expect(theirs.getByText("Proposed. It waits for somebody else to approve it.")).toBeVisible();
+  };
+
+  await test.step("the terms of before are put back, by two people again", async () => {
+    await proposeAgain(version, `Back again: ${reason}`);
     await approve(`Back again: ${reason}`);
     const rows = await db.select().from(policies);
     const terms = (of: number) => rows.find((row) => row.version === of)?.terms;
     expect(terms(version + 2)).toEqual(terms(version));
+  });
+
+  await test.step("another one is declined, with a reason that its proposer finds in the history", async () => {
+    await proposeAgain(version + 1, `Forth again: ${reason}`);
+    await approver.goto("/policy");
+    const article = approver.getByRole("article").filter({ hasText: `Forth again: ${reason}` });
+    await article.getByRole("button", { name: "Decline" }).click();
+    const dialog = approver.getByRole("dialog");
+    await dialog.getByRole("button", { name: "Decline" }).click();
+    await expect(dialog.getByText(/needs a reason/)).toBeVisible();
+    await dialog.getByRole("textbox", { name: "Reason" }).fill("Let it rest for a quarter");
+    await dialog.getByRole("button", { name: "Decline" }).click();
+    await expect(approver.getByText("The change is declined.")).toBeVisible();
+    await theirs.goto("/policy");
+    const row = theirs.getByRole("row").filter({ hasText: `Forth again: ${reason}` });
+    await expect(row).toContainText("Declined because Let it rest for a quarter");
   });
 });

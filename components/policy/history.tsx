@@ -53,6 +53,11 @@ export function PolicyHistory({ view, onProposeAgain }: HistoryProps) {
             <Td>{record.effectiveAt ? <Time at={record.effectiveAt} /> : "–"}</Td>
             <Td className="min-w-56">
               <p className="whitespace-pre-line">{record.reason}</p>
+              {record.refusalReason !== null && (
+                <p className="mt-1 whitespace-pre-line">
+                  <span className="font-strong">Declined because</span> {record.refusalReason}
+                </p>
+              )}
               <Changes record={record} base={byVersion.get(record.basedOnVersion)} view={view} />
             </Td>
             {onProposeAgain && (

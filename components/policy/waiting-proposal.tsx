@@ -3,6 +3,7 @@ import { useState } from "react";
 import { termChanges } from "@/lib/policy/changes";
 import type { PolicyRecord, PolicyTerms, ScoreHistogram } from "@/lib/policy/schema";
 import { api } from "../api";
+import { ReasonDialog } from "../learning/reason-dialog";
 import { ConfirmDialog } from "../people/confirm-dialog";
 import { Button } from "../ui/button";
 import { Notice } from "../ui/notice";
@@ -84,11 +85,12 @@ export function WaitingProposal(props: WaitingProposalProps) {
         <ApproveDialog proposal={proposal} onClose={close} onDone={done("The change is approved.")} />
       )}
       {asking === "decline" && (
-        <ConfirmDialog
+        <ReasonDialog
           title="Decline this change?"
           says="It stays in the history as declined, and the terms stay as they are."
+          hint="Whoever proposed it reads this, and everybody who reads the history"
           verb="Decline"
-          act={() => api("POST /api/policy/proposals/{id}/decline", { id })}
+          act={(reason) => api("POST /api/policy/proposals/{id}/decline", { id, reason })}
           onClose={close}
           onDone={done("The change is declined.")}
         />

@@ -5,11 +5,11 @@ import { forbidden } from "../errors";
 import { appendTrail } from "../trail/append";
 import { writeOnce } from "../write-once";
 import { policyRecordOrThrow } from "./records";
-import type { PolicyRecord, SettleInput } from "./schema";
+import type { DeclineInput, PolicyRecord } from "./schema";
 import { lockOpenProposal, settleProposal } from "./settle";
 
-/** Turns somebody else's proposal down. Its proposer withdraws it instead. */
-export async function declinePolicy(ctx: Context, input: SettleInput): Promise<PolicyRecord> {
+/** Turns somebody else's proposal down and says why. Its proposer withdraws it instead. */
+export async function declinePolicy(ctx: Context, input: DeclineInput): Promise<PolicyRecord> {
   const person = demandPerson(ctx, "policy.approve");
   return writeOnce(ctx, async (tx) => {
     const proposal = await lockOpenProposal(tx, input.id);
@@ -18,6 +18,7 @@ export async function declinePolicy(ctx: Context, input: SettleInput): Promise<P
       state: "declined",
       settledBy: person.personId,
       settledAt: ctx.now(),
+      refusalReason: input.reason,
     });
     await appendTrail(ctx, tx, {
       act: "policy.declined",

@@ -1,6 +1,6 @@
 import { z } from "zod";
 import type { EndpointTable } from "../endpoint";
-import { ApproveInput, PolicyRecord, PolicyView, ProposeInput, SettleInput } from "./schema";
+import { ApproveInput, DeclineInput, PolicyRecord, PolicyView, ProposeInput, WithdrawInput } from "./schema";
 
 export const policyEndpoints = {
   "GET /api/policy": {
@@ -23,15 +23,15 @@ export const policyEndpoints = {
     output: PolicyRecord,
   },
   "POST /api/policy/proposals/{id}/decline": {
-    summary: "Declines somebody else's proposal",
+    summary: "Declines somebody else's proposal, with a reason",
     may: "policy.approve",
-    input: SettleInput,
+    input: DeclineInput,
     output: PolicyRecord,
   },
   "POST /api/policy/proposals/{id}/withdraw": {
     summary: "Withdraws one's own proposal",
     may: "policy.propose",
-    input: SettleInput,
+    input: WithdrawInput,
     output: PolicyRecord,
   },
 } as const satisfies EndpointTable;

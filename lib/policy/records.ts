@@ -40,6 +40,7 @@ export async function listRecords(
     proposedAt: policy.proposedAt.toISOString(),
     settledBy: personRef(policy.settledBy, settler),
     settledAt: policy.settledAt?.toISOString() ?? null,
+    refusalReason: policy.refusalReason,
     effectiveAt: policy.effectiveAt?.toISOString() ?? null,
   }));
 }

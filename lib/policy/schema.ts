@@ -84,9 +84,11 @@ const ConsistentTerms = PolicyTerms.superRefine((terms, context) => {
   }
 });
 
+const Reason = z.string().trim().min(1, "needs a reason").max(2000);
+
 export const ProposeInput = z.strictObject({
   terms: ConsistentTerms,
-  reason: z.string().trim().min(1, "needs a reason").max(2000),
+  reason: Reason,
   /** The newest approved version, whose terms the proposer had before them. */
   basedOnVersion: z.int().min(1),
 });
@@ -99,8 +101,11 @@ export const ApproveInput = z.strictObject({
 });
 export type ApproveInput = z.infer<typeof ApproveInput>;
 
-export const SettleInput = z.strictObject({ id: Id });
-export type SettleInput = z.infer<typeof SettleInput>;
+export const DeclineInput = z.strictObject({ id: Id, reason: Reason });
+export type DeclineInput = z.infer<typeof DeclineInput>;
+
+export const WithdrawInput = z.strictObject({ id: Id });
+export type WithdrawInput = z.infer<typeof WithdrawInput>;
 
 /** One proposal, or the version that it became. People are null where the system acted. */
 export const PolicyRecord = z.strictObject({
@@ -114,6 +119,8 @@ export const PolicyRecord = z.strictObject({
   proposedAt: Instant,
   settledBy: PersonRef.nullable(),
   settledAt: Instant.nullable(),
+  /** Why it was declined. */
+  refusalReason: z.string().nullable(),
   effectiveAt: Instant.nullable(),
 });
 export type PolicyRecord = z.infer<typeof PolicyRecord>;

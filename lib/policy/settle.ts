@@ -26,7 +26,10 @@ export async function lockOpenProposal(tx: Tx, id: string): Promise<OpenProposal
 export async function settleProposal(
   tx: Tx,
   id: string,
-  change: Pick<typeof policies.$inferInsert, "state" | "settledBy" | "settledAt" | "version" | "effectiveAt">,
+  change: Pick<
+    typeof policies.$inferInsert,
+    "state" | "settledBy" | "settledAt" | "refusalReason" | "version" | "effectiveAt"
+  >,
 ): Promise<void> {
   const [result] = await tx
     .update(policies)

@@ -5,11 +5,11 @@ import { forbidden } from "../errors";
 import { appendTrail } from "../trail/append";
 import { writeOnce } from "../write-once";
 import { policyRecordOrThrow } from "./records";
-import type { PolicyRecord, SettleInput } from "./schema";
+import type { PolicyRecord, WithdrawInput } from "./schema";
 import { lockOpenProposal, settleProposal } from "./settle";
 
 /** Takes one's own proposal back. */
-export async function withdrawPolicy(ctx: Context, input: SettleInput): Promise<PolicyRecord> {
+export async function withdrawPolicy(ctx: Context, input: WithdrawInput): Promise<PolicyRecord> {
   const person = demandPerson(ctx, "policy.propose");
   return writeOnce(ctx, async (tx) => {
     const proposal = await lockOpenProposal(tx, input.id);

@@ -8,9 +8,10 @@ import { newId } from "@/lib/new-id";
 import { approvePolicy } from "@/lib/policy/approve";
 import { declinePolicy } from "@/lib/policy/decline";
 import { DEFAULT_TERMS } from "@/lib/policy/default-terms";
+import { readPolicy } from "@/lib/policy/overview";
 import { proposePolicy } from "@/lib/policy/propose";
 import { newestApproved, policyInForce } from "@/lib/policy/read";
-import type { PolicyTerms } from "@/lib/policy/schema";
+import { DeclineInput, type PolicyTerms } from "@/lib/policy/schema";
 import { applyPolicyInForce } from "@/lib/policy/take-effect";
 import { withdrawPolicy } from "@/lib/policy/withdraw";
 import { testWorld, WORLD_START } from "../support/world";
@@ -80,7 +81,8 @@ test("nobody approves or declines their own proposal, whatever their roles or ta
   const proposal = await propose(both);
   const tabs = await Promise.allSettled([approve(both, proposal.policyId), approve(both, proposal.policyId)]);
   expect(tabs.map((tab) => tab.status === "rejected" && tab.reason.code)).toEqual(["forbidden", "forbidden"]);
-  await expect(declinePolicy(as(both), { id: proposal.policyId })).rejects.toMatchObject({
+  const refusal = { id: proposal.policyId, reason: "Not this month" };
+  await expect(declinePolicy(as(both), refusal)).rejects.toMatchObject({
     code: "forbidden",
   });
   expect((await newestApproved(world.db)).version).toBe(version);
@@ -139,15 +141,33 @@ test("what is settled stays settled, and only its proposer withdraws a proposal"
   await expect(withdrawPolicy(as(other), { id: declined.policyId })).rejects.toMatchObject({
     code: "forbidden",
   });
-  expect(await declinePolicy(as(other), { id: declined.policyId })).toMatchObject({
+  const { policyId } = declined;
+  const refusal = { id: policyId, reason: "Too many alerts for one shift" };
+  expect(await declinePolicy(as(other), refusal)).toMatchObject({
     state: "declined",
     version: null,
+    refusalReason: refusal.reason,
   });
-  const { policyId } = declined;
   await expect(approve(riskManager, policyId)).rejects.toMatchObject({ code: "conflict" });
-  await expect(declinePolicy(as(other), { id: policyId })).rejects.toMatchObject({ code: "conflict" });
+  await expect(declinePolicy(as(other), refusal)).rejects.toMatchObject({ code: "conflict" });
   await expect(withdrawPolicy(as(supervisor), { id: policyId })).rejects.toMatchObject({ code: "conflict" });
   await expect(approve(riskManager, newId())).rejects.toMatchObject({ code: "not_found" });
+});
+
+test("a proposal is declined with a reason, which stays out of the trail", async () => {
+  const { policyId } = await propose();
+  const reason = "Ask again after the holidays";
+  for (const nothing of ["", "  "]) {
+    expect(DeclineInput.safeParse({ id: policyId, reason: nothing }).error?.issues[0]?.path).toEqual([
+      "reason",
+    ]);
+  }
+  await declinePolicy(as(other), { id: policyId, reason });
+  const { history } = await readPolicy(as(supervisor));
+  expect(history.find((record) => record.policyId === policyId)).toMatchObject({ refusalReason: reason });
+  const entries = await world.db.select().from(trail).where(eq(trail.subjectId, policyId));
+  expect(entries.map(({ act }) => act)).toContain("policy.declined");
+  expect(JSON.stringify(entries.map(({ facts }) => facts))).not.toContain("holidays");
 });
 
 test("an earlier version's terms come back as a version of their own", async () => {
