@@ -1,7 +1,7 @@
 import "server-only";
 import { asc, eq } from "drizzle-orm";
 import type { Executor } from "@/db/client";
-import { bytesToVector, vectorToBytes } from "@/db/columns";
+import { vectorToBytes } from "@/db/columns";
 import { cases, decisions } from "@/db/schema/cases";
 import { apiKeys, people } from "@/db/schema/people";
 import { policies } from "@/db/schema/policies";
@@ -15,8 +15,10 @@ import type { Context, PersonActor } from "../context";
 import { forbidden, notFound } from "../errors";
 import { scorerAsOf } from "../learning/as-of";
 import { evidenceOf, packEvidence } from "../learning/evidence";
+import { signalSetOfVersion } from "../learning/lineage";
 import { formatAmount } from "../money";
 import { listRecords } from "../policy/records";
+import { fitVector } from "../signals/read-signal-set";
 import { appendTrail } from "../trail/append";
 import { entryViews } from "../trail/entry-views";
 import type { DecisionRecordInput, DecisionRecordView } from "./schema";
@@ -93,12 +95,14 @@ async function refuseOthers(ctx: Context, actor: PersonActor, caseId: string): P
 
 async function isRederivedEqual(db: Executor, decision: Row["decision"]): Promise<boolean> {
   const [score] = await db
-    .select({ vector: scores.vector })
+    .select({ transactionId: scores.transactionId, vector: scores.vector })
     .from(scores)
     .where(eq(scores.id, decision.scoreId));
   if (!score) throw new Error(`Score ${decision.scoreId} is not there`);
   const scorer = await scorerAsOf(db, decision.scorerVersionBefore);
-  const again = packEvidence(evidenceOf(scorer, bytesToVector(score.vector)));
+  const signals = await signalSetOfVersion(db, decision.scorerVersionBefore);
+  const vector = await fitVector(db, signals, score.transactionId, score.vector);
+  const again = packEvidence(evidenceOf(scorer, vector));
   return vectorToBytes(again).equals(decision.evidence);
 }
 

@@ -8,9 +8,9 @@ import type { Context } from "../context";
 import { forbidden } from "../errors";
 import { scorerAsOf } from "../learning/as-of";
 import { evidenceOf, packEvidence } from "../learning/evidence";
-import { readLineage, stageOf } from "../learning/lineage";
+import { readLineage, signalSetOfVersion, stageOf } from "../learning/lineage";
 import { DimensionError, NotFiniteError, type Scorer } from "../scorer";
-import { CATALOGUE_SPANS, whatWouldChange } from "../signals/what-would-change";
+import { type SignalSpan, spansOf, whatWouldChange } from "../signals/what-would-change";
 import { appendTrail } from "../trail/append";
 import { caseScoresOrThrow } from "./case-scores";
 import { type KeptScore, keptScoreOrThrow } from "./kept-score";
@@ -45,14 +45,19 @@ async function derive(db: Database, kept: KeptScore): Promise<DerivationView> {
   if (!stage) return { ...view, ...nothing, problem: `No scorer ever had version ${kept.scorerVersion}.` };
   const scorer = await scorerAsOf(db, kept.scorerVersion);
   try {
-    return { ...view, ...compare(scorer, kept), labels: scorer.labels, problem: null };
+    const spans = spansOf(await signalSetOfVersion(db, kept.scorerVersion));
+    return { ...view, ...compare(scorer, kept, spans), labels: scorer.labels, problem: null };
   } catch (error) {
     if (!(error instanceof DimensionError || error instanceof NotFiniteError)) throw error;
     return { ...view, ...nothing, problem: "The signals kept with this score are not those of its scorer." };
   }
 }
 
-function compare(scorer: Scorer, { vector, logit, leverage, evidence }: KeptScore) {
+function compare(
+  scorer: Scorer,
+  { vector, logit, leverage, evidence }: KeptScore,
+  spans: readonly SignalSpan[],
+) {
   const again = scorer.score(vector);
   const equal =
     evidence === null
@@ -61,7 +66,7 @@ function compare(scorer: Scorer, { vector, logit, leverage, evidence }: KeptScor
   return {
     derived: again.logit,
     equal,
-    withoutSignals: whatWouldChange(scorer, vector, CATALOGUE_SPANS).map(withoutSignalView),
+    withoutSignals: whatWouldChange(scorer, vector, spans).map(withoutSignalView),
   };
 }
 

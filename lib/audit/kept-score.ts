@@ -7,6 +7,8 @@ import { decisions } from "@/db/schema/cases";
 import { scores } from "@/db/schema/transactions";
 import { notFound } from "../errors";
 import { unpackEvidence } from "../learning/evidence";
+import { signalSetOfVersion } from "../learning/lineage";
+import { fitVector } from "../signals/read-signal-set";
 
 /** A score as the record has it. */
 export type KeptScore = {
@@ -70,17 +72,23 @@ async function findShown(db: Database, transactionId: string, id: string): Promi
       at: decisions.decidedAt,
       scorerVersion: decisions.scorerVersionBefore,
       evidence: decisions.evidence,
+      transactionId: scores.transactionId,
       vector: scores.vector,
     })
     .from(decisions)
     .innerJoin(scores, eq(scores.id, decisions.scoreId))
     .where(and(eq(decisions.id, id), eq(decisions.transactionId, transactionId)));
   if (!row) return null;
+  const { at, scorerVersion, evidence } = row;
+  // What was decided on may have been scored under an earlier set of signals; the evidence was not.
+  const signals = await signalSetOfVersion(db, scorerVersion);
   return {
-    ...row,
+    at,
+    scorerVersion,
+    evidence,
     scoreId: id,
     kind: "decision",
-    vector: bytesToVector(row.vector),
+    vector: await fitVector(db, signals, row.transactionId, row.vector),
     logit: unpackEvidence(bytesToVector(row.evidence)).logit,
     leverage: null,
   };

@@ -1,8 +1,9 @@
 import { natsToDecibans, probabilityOf } from "../decibans";
 import type { Evidence } from "../learning/evidence";
 import type { Thresholds } from "../policy/rules";
-import { SIGNAL_SET_VERSION } from "../signals/catalogue";
+import { CATALOGUE_VERSION } from "../signals/catalogue";
 import { everyPaymentNats, groupContributions } from "../signals/group";
+import type { SignalSet } from "../signals/signal-set";
 import type { WithoutSignal } from "../signals/what-would-change";
 import type { EvidenceView } from "./schema";
 
@@ -10,7 +11,8 @@ export type Scored = {
   evidence: Evidence;
   vector: Float64Array;
   missing: Uint8Array;
-  signalSetVersion: number;
+  /** The set that vector, marks and evidence are of. */
+  signals: SignalSet;
   /** What would change it, where the scorer that gave it is at hand. */
   without: readonly WithoutSignal[] | null;
 };
@@ -25,13 +27,13 @@ export function evidenceView(
   versions: { scorerVersion: number; policyVersion: number },
 ): EvidenceView {
   const { evidence } = scored;
-  const common = isOfThisSet(scored) ? everyPaymentNats(evidence.contributions) : 0;
+  const common = isOfThisCatalogue(scored) ? everyPaymentNats(evidence.contributions) : 0;
   return {
     probability: probabilityOf(evidence.logit),
     totalDecibans: natsToDecibans(evidence.logit),
     baseRateDecibans: natsToDecibans(evidence.offset + common),
-    signals: isOfThisSet(scored)
-      ? groupContributions(evidence.contributions, scored.vector, scored.missing)
+    signals: isOfThisCatalogue(scored)
+      ? groupContributions(evidence.contributions, scored.vector, scored.missing, scored.signals.own)
       : [earlierSignals(evidence)],
     littleExperienceDecibans: natsToDecibans(evidence.pull),
     withoutSignals: scored.without?.map(withoutSignalView) ?? null,
@@ -51,7 +53,7 @@ export function withoutSignalView({ key, name, logit, change }: WithoutSignal) {
   };
 }
 
-const isOfThisSet = ({ signalSetVersion }: Scored) => signalSetVersion === SIGNAL_SET_VERSION;
+const isOfThisCatalogue = ({ signals }: Scored) => signals.catalogueVersion === CATALOGUE_VERSION;
 
 /** The catalogue of another version cannot name its coordinates; their sum still belongs on the balance. */
 function earlierSignals({ contributions }: Evidence) {

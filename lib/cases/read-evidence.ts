@@ -3,12 +3,15 @@ import { eq } from "drizzle-orm";
 import type { Database, Executor } from "@/db/client";
 import { bytesToVector } from "@/db/columns";
 import type { decisions } from "@/db/schema/cases";
-import { scores } from "@/db/schema/transactions";
+import { scores, transactions } from "@/db/schema/transactions";
 import { evidenceOf, unpackEvidence } from "../learning/evidence";
 import { readScorerForScoring } from "../learning/held-scorer";
+import { signalSetOfVersion } from "../learning/lineage";
 import { type PolicyInForce, policyInForce } from "../policy/read";
 import { thresholdsInForce } from "../policy/thresholds";
-import { CATALOGUE_SPANS, whatWouldChange } from "../signals/what-would-change";
+import { FORMULA_COLUMNS } from "../signals/read-signal-set";
+import { extendSignals, type SignalSet } from "../signals/signal-set";
+import { spansOf, whatWouldChange } from "../signals/what-would-change";
 import { evidenceView } from "./evidence-view";
 import type { EvidenceView } from "./schema";
 
@@ -24,13 +27,13 @@ export async function readEvidenceNow(
   policy: PolicyInForce,
   now: Date,
 ): Promise<EvidenceView> {
-  const score = await readScoreOrThrow(db, scoreId);
-  const { scorer, version } = await readScorerForScoring(db);
+  const { scorer, version, signals } = await readScorerForScoring(db);
+  const score = await readScoreOrThrow(db, scoreId, signals);
   return evidenceView(
     {
       ...score,
       evidence: evidenceOf(scorer, score.vector),
-      without: whatWouldChange(scorer, score.vector, CATALOGUE_SPANS),
+      without: whatWouldChange(scorer, score.vector, spansOf(signals)),
     },
     await thresholdsInForce(db, policy, now),
     { scorerVersion: version, policyVersion: policy.version },
@@ -39,7 +42,8 @@ export async function readEvidenceNow(
 
 /** The evidence that was before the person who decided, with the lines as they lay then. */
 export async function readEvidenceShown(db: Executor, decision: DecisionRow): Promise<EvidenceView> {
-  const score = await readScoreOrThrow(db, decision.scoreId);
+  const signals = await signalSetOfVersion(db, decision.scorerVersionBefore);
+  const score = await readScoreOrThrow(db, decision.scoreId, signals);
   const policy = await policyInForce(db, decision.decidedAt);
   return evidenceView(
     { ...score, evidence: unpackEvidence(bytesToVector(decision.evidence)), without: null },
@@ -48,11 +52,14 @@ export async function readEvidenceShown(db: Executor, decision: DecisionRow): Pr
   );
 }
 
-async function readScoreOrThrow(db: Executor, scoreId: number) {
+/** Vector and marks as the set has them: a case may wait with the score of an earlier one. */
+async function readScoreOrThrow(db: Executor, scoreId: number, signals: SignalSet) {
   const [row] = await db
-    .select({ vector: scores.vector, missing: scores.missing, signalSetVersion: scores.signalSetVersion })
+    .select({ vector: scores.vector, missing: scores.missing, payment: FORMULA_COLUMNS })
     .from(scores)
+    .innerJoin(transactions, eq(transactions.id, scores.transactionId))
     .where(eq(scores.id, scoreId));
   if (!row) throw new Error(`Score ${scoreId} is not there`);
-  return { ...row, vector: bytesToVector(row.vector), missing: new Uint8Array(row.missing) };
+  const scored = { vector: bytesToVector(row.vector), missing: new Uint8Array(row.missing) };
+  return { signals, ...extendSignals(signals, scored, row.payment) };
 }

@@ -9,12 +9,11 @@ import { scores, transactions } from "@/db/schema/transactions";
 import { inTransaction } from "@/db/tx";
 import { demand } from "../auth/demand";
 import type { Context } from "../context";
-import { readScorerInUse } from "../learning/held-scorer";
+import { type HeldScorer, readScorerInUse } from "../learning/held-scorer";
 import { log } from "../log";
 import { policyInForce } from "../policy/read";
 import { zoneOf } from "../policy/rules";
 import { thresholdsInForce } from "../policy/thresholds";
-import { SIGNAL_SET_VERSION } from "../signals/catalogue";
 import { recomputeVectors } from "../signals/recompute";
 import type { SignalVector } from "../signals/vectors";
 import { UNDECIDED_STATES } from "./codes";
@@ -77,15 +76,17 @@ async function refreshBatch(ctx: Context, tx: Tx, firstId: number): Promise<stri
   if (wishes[0]?.id !== firstId) return null;
   const labelled = [...new Set(wishes.map(({ transactionId }) => transactionId))];
   const linked = await findLinked(tx, labelled);
+  const held = await readScorerInUse(tx);
   const vectors = await recomputeVectors(
     ctx.db,
     linked.map(({ transactionId }) => transactionId),
+    held.signals,
   );
   const changed = linked.filter(({ transactionId, vector }) => {
     const fresh = vectors.get(transactionId);
     return fresh !== undefined && !vectorToBytes(fresh.vector).equals(vector);
   });
-  await writeScores(ctx, tx, changed, vectors);
+  await writeScores(ctx, tx, held, changed, vectors);
   await tx.delete(signalRefreshes).where(
     inArray(
       signalRefreshes.id,
@@ -143,17 +144,18 @@ function newestOf({ column, closeness }: Tie, key: string): SQL {
     order by ${transactions.occurredAt} desc limit ${sql.raw(String(NEWEST_OF_ENTITY))})`;
 }
 
-async function writeScores(
+/** Writes fresh scores of waiting cases; one that was decided meanwhile keeps the score it has. */
+export async function writeScores(
   ctx: Context,
   tx: Tx,
-  changed: readonly Linked[],
+  { scorer, version, signals }: HeldScorer,
+  changed: readonly Pick<Linked, "caseId" | "transactionId">[],
   vectors: ReadonlyMap<string, SignalVector>,
 ): Promise<void> {
   if (changed.length === 0) return;
   const now = ctx.now();
   const policy = await policyInForce(tx, now);
   const thresholds = await thresholdsInForce(tx, policy, now);
-  const { scorer, version } = await readScorerInUse(tx);
   await tx.insert(scores).values(
     changed.map(({ transactionId }) => {
       const { vector, missing } = vectors.get(transactionId) as SignalVector;
@@ -164,7 +166,7 @@ async function writeScores(
         takenAt: now,
         vector: vectorToBytes(vector),
         missing: Buffer.from(missing),
-        signalSetVersion: SIGNAL_SET_VERSION,
+        signalSetVersion: signals.version,
         scorerVersion: version,
         policyVersion: policy.version,
         logit,

@@ -1,7 +1,7 @@
 import "server-only";
 import { and, eq, isNull, sql } from "drizzle-orm";
 import type { Tx } from "@/db/client";
-import { bytesToVector, vectorToBytes } from "@/db/columns";
+import { vectorToBytes } from "@/db/columns";
 import { cases, decisions } from "@/db/schema/cases";
 import { signalRefreshes } from "@/db/schema/scorers";
 import { scores } from "@/db/schema/transactions";
@@ -18,6 +18,7 @@ import { type FoldAhead, foldAhead, replaceLabels } from "../learning/replace";
 import { bookDecision, reverseBooking } from "../losses/book";
 import { newId } from "../new-id";
 import { policyInForce } from "../policy/read";
+import { fitVector } from "../signals/read-signal-set";
 import { appendTrail } from "../trail/append";
 import { completeAnswer, writeOnce } from "../write-once";
 import { labelOf } from "./rules";
@@ -35,7 +36,7 @@ export async function correctDecision(ctx: Context, input: CorrectionInput): Pro
       const standing = await lockStanding(tx, input.id);
       if (!standing) throw conflict("No decision stands on this case");
       await refuseOwn(tx, standing, person);
-      refuseSame(standing, input);
+      await refuseSame(tx, standing, input);
       const policy = await policyInForce(tx, now);
       const held = await lockScorerInUse(tx);
       const versionBefore = held.version;
@@ -127,10 +128,16 @@ async function refuseOwn(
     throw ruleBroken("Nobody corrects a case they decided themselves");
 }
 
-function refuseSame({ decision }: StandingDecision, input: CorrectionInput): void {
-  if (decision.verdict === input.verdict && decision.typology === input.typology) {
-    throw ruleBroken("The verdict is the one that stands already", "verdict");
-  }
+/** The same verdict once more is one where the scorer has been made to forget the first: it labels again. */
+async function refuseSame(
+  tx: Tx,
+  { decision, transaction }: StandingDecision,
+  input: CorrectionInput,
+): Promise<void> {
+  if (decision.verdict !== input.verdict || decision.typology !== input.typology) return;
+  const isForgotten =
+    labelOf(input.verdict) !== null && !(await labelsInForce(tx, [transaction.id])).has(transaction.id);
+  if (!isForgotten) throw ruleBroken("The verdict is the one that stands already", "verdict");
 }
 
 async function supersede(tx: Tx, { decision, caseRow }: StandingDecision, now: Date): Promise<void> {
@@ -156,7 +163,7 @@ type Correction = {
 async function insertCorrection(tx: Tx, correction: Correction): Promise<void> {
   const { decisionId, standing, person, input, held, policyVersion, now } = correction;
   const { decision } = standing;
-  const evidence = evidenceOf(held.scorer, await vectorOf(tx, decision.scoreId));
+  const evidence = evidenceOf(held.scorer, await vectorOf(tx, held, decision));
   await tx.insert(decisions).values({
     id: decisionId,
     caseId: decision.caseId,
@@ -198,7 +205,11 @@ async function relabel(
 ): Promise<void> {
   const { transaction, caseRow, decision } = standing;
   const inForce: LabelInForce | undefined = (await labelsInForce(tx, [transaction.id])).get(transaction.id);
-  if ((inForce?.label ?? null) === label) return;
+  if ((inForce?.label ?? null) === label) {
+    // The payment's own label may be there still where the scorer has been made to forget it.
+    if (transaction.label !== label) await markLabel(tx, transaction, label, now);
+    return;
+  }
   const source = {
     kind: "correction" as const,
     transactionId: transaction.id,
@@ -209,14 +220,17 @@ async function relabel(
   };
   if (inForce)
     await replaceLabels(tx, held, now, [{ ...source, place: inForce.place, label: label ?? 0 }], ahead);
-  else if (label !== null)
-    await learnLabel(tx, held, now, source, await vectorOf(tx, decision.scoreId), label);
+  else if (label !== null) await learnLabel(tx, held, now, source, await vectorOf(tx, held, decision), label);
   await markLabel(tx, transaction, label, now);
   await tx.insert(signalRefreshes).values({ transactionId: transaction.id, createdAt: now });
 }
 
-async function vectorOf(tx: Tx, scoreId: number): Promise<Float64Array> {
+async function vectorOf(
+  tx: Tx,
+  held: HeldScorer,
+  { scoreId, transactionId }: { scoreId: number; transactionId: string },
+): Promise<Float64Array> {
   const [row] = await tx.select({ vector: scores.vector }).from(scores).where(eq(scores.id, scoreId));
   if (!row) throw new Error(`Score ${scoreId} is not there`);
-  return bytesToVector(row.vector);
+  return fitVector(tx, held.signals, transactionId, row.vector);
 }

@@ -16,6 +16,7 @@ import { bookDecision } from "../losses/book";
 import { newId } from "../new-id";
 import type { PolicyInForce } from "../policy/read";
 import type { Step } from "../scorer";
+import { extendVector } from "../signals/signal-set";
 import { handlingSeconds, labelOf, undoUntil } from "./rules";
 import type { Target } from "./targets";
 
@@ -46,7 +47,7 @@ export async function settleCase(
 ): Promise<Settled> {
   const { caseRow, transaction, score, finding } = target;
   const { person, policy, now } = act;
-  const vector = bytesToVector(score.vector);
+  const vector = extendVector(held.signals, bytesToVector(score.vector), transaction);
   const evidence = evidenceOf(held.scorer, vector);
   const label = labelOf(finding.verdict);
   const learns = label !== null && inForce === undefined;

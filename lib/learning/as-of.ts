@@ -3,6 +3,7 @@ import { and, asc, gte, inArray, lte, max } from "drizzle-orm";
 import type { Executor } from "@/db/client";
 import { labelLog, scorers } from "@/db/schema/scorers";
 import type { Scorer } from "../scorer";
+import { signalSetOfScorer } from "../signals/read-signal-set";
 import { foldLog, foldStart } from "./fold";
 
 /**
@@ -11,7 +12,7 @@ import { foldLog, foldStart } from "./fold";
  */
 export async function scorerAsOf(db: Executor, version: number): Promise<Scorer> {
   const [row] = await db
-    .select({ id: scorers.id, options: scorers.options })
+    .select({ id: scorers.id, options: scorers.options, signalSetVersion: scorers.signalSetVersion })
     .from(scorers)
     .where(and(inArray(scorers.role, ["in_use", "retired"]), gte(scorers.version, version)))
     .orderBy(asc(scorers.version))
@@ -22,6 +23,7 @@ export async function scorerAsOf(db: Executor, version: number): Promise<Scorer>
     .from(labelLog)
     .where(lte(labelLog.scorerVersion, version));
   const asOfSeq = log?.seq ?? 0;
-  const from = await foldStart(db, row.id, row.options, asOfSeq + 1, asOfSeq);
+  const of = { ...row, signals: await signalSetOfScorer(db, row) };
+  const from = await foldStart(db, of, asOfSeq + 1, asOfSeq);
   return (await foldLog(db, from, asOfSeq)).scorer;
 }

@@ -21,5 +21,5 @@ export async function lockCandidate(
     .from(scorers)
     .where(and(eq(scorers.id, id), eq(scorers.role, "candidate")))
     .for("update", skipLocked ? { skipLocked } : {});
-  return row ? { ...toHeld(row), startedSeq: row.startedSeq } : null;
+  return row ? { ...(await toHeld(tx, row)), startedSeq: row.startedSeq } : null;
 }

@@ -1,9 +1,11 @@
 import "server-only";
 import { and, asc, desc, eq, gt, isNotNull, isNull, lt, lte, min } from "drizzle-orm";
 import type { Executor } from "@/db/client";
-import { bytesToVector } from "@/db/columns";
 import { labelLog, scorerSnapshots } from "@/db/schema/scorers";
 import { createScorer, type Label, restoreScorer, type Scorer, type ScorerOptions } from "../scorer";
+import { fitVectors } from "../signals/read-signal-set";
+import type { SignalSet } from "../signals/signal-set";
+import type { HeldScorer } from "./held-scorer";
 import { isSnapshotDue } from "./learn";
 
 const PAGE_ROWS = 1_000;
@@ -14,10 +16,12 @@ export type Folded = {
   snapshots: { place: number; state: Uint8Array }[];
 };
 
-type FoldFrom = { scorer: Scorer; place: number };
+/** A state, the place of the last label in it, and the signals that its scorer reads. */
+export type FoldFrom = { scorer: Scorer; place: number; signals: SignalSet };
 
 /**
- * Learns the labels that hold at the places (from.place, upToSeq] in order, as the log stood at row `upToSeq`.
+ * Learns the labels that hold at the places (from.place, upToSeq] in order, as the log stood at row `upToSeq`. Each
+ * row's vector is read as the scorer's signals have it, so that a signal of the team's own counts as if always there.
  * @param overrides labels that shall hold although the log does not say so yet (0: none)
  */
 export async function foldLog(
@@ -32,15 +36,22 @@ export async function foldLog(
   const snapshots: Folded["snapshots"] = [];
   for (let after = from.place; ; ) {
     const rows = await db
-      .select({ seq: labelLog.seq, label: labelLog.label, weight: labelLog.weight, vector: labelLog.vector })
+      .select({
+        seq: labelLog.seq,
+        label: labelLog.label,
+        weight: labelLog.weight,
+        transactionId: labelLog.transactionId,
+        vector: labelLog.vector,
+      })
       .from(labelLog)
       .where(and(gt(labelLog.seq, after), lte(labelLog.seq, upToSeq), isNull(labelLog.place)))
       .orderBy(asc(labelLog.seq))
       .limit(PAGE_ROWS);
-    for (const row of rows) {
+    const vectors = await fitVectors(db, from.signals, rows);
+    for (const [index, row] of rows.entries()) {
       const label = replaced.get(row.seq) ?? (row.label as Label | 0);
       if (label === 0) continue;
-      scorer.learn(bytesToVector(row.vector), label, row.weight);
+      scorer.learn(vectors[index] as Float64Array, label, row.weight);
       if (isSnapshotDue(scorer.labels)) snapshots.push({ place: row.seq, state: scorer.snapshot() });
     }
     const last = rows.at(-1);
@@ -49,14 +60,22 @@ export async function foldLog(
   }
 }
 
+/** Whose log is folded: its snapshots, how it starts untrained, and what it reads. */
+export type FoldedScorer = { id: string; options: ScorerOptions; signals: SignalSet };
+
+export const foldedBy = ({ id, scorer, signals }: HeldScorer): FoldedScorer => ({
+  id,
+  options: scorer.options,
+  signals,
+});
+
 /**
  * Nearest state below `place` from which the log as of `asOfSeq` can be folded: a snapshot that no later row
  * of the log has reached behind, else the untrained scorer.
  */
 export async function foldStart(
   db: Executor,
-  scorerId: string,
-  options: ScorerOptions,
+  of: FoldedScorer,
   place: number,
   asOfSeq = Number.MAX_SAFE_INTEGER,
 ): Promise<FoldFrom> {
@@ -68,12 +87,13 @@ export async function foldStart(
   const [snapshot] = await db
     .select()
     .from(scorerSnapshots)
-    .where(and(eq(scorerSnapshots.scorerId, scorerId), lt(scorerSnapshots.place, below)))
+    .where(and(eq(scorerSnapshots.scorerId, of.id), lt(scorerSnapshots.place, below)))
     .orderBy(desc(scorerSnapshots.place))
     .limit(1);
+  const { signals } = of;
   return snapshot
-    ? { scorer: restoreScorer(snapshot.state), place: snapshot.place }
-    : { scorer: createScorer(options), place: 0 };
+    ? { scorer: restoreScorer(snapshot.state), place: snapshot.place, signals }
+    : { scorer: createScorer(of.options), place: 0, signals };
 }
 
 async function replacements(

@@ -3,6 +3,8 @@ import { eq } from "drizzle-orm";
 import type { Database, Executor, Tx } from "@/db/client";
 import { scorers } from "@/db/schema/scorers";
 import { restoreScorer, type Scorer } from "../scorer";
+import { signalSetOfScorer } from "../signals/read-signal-set";
+import type { SignalSet } from "../signals/signal-set";
 
 /** The scorer in use as one reader or one transaction has it; nothing of it is shared in memory. */
 export type HeldScorer = {
@@ -13,6 +15,8 @@ export type HeldScorer = {
   /** Last row of the label log that the state has taken in. */
   logSeq: number;
   signalSetVersion: number;
+  /** The signals that it reads. */
+  signals: SignalSet;
   /** Sum in nats of the losses as they were lived. */
   cumulativeLoss: number;
   scorer: Scorer;
@@ -25,10 +29,10 @@ export async function readScorerInUse(db: Executor): Promise<HeldScorer> {
 
 export async function findScorerInUse(db: Executor): Promise<HeldScorer | null> {
   const [row] = await db.select().from(scorers).where(eq(scorers.inUse, 1)).limit(1);
-  return row ? toHeld(row) : null;
+  return row ? toHeld(db, row) : null;
 }
 
-export type ScoringScorer = Pick<HeldScorer, "id" | "version" | "signalSetVersion" | "scorer">;
+export type ScoringScorer = Pick<HeldScorer, "id" | "version" | "signals" | "scorer">;
 
 // One version of one scorer is one state, so the last one read serves everybody until there is a newer one.
 const scoring = new WeakMap<Database, ScoringScorer>();
@@ -53,7 +57,7 @@ export async function readScorerForScoring(db: Database): Promise<ScoringScorer>
 /** Locks the scorer in use until the transaction ends. Case rows must be locked before it, the trail's head after. */
 export async function lockScorerInUse(tx: Tx): Promise<HeldScorer> {
   const [row] = await tx.select().from(scorers).where(eq(scorers.inUse, 1)).limit(1).for("update");
-  return orThrow(row ? toHeld(row) : null);
+  return orThrow(row ? await toHeld(tx, row) : null);
 }
 
 /** Writes the advanced state back, once, at the end of the learning steps of a transaction. */
@@ -75,7 +79,17 @@ function orThrow(held: HeldScorer | null): HeldScorer {
   return held;
 }
 
-export function toHeld(row: typeof scorers.$inferSelect): HeldScorer {
+export async function toHeld(db: Executor, row: typeof scorers.$inferSelect): Promise<HeldScorer> {
   const { id, name, version, logSeq, signalSetVersion, cumulativeLoss, state } = row;
-  return { id, name, version, logSeq, signalSetVersion, cumulativeLoss, scorer: restoreScorer(state) };
+  const signals = await signalSetOfScorer(db, row);
+  return {
+    id,
+    name,
+    version,
+    logSeq,
+    signalSetVersion,
+    signals,
+    cumulativeLoss,
+    scorer: restoreScorer(state),
+  };
 }

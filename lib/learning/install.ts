@@ -9,9 +9,12 @@ import { logitOf } from "../decibans";
 import { newId } from "../new-id";
 import { policyInForce } from "../policy/read";
 import { createScorer } from "../scorer";
-import { CATALOGUE, DIMENSION, SIGNAL_SET_VERSION } from "../signals/catalogue";
-import { formulasOf } from "../signals/signal";
+import { DIMENSION } from "../signals/catalogue";
+import { catalogueDefinition } from "../signals/signal-set";
 import { appendTrail } from "../trail/append";
+
+/** The catalogue alone; each switch of an own signal makes a further one. */
+const FIRST_SET = 1;
 
 /** Puts an untrained scorer in use on a new installation; of two servers starting at once, one does it. */
 export async function ensureScorerInUse(ctx: Context): Promise<void> {
@@ -32,7 +35,7 @@ export async function ensureScorerInUse(ctx: Context): Promise<void> {
         name: "First scorer",
         method: scorer.method,
         role: "in_use",
-        signalSetVersion: SIGNAL_SET_VERSION,
+        signalSetVersion: FIRST_SET,
         options: { ...scorer.options },
         version: 1,
         logSeq: 0,
@@ -44,17 +47,17 @@ export async function ensureScorerInUse(ctx: Context): Promise<void> {
       await tx
         .insert(signalSets)
         .values({
-          version: SIGNAL_SET_VERSION,
+          version: FIRST_SET,
           // With their formulas: years later a score can be explained from the record alone.
-          definition: CATALOGUE.map((signal) => ({ key: signal.key, formulas: formulasOf(signal) })),
+          definition: catalogueDefinition(),
           createdAt: now,
         })
-        .onDuplicateKeyUpdate({ set: { version: SIGNAL_SET_VERSION } });
+        .onDuplicateKeyUpdate({ set: { version: FIRST_SET } });
       await appendTrail(ctx, tx, {
         act: "scorer.installed",
         subjectKind: "scorer",
         subjectId: id,
-        facts: { method: scorer.method, signalSetVersion: SIGNAL_SET_VERSION, policyVersion },
+        facts: { method: scorer.method, signalSetVersion: FIRST_SET, policyVersion },
       });
     });
   } catch (error) {

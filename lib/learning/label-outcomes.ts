@@ -1,14 +1,15 @@
 import "server-only";
 import { desc, eq, inArray } from "drizzle-orm";
 import type { Tx } from "@/db/client";
-import { bytesToVector } from "@/db/columns";
 import { cases } from "@/db/schema/cases";
 import { signalRefreshes } from "@/db/schema/scorers";
 import { scores, transactions } from "@/db/schema/transactions";
 import type { LabelKind } from "../decisions/codes";
 import type { Label } from "../scorer";
+import { fitVector } from "../signals/read-signal-set";
 import { type HeldScorer, lockScorerInUse, saveScorer } from "./held-scorer";
 import { learnLabel } from "./learn";
+import { liftMatured } from "./lift-matured";
 import { markLabel } from "./mark-label";
 import { type LabelInForce, labelsInForce, settledWithoutLabel } from "./place";
 import { type Replacement, replaceLabels } from "./replace";
@@ -34,6 +35,7 @@ export async function labelFromOutcomes(
   if (ids.length === 0) return [];
   const held = await lockScorerInUse(tx);
   const inForce = await labelsInForce(tx, ids);
+  await liftMatured(tx, held, now, inForce);
   const withoutLabel = await settledWithoutLabel(tx, ids, STRONGER_THAN_OUTCOME);
   const rows = await tx.select().from(transactions).where(inArray(transactions.id, ids));
   const transactionOf = new Map(rows.map((row) => [row.id, row]));
@@ -79,18 +81,18 @@ async function bookOne(
     replacements.push({ ...source, place: before.place, label });
     return before.place;
   }
-  const { seq } = await learnLabel(tx, held, now, source, await latestVector(tx, transactionId), label);
+  const { seq } = await learnLabel(tx, held, now, source, await latestVector(tx, held, transactionId), label);
   return seq;
 }
 
 /** The vector a reviewer would have seen: the case's newest, else the one scored at arrival. */
-async function latestVector(tx: Tx, transactionId: string): Promise<Float64Array> {
+async function latestVector(tx: Tx, held: HeldScorer, transactionId: string): Promise<Float64Array> {
   const [ofCase] = await tx
     .select({ vector: scores.vector })
     .from(cases)
     .innerJoin(scores, eq(scores.id, cases.scoreId))
     .where(eq(cases.transactionId, transactionId));
-  if (ofCase) return bytesToVector(ofCase.vector);
+  if (ofCase) return fitVector(tx, held.signals, transactionId, ofCase.vector);
   const [latest] = await tx
     .select({ vector: scores.vector })
     .from(scores)
@@ -98,5 +100,5 @@ async function latestVector(tx: Tx, transactionId: string): Promise<Float64Array
     .orderBy(desc(scores.id))
     .limit(1);
   if (!latest) throw new Error("A transaction without a score cannot be labelled");
-  return bytesToVector(latest.vector);
+  return fitVector(tx, held.signals, transactionId, latest.vector);
 }

@@ -23,7 +23,7 @@ export type LearnedLabel = { loss: number; logit: number; step: Step; seq: numbe
 /**
  * Advances the held scorer by one label and appends it to the log at a place of its own.
  * The caller holds the scorer's lock and calls `saveScorer` when it is done.
- * @param vector signals as they were scored, of the scorer's dimension
+ * @param vector signals as they were scored, fitted to those that the scorer reads (`fitVector`)
  */
 export async function learnLabel(
   tx: Tx,

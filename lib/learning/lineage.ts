@@ -1,7 +1,9 @@
 import "server-only";
-import { asc, inArray } from "drizzle-orm";
+import { and, asc, gte, inArray } from "drizzle-orm";
 import type { Executor } from "@/db/client";
 import { scorers } from "@/db/schema/scorers";
+import { signalSetOfScorer } from "../signals/read-signal-set";
+import type { SignalSet } from "../signals/signal-set";
 
 /** A scorer that is or was in use; versions go on from one to the next. */
 export type ScorerStage = { id: string; name: string; lastVersion: number };
@@ -13,6 +15,18 @@ export async function readLineage(db: Executor): Promise<ScorerStage[]> {
     .from(scorers)
     .where(inArray(scorers.role, ["in_use", "retired"]))
     .orderBy(asc(scorers.version));
+}
+
+/** The signals that the scorer in use read when it had the version. @throws Error when none ever had it */
+export async function signalSetOfVersion(db: Executor, version: number): Promise<SignalSet> {
+  const [row] = await db
+    .select({ id: scorers.id, signalSetVersion: scorers.signalSetVersion })
+    .from(scorers)
+    .where(and(inArray(scorers.role, ["in_use", "retired"]), gte(scorers.version, version)))
+    .orderBy(asc(scorers.version))
+    .limit(1);
+  if (!row) throw new Error(`No scorer had version ${version}`);
+  return signalSetOfScorer(db, row);
 }
 
 /** The scorer that had the version; null where none ever did. */

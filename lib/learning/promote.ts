@@ -45,7 +45,11 @@ export async function promoteScorer(ctx: Context, tx: Tx, { scorerId }: { scorer
       changedAt: now,
     })
     .where(eq(scorers.id, scorerId));
-  await takeNewCut(tx, await policyInForce(tx, now), now, { scorer: candidate.scorer, version });
+  await takeNewCut(tx, await policyInForce(tx, now), now, {
+    scorer: candidate.scorer,
+    version,
+    signals: candidate.signals,
+  });
   await appendTrail(
     ctx,
     tx,

@@ -23,7 +23,11 @@ export async function rebaseScorer(ctx: Context, tx: Tx, baseRate: number): Prom
   const offset = logitOf(baseRate);
   if (held.scorer.options.offset === offset) return;
   const options = { ...held.scorer.options, offset };
-  const { scorer, snapshots } = await foldLog(tx, { scorer: createScorer(options), place: 0 }, held.logSeq);
+  const { scorer, snapshots } = await foldLog(
+    tx,
+    { scorer: createScorer(options), place: 0, signals: held.signals },
+    held.logSeq,
+  );
   const id = newId();
   await tx.update(scorers).set({ role: "retired", changedAt: now }).where(eq(scorers.id, held.id));
   await tx.insert(scorers).values({

@@ -3,7 +3,7 @@ import { and, eq, gt, gte, inArray, isNotNull, lte } from "drizzle-orm";
 import type { Database, Tx } from "@/db/client";
 import { labelLog, scorerSnapshots } from "@/db/schema/scorers";
 import { type Label, restoreScorer } from "../scorer";
-import { type Folded, foldLog, foldStart } from "./fold";
+import { type Folded, foldedBy, foldLog, foldStart } from "./fold";
 import { type HeldScorer, readScorerInUse } from "./held-scorer";
 import { keepSnapshot, type LabelSource } from "./learn";
 
@@ -24,7 +24,7 @@ export async function foldAhead(
   changes: readonly Pick<Replacement, "place" | "label">[],
 ): Promise<FoldAhead> {
   const held = await readScorerInUse(db);
-  const from = await foldStart(db, held.id, held.scorer.options, lowestPlace(changes));
+  const from = await foldStart(db, foldedBy(held), lowestPlace(changes));
   const labels = new Map(changes.map((change) => [change.place, change.label]));
   const { scorer, snapshots } = await foldLog(db, from, held.logSeq, labels);
   return { scorerId: held.id, logSeq: held.logSeq, state: scorer.snapshot(), snapshots };
@@ -70,8 +70,12 @@ export async function replaceLabels(
     .where(and(eq(scorerSnapshots.scorerId, held.id), gte(scorerSnapshots.place, lowest)));
   const usable = ahead && (await isStillGood(tx, held, seqBefore, ahead)) ? ahead : null;
   const caughtUp = usable
-    ? await foldLog(tx, { scorer: restoreScorer(usable.state), place: usable.logSeq }, held.logSeq)
-    : await foldLog(tx, await foldStart(tx, held.id, held.scorer.options, lowest), held.logSeq);
+    ? await foldLog(
+        tx,
+        { scorer: restoreScorer(usable.state), place: usable.logSeq, signals: held.signals },
+        held.logSeq,
+      )
+    : await foldLog(tx, await foldStart(tx, foldedBy(held), lowest), held.logSeq);
   for (const snapshot of [...(usable?.snapshots ?? []), ...caughtUp.snapshots]) {
     await keepSnapshot(tx, held.id, snapshot.place, snapshot.state);
   }

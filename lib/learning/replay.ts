@@ -1,9 +1,10 @@
 import "server-only";
 import { and, asc, gt, inArray, lte } from "drizzle-orm";
 import type { Database } from "@/db/client";
-import { bytesToVector } from "@/db/columns";
 import { labelLog, scorers } from "@/db/schema/scorers";
 import { createScorer, type Label, restoreScorer, type Scorer, type ScorerOptions } from "../scorer";
+import { fitVector, signalSetOfScorer } from "../signals/read-signal-set";
+import type { SignalSet } from "../signals/signal-set";
 import { foldLog } from "./fold";
 import { isSnapshotDue } from "./learn";
 
@@ -39,7 +40,7 @@ export async function replayLog(db: Database): Promise<ReplayReport> {
   let afterSeq = 0;
   let cumulativeLoss = 0;
   for (const stage of lineage) {
-    const life = new Life(db, stage.options);
+    const life = new Life(db, stage.options, await signalSetOfScorer(db, stage));
     await life.refold(afterSeq);
     for await (const row of logRows(db, afterSeq, stage.logSeq)) {
       report.rows += 1;
@@ -68,6 +69,7 @@ class Life {
   constructor(
     private readonly db: Database,
     private readonly options: ScorerOptions,
+    private readonly signals: SignalSet,
   ) {
     this.scorer = createScorer(options);
   }
@@ -81,7 +83,8 @@ class Life {
       return null;
     }
     const scorer = await this.scorerBehind(row.seq - 1);
-    const { loss } = scorer.learn(bytesToVector(row.vector), row.label as Label, row.weight);
+    const vector = await fitVector(this.db, this.signals, row.transactionId, row.vector);
+    const { loss } = scorer.learn(vector, row.label as Label, row.weight);
     if (isSnapshotDue(scorer.labels)) this.marks.push({ place: row.seq, state: scorer.snapshot() });
     return loss;
   }
@@ -96,7 +99,7 @@ class Life {
     const from = mark
       ? { scorer: restoreScorer(mark.state), place: mark.place }
       : { scorer: createScorer(this.options), place: 0 };
-    const { scorer, snapshots } = await foldLog(this.db, from, upToSeq);
+    const { scorer, snapshots } = await foldLog(this.db, { ...from, signals: this.signals }, upToSeq);
     this.scorer = scorer;
     this.marks.push(...snapshots);
     this.stale = false;

@@ -1,8 +1,7 @@
 import "server-only";
 import { demand } from "../auth/demand";
 import type { Context } from "../context";
-import { CATALOGUE, OFFSETS } from "../signals/catalogue";
-import { coordinatesOf } from "../signals/signal";
+import { spansOf } from "../signals/what-would-change";
 import { readScorerInUse } from "./held-scorer";
 import { regretLived } from "./regret-lived";
 import type { ScorerView } from "./schema";
@@ -10,7 +9,7 @@ import type { ScorerView } from "./schema";
 export async function showScorer(ctx: Context): Promise<ScorerView> {
   demand(ctx, "scorer.read");
   const held = await readScorerInUse(ctx.db);
-  const { version, cumulativeLoss, scorer } = held;
+  const { version, cumulativeLoss, scorer, signals } = held;
   const { options } = scorer;
   const regret = await regretLived(ctx.db, held);
   const weights = scorer.weights();
@@ -26,13 +25,10 @@ export async function showScorer(ctx: Context): Promise<ScorerView> {
     regret: regret?.value ?? null,
     offset: options.offset ?? 0,
     certificate: scorer.certificate(),
-    signals: CATALOGUE.map((signal, index) => {
-      const from = OFFSETS[index] as number;
-      return {
-        key: signal.key,
-        name: signal.name,
-        weights: [...weights.subarray(from, from + coordinatesOf(signal))],
-      };
-    }),
+    signals: spansOf(signals).map(({ key, name, from, to }) => ({
+      key,
+      name,
+      weights: [...weights.subarray(from, to)],
+    })),
   };
 }

@@ -1,12 +1,12 @@
 import "server-only";
 import { and, asc, eq, gt, gte } from "drizzle-orm";
 import type { Tx } from "@/db/client";
-import { bytesToVector } from "@/db/columns";
 import { candidateLosses } from "@/db/schema/learning";
 import { labelLog, scorerSnapshots } from "@/db/schema/scorers";
 import { Breath } from "../breath";
 import { type Label, probabilityOf } from "../scorer";
-import { foldLog, foldStart } from "./fold";
+import { fitVector } from "../signals/read-signal-set";
+import { foldedBy, foldLog, foldStart } from "./fold";
 import { type HeldScorer, saveScorer } from "./held-scorer";
 import { isSnapshotDue, keepSnapshot } from "./learn";
 
@@ -54,7 +54,8 @@ export async function takeInRows(tx: Tx, held: HeldScorer, now: Date, atMost: nu
 }
 
 async function liveOne(tx: Tx, held: HeldScorer, row: typeof labelLog.$inferSelect): Promise<Booked> {
-  const { loss, logit } = held.scorer.learn(bytesToVector(row.vector), row.label as Label, row.weight);
+  const vector = await fitVector(tx, held.signals, row.transactionId, row.vector);
+  const { loss, logit } = held.scorer.learn(vector, row.label as Label, row.weight);
   held.cumulativeLoss += loss;
   if (isSnapshotDue(held.scorer.labels)) await keepSnapshot(tx, held.id, row.seq, held.scorer.snapshot());
   return { scorerId: held.id, seq: row.seq, probability: probabilityOf(logit), loss };
@@ -65,7 +66,7 @@ async function foldAgain(tx: Tx, held: HeldScorer, replacedFrom: number): Promis
   await tx
     .delete(scorerSnapshots)
     .where(and(eq(scorerSnapshots.scorerId, held.id), gte(scorerSnapshots.place, replacedFrom)));
-  const from = await foldStart(tx, held.id, held.scorer.options, replacedFrom);
+  const from = await foldStart(tx, foldedBy(held), replacedFrom);
   const { scorer, snapshots } = await foldLog(tx, from, held.logSeq);
   for (const { place, state } of snapshots) await keepSnapshot(tx, held.id, place, state);
   held.scorer = scorer;

@@ -2,10 +2,11 @@ import "server-only";
 import { setImmediate } from "node:timers/promises";
 import { and, count, desc, eq, gte, max, type SQL, sql } from "drizzle-orm";
 import type { Executor } from "@/db/client";
-import { bytesToVector } from "@/db/columns";
 import { scores, transactions } from "@/db/schema/transactions";
 import { natsToDecibans } from "../decibans";
 import type { Scorer } from "../scorer";
+import { fitVectors } from "../signals/read-signal-set";
+import type { SignalSet } from "../signals/signal-set";
 import { cutBelow, daysSpanned } from "./capacity-cut";
 import type { ScoreHistogram } from "./schema";
 
@@ -67,8 +68,8 @@ const CASES_IN_CUT = 100;
 const FEWEST_RESCORED = 2_000;
 const RESCORED_IN_A_ROW = 200;
 
-/** The scorer and the version of its state. */
-export type ScorerInUse = { scorer: Scorer; version: number };
+/** The scorer, the version of its state and the signals that it reads. */
+export type ScorerInUse = { scorer: Scorer; version: number; signals: SignalSet };
 
 /**
  * As `cutOfRecent`, on the scores that the newest payments would get from the scorer as it is now. Scores given at
@@ -78,21 +79,22 @@ export async function cutByScorer(
   db: Executor,
   recent: RecentScores,
   casesPerDay: number,
-  { scorer, version }: ScorerInUse,
+  { scorer, version, signals }: ScorerInUse,
 ): Promise<number> {
   // Nothing learned since the oldest of them, as during an import: they are its scores already.
   if ((await oldestVersion(db, recent)) === version) return cutOfRecent(db, recent, casesPerDay);
   const share = Math.min(1, (casesPerDay * (await daysOf(db, recent))) / recent.count);
   const rows = await db
-    .select({ vector: scores.vector })
+    .select({ transactionId: scores.transactionId, vector: scores.vector })
     .from(scores, NEWEST_FIRST)
     .where(recent.where)
     .orderBy(desc(scores.takenAt), desc(scores.id))
     .limit(Math.min(recent.count, Math.max(FEWEST_RESCORED, Math.ceil(CASES_IN_CUT / share))));
   const logits: number[] = [];
-  for (const [index, row] of rows.entries()) {
-    if (index % RESCORED_IN_A_ROW === RESCORED_IN_A_ROW - 1) await setImmediate();
-    logits.push(scorer.score(bytesToVector(row.vector)).logit);
+  for (let from = 0; from < rows.length; from += RESCORED_IN_A_ROW) {
+    const vectors = await fitVectors(db, signals, rows.slice(from, from + RESCORED_IN_A_ROW));
+    for (const vector of vectors) logits.push(scorer.score(vector).logit);
+    await setImmediate();
   }
   const wished = Math.round(share * rows.length);
   return cutBelow(logits.sort((a, b) => b - a).slice(0, wished + 1), wished);

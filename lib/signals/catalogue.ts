@@ -6,8 +6,8 @@ import { noveltySignals } from "./novelty-signals";
 import { coordinatesOf, type Signal } from "./signal";
 import { timeSignals } from "./time-signals";
 
-/** Raise it with every change that moves, adds or rescales a coordinate: scores of different sets do not compare. */
-export const SIGNAL_SET_VERSION = 1;
+/** Raise it with every change that moves, adds or rescales a coordinate: scores of different catalogues do not compare. */
+export const CATALOGUE_VERSION = 1;
 
 /** In the order of the vector. Protected attributes (age, sex, origin, faith, health, nationality of a person) never enter. */
 export const CATALOGUE: readonly Signal[] = [

@@ -1,6 +1,7 @@
 import { natsToDecibans } from "../decibans";
 import { CATALOGUE, DIMENSION, OFFSETS } from "./catalogue";
-import type { Part, Signal } from "./signal";
+import { type Part, roughly, type Signal } from "./signal";
+import type { OwnDefinition } from "./signal-set";
 import { isMissing } from "./vectors";
 
 /** One bar on the balance of evidence. */
@@ -16,18 +17,20 @@ export type SignalLine = {
 };
 
 /**
- * Gathers what the coordinates add into one line per signal, in the catalogue's order. The bias is no signal: its
+ * Gathers what the coordinates add into one line per signal, in the catalogue's order, the team's own behind. The bias is no signal: its
  * share belongs to the base rate (`everyPaymentNats`), so that base rate, lines and pull add up to the total.
- * @param contributions nats per coordinate, DIMENSION of them
+ * @param contributions nats per coordinate
  * @param vector the coordinates as they were scored
- * @param missing one bit per signal, as `vectorOf` made it
+ * @param missing one bit per signal, as `vectorOf` and `extendSignals` made it
+ * @param own those of the set that the vector is of; without them the catalogue's lines only
  */
 export function groupContributions(
   contributions: Float64Array,
   vector: Float64Array,
   missing: Uint8Array,
+  own: readonly OwnDefinition[] = [],
 ): SignalLine[] {
-  return CATALOGUE.map((signal, s) => {
+  const lines = CATALOGUE.map((signal, s) => {
     const from = OFFSETS[s] as number;
     const to = OFFSETS[s + 1] ?? DIMENSION - 1;
     let nats = 0;
@@ -42,6 +45,33 @@ export function groupContributions(
       available,
     };
   });
+  return [
+    ...lines,
+    ...own.filter(({ isOn }) => isOn).map((signal) => ownLine(signal, contributions, vector, missing)),
+  ];
+}
+
+function ownLine(
+  signal: OwnDefinition,
+  contributions: Float64Array,
+  vector: Float64Array,
+  missing: Uint8Array,
+): SignalLine {
+  const at = DIMENSION + signal.position;
+  const available = !isMissing(missing, CATALOGUE.length + signal.position);
+  return {
+    key: signal.key,
+    name: signal.name,
+    reading: available ? ownReading(signal, vector[at] ?? 0) : "not available",
+    explanation: `${signal.sentence} The team's own signal: ${signal.formula}`,
+    decibans: natsToDecibans(contributions[at] ?? 0),
+    available,
+  };
+}
+
+function ownReading({ middle, reach }: OwnDefinition, coordinate: number): string {
+  const suffix = Math.abs(coordinate) < 1 ? "" : coordinate > 0 ? " or more" : " or less";
+  return `about ${roughly(middle + coordinate * reach)}${suffix}`;
 }
 
 /** What the bias adds, in nats: the same for every payment. */

@@ -67,7 +67,11 @@ async function prepare(ctx: Context, { source, items }: Batch): Promise<Prepared
   ]);
   const { slots, payments } = await sortItems(ctx.db, source, items, settings.exempt, now);
   const scored = await scorePayments(ctx.db, payments, held, policy, settings.sampleSecret, now);
-  return { slots, scored, under: { policy, scorerVersion: held.version, source, now } };
+  return {
+    slots,
+    scored,
+    under: { policy, scorerVersion: held.version, signalSetVersion: held.signals.version, source, now },
+  };
 }
 
 async function store(

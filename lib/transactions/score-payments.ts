@@ -7,8 +7,9 @@ import type { Zone } from "../policy/codes";
 import type { PolicyInForce } from "../policy/read";
 import { type Instruction, instructionFor, zoneOf } from "../policy/rules";
 import { refreshCut } from "../policy/thresholds";
-import { SIGNAL_SET_VERSION } from "../signals/catalogue";
+import { CATALOGUE_VERSION } from "../signals/catalogue";
 import { readHistory } from "../signals/history";
+import { extendSignals } from "../signals/signal-set";
 import { type SignalVector, vectorOf } from "../signals/vectors";
 import { dayOf, listArrivalDays } from "./arrival-days";
 import { baseAmounts } from "./rates";
@@ -77,8 +78,9 @@ type Measured = SignalVector & {
 };
 
 async function measure(db: Database, payments: readonly Payment[], held: ScoringScorer): Promise<Measured[]> {
-  if (held.signalSetVersion !== SIGNAL_SET_VERSION) {
-    throw new Error(`The scorer in use knows signal set ${held.signalSetVersion}, not ${SIGNAL_SET_VERSION}`);
+  const set = held.signals;
+  if (set.catalogueVersion !== CATALOGUE_VERSION) {
+    throw new Error(`The scorer in use knows catalogue ${set.catalogueVersion}, not ${CATALOGUE_VERSION}`);
   }
   const timed = payments.map((payment) => ({ ...payment, occurredAtMs: payment.occurredAt.getTime() }));
   const [toBase, history] = await Promise.all([baseAmounts(db, payments), readHistory(db, timed)]);
@@ -93,11 +95,12 @@ async function measure(db: Database, payments: readonly Payment[], held: Scoring
   const measured = new Array<Measured>(payments.length);
   for (const [turn, { trace, index }] of inOrderOfTime.entries()) {
     if (turn % PAYMENTS_IN_A_ROW === PAYMENTS_IN_A_ROW - 1) await setImmediate();
-    const signals = vectorOf(trace, history.of(trace));
+    const payment = payments[index] as Payment;
+    const { amountBaseMinor } = trace;
+    const signals = extendSignals(set, vectorOf(trace, history.of(trace)), { ...payment, amountBaseMinor });
     history.add(trace);
     const { logit, leverage } = held.scorer.score(signals.vector);
-    const payment = payments[index] as Payment;
-    measured[index] = { ...signals, payment, amountBaseMinor: trace.amountBaseMinor, logit, leverage };
+    measured[index] = { ...signals, payment, amountBaseMinor, logit, leverage };
   }
   return measured;
 }

@@ -6,10 +6,15 @@ import { insertRows } from "@/db/insert-rows";
 import { scores, transactions } from "@/db/schema/transactions";
 import { type CaseToOpen, openCases } from "../cases/open";
 import type { PolicyInForce } from "../policy/read";
-import { SIGNAL_SET_VERSION } from "../signals/catalogue";
 import type { ScoredPayment } from "./score-payments";
 
-export type ScoredUnder = { policy: PolicyInForce; scorerVersion: number; source: string; now: Date };
+export type ScoredUnder = {
+  policy: PolicyInForce;
+  scorerVersion: number;
+  signalSetVersion: number;
+  source: string;
+  now: Date;
+};
 
 /**
  * Writes payments with their scores and opens cases for those to be reviewed and those drawn.
@@ -84,7 +89,7 @@ function transactionRow(
 
 function scoreRow(
   scored: ScoredPayment,
-  { policy, scorerVersion, now }: ScoredUnder,
+  { policy, scorerVersion, signalSetVersion, now }: ScoredUnder,
 ): typeof scores.$inferInsert {
   return {
     transactionId: scored.id,
@@ -92,7 +97,7 @@ function scoreRow(
     takenAt: now,
     vector: vectorToBytes(scored.vector),
     missing: Buffer.from(scored.missing),
-    signalSetVersion: SIGNAL_SET_VERSION,
+    signalSetVersion,
     scorerVersion,
     policyVersion: policy.version,
     logit: scored.logit,

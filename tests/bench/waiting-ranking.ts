@@ -16,7 +16,7 @@ import { learnLabel } from "@/lib/learning/learn";
 import { replaceLabels } from "@/lib/learning/replace";
 import { newId } from "@/lib/new-id";
 import { ensureFirstPolicy } from "@/lib/policy/install";
-import { DIMENSION, SIGNAL_SET_VERSION } from "@/lib/signals/catalogue";
+import { DIMENSION } from "@/lib/signals/catalogue";
 import type { Row } from "../support/bench";
 import { ms, quantile } from "./support/figures";
 
@@ -156,7 +156,7 @@ function arrival(transactionId: string, vector: Float64Array, at: Date) {
     takenAt: at,
     vector: vectorToBytes(vector),
     missing: Buffer.alloc(8),
-    signalSetVersion: SIGNAL_SET_VERSION,
+    signalSetVersion: 1,
     scorerVersion: 1,
     policyVersion: 1,
     logit: 0,

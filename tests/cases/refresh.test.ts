@@ -9,6 +9,7 @@ import { rankingOf, stopRanking } from "@/lib/cases/ranking/ranking";
 import { refreshLinkedCases } from "@/lib/cases/refresh";
 import type { Context, PersonActor } from "@/lib/context";
 import { decideCase } from "@/lib/decisions/decide";
+import { readScorerInUse } from "@/lib/learning/held-scorer";
 import { log } from "@/lib/log";
 import { recomputeVectors } from "@/lib/signals/recompute";
 import { testWorld, type WaitingCase, WORLD_START, type World } from "../support/world";
@@ -62,6 +63,7 @@ describe("when a payment is labelled", () => {
     const vectors = await recomputeVectors(
       world.db,
       made.map(({ transactionId }) => transactionId),
+      (await readScorerInUse(world.db)).signals,
     );
     for (const one of made) {
       const { vector, missing } = vectors.get(one.transactionId) as {
@@ -103,7 +105,8 @@ describe("when a payment is labelled", () => {
     expect(more).toEqual([0, 1, 1, 0, 0]);
     const fresh = after[1]?.at(-1) as typeof scores.$inferSelect;
     expect(fresh).toMatchObject({ kind: "refresh", scorerVersion: expect.any(Number) });
-    const [wanted] = (await recomputeVectors(world.db, [byDevice.transactionId])).values();
+    const { signals } = await readScorerInUse(world.db);
+    const [wanted] = (await recomputeVectors(world.db, [byDevice.transactionId], signals)).values();
     expect(bytesToVector(fresh.vector)).toEqual(wanted?.vector);
     const row = await rowOf(byDevice.caseId);
     expect(row).toMatchObject({ scoreId: fresh.id, revision: 1 });

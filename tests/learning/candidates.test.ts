@@ -15,6 +15,7 @@ import { rebaseScorer } from "@/lib/learning/rebase";
 import { followLog } from "@/lib/learning/shadow";
 import { takeInRows } from "@/lib/learning/take-in";
 import { createScorer } from "@/lib/scorer";
+import { signalSetOfScorer } from "@/lib/signals/read-signal-set";
 import { testWorld, type World } from "../support/world";
 import { mixedLife } from "./mixed-life";
 
@@ -64,7 +65,8 @@ const lived = () =>
 
 async function expectFolded(id: string): Promise<void> {
   const row = await rowOf(id);
-  const from = { scorer: createScorer(row.options), place: 0 };
+  const signals = await signalSetOfScorer(world.db, row);
+  const from = { scorer: createScorer(row.options), place: 0, signals };
   const { scorer } = await foldLog(world.db, from, row.logSeq);
   expect(row.state.equals(Buffer.from(scorer.snapshot()))).toBe(true);
 }

@@ -21,7 +21,9 @@ beforeEach(async () => {
 const scorer = createScorer({ method: "gradient", dimension: 1, featureBound: 1e8 });
 scorer.learn(Float64Array.of(1e6), 1);
 const weight = scorer.weights()[0] as number;
-const held = { scorer, version: 1 };
+/** Vectors of one number each. */
+const signals = { version: 1, catalogueVersion: 1, dimension: 1, own: [] };
+const held = { scorer, signals, version: 1 };
 
 function policy(version: number, terms: Partial<PolicyTerms>): PolicyInForce {
   return { version, terms: { ...DEFAULT_TERMS, ...terms }, effectiveAt: now };
@@ -76,7 +78,7 @@ test("the cut on stored scores yields the wished cases a day", async () => {
 
 test("scores that the scorer in use gave itself are taken as they are", async () => {
   await insertArrivals(db, tenDays(now));
-  const { reviewLogit } = await refreshCut(db, byCapacity, now, { scorer, version: 0 });
+  const { reviewLogit } = await refreshCut(db, byCapacity, now, { scorer, signals, version: 0 });
   expect(reviewLogit).toBeCloseTo(500.5, 9);
 });
 

@@ -10,7 +10,7 @@ import type { Actor, Context, PersonActor } from "@/lib/context";
 import { ensureScorerInUse } from "@/lib/learning/install";
 import { newId } from "@/lib/new-id";
 import { ensureFirstPolicy } from "@/lib/policy/install";
-import { DIMENSION, SIGNAL_SET_VERSION } from "@/lib/signals/catalogue";
+import { DIMENSION } from "@/lib/signals/catalogue";
 import { type TestDatabase, testDatabase } from "./database";
 
 /** A moment all worlds start at; tests move on from it. */
@@ -137,7 +137,7 @@ function arrivalScore(one: { transactionId: string; vector: Float64Array }, take
     takenAt,
     vector: vectorToBytes(one.vector),
     missing: Buffer.alloc(8),
-    signalSetVersion: SIGNAL_SET_VERSION,
+    signalSetVersion: 1,
     scorerVersion: 1,
     policyVersion: 1,
     logit: 0,

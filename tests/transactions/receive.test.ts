@@ -9,6 +9,7 @@ import { policies } from "@/db/schema/policies";
 import { trail } from "@/db/schema/trail";
 import { arrivalDays, currencyRates, scores, transactions } from "@/db/schema/transactions";
 import type { Context } from "@/lib/context";
+import { readScorerInUse } from "@/lib/learning/held-scorer";
 import { DEFAULT_TERMS } from "@/lib/policy/default-terms";
 import type { PolicyTerms } from "@/lib/policy/schema";
 import { CATALOGUE } from "@/lib/signals/catalogue";
@@ -331,6 +332,7 @@ describe("signals at arrival", () => {
     const again = await recomputeVectors(
       world.db,
       rows.map((row) => row.transactions.id),
+      (await readScorerInUse(world.db)).signals,
     );
     expect(again.size).toBe(60);
     for (const row of rows) {

@@ -4,6 +4,7 @@ import { bytesToVector } from "@/db/columns";
 import { type HeldScorer, readScorerInUse } from "../../learning/held-scorer";
 import { log } from "../../log";
 import type { Label, Step } from "../../scorer";
+import { padVector } from "../../signals/signal-set";
 import { advance, recompute } from "./advance";
 import { ChangeWatch } from "./change-watch";
 import { type CaseDelta, readDelta } from "./delta";
@@ -19,7 +20,7 @@ import {
 } from "./read-waiting";
 import { Breath, Turns } from "./turns";
 import { RankingView } from "./view";
-import { type CaseFacts, WaitingCases } from "./waiting-cases";
+import { WaitingCases } from "./waiting-cases";
 
 /** Rows are turned into cases without a pause, page by page. */
 const PAGE = 200;
@@ -144,7 +145,7 @@ export class RankingModel {
         this.db,
         page.map(({ id }) => id),
       )) {
-        cases.place(facts, fitting(facts, vector, held), held.scorer);
+        cases.place(facts, fitting(vector, held), held.scorer);
         await breath.take();
       }
     }
@@ -190,7 +191,7 @@ export class RankingModel {
       const { scorer } = this.present().held;
       const breath = new Breath();
       for (const { after } of delta) {
-        if (after?.vector) cases.place(after.facts, fitting(after.facts, after.vector, held), scorer);
+        if (after?.vector) cases.place(after.facts, fitting(after.vector, held), scorer);
         else if (after) cases.update(after.facts);
         await breath.take();
       }
@@ -256,6 +257,7 @@ export class RankingModel {
 }
 
 const isOfSameShape = (one: HeldScorer, other: HeldScorer) =>
+  one.signalSetVersion === other.signalSetVersion &&
   one.scorer.dimension === other.scorer.dimension &&
   one.scorer.reading().parts.length === other.scorer.reading().parts.length;
 
@@ -271,13 +273,5 @@ function actsOf(labels: readonly LoggedLabel[]): LoggedLabel[][] {
   return acts;
 }
 
-/** A vector of another set of signals says nothing to this scorer; the case stands at the base rate until refreshed. */
-function fitting(facts: CaseFacts, vector: Float64Array, held: HeldScorer): Float64Array {
-  const { dimension } = held.scorer;
-  if (vector.length === dimension) return vector;
-  log.warn(
-    { caseId: facts.id, length: vector.length, dimension },
-    "A case waits with the vector of another signal set",
-  );
-  return new Float64Array(dimension);
-}
+/** A case may wait with the vector of an earlier set of signals until it is scored anew. */
+const fitting = (vector: Float64Array, { signals }: HeldScorer) => padVector(signals, vector);
