@@ -18,6 +18,7 @@ const ACT_WORDS: Readonly<Record<string, string>> = {
   "person.signed_in": "Signed in",
   "person.signed_out": "Signed out",
   "person.sign_in_refused": "Sign-in refused",
+  "person.told_of_cases": "Told by e-mail of cases given to them",
   "person.locked": "Account locked",
   "access.refused": "Access refused",
   "person.password_change_refused": "Password change refused",

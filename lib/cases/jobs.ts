@@ -1,14 +1,16 @@
 import "server-only";
-import type { Job } from "../job";
+import { type Job, slotOfMinutes } from "../job";
+import { mailSettings } from "../mail/settings";
 import { bringBackDueCases } from "./bring-back";
 import { expireHolds } from "./expire-holds";
 import { freeStrandedCases } from "./free-stranded";
 import { lapseUnreachedCases } from "./lapse";
+import { mailAssigned } from "./mail-assigned";
 import { refreshLinkedCases } from "./refresh";
 
 const SECOND_MS = 1_000;
 
-/** Every one of them locks the rows it works on, and does nothing to those that another server saw to: no slots are needed. */
+/** Those without slots lock the rows they work on, and do nothing to those that another server saw to. */
 export const caseJobs: readonly Job[] = [
   { name: "cases.bring-back", everyMs: 5 * SECOND_MS, slot: null, run: bringBackDueCases },
   { name: "cases.expire-holds", everyMs: 10 * SECOND_MS, slot: null, run: expireHolds },
@@ -16,4 +18,11 @@ export const caseJobs: readonly Job[] = [
   { name: "cases.free-stranded", everyMs: 60 * SECOND_MS, slot: null, run: freeStrandedCases },
   // People expect linked cases to rise at once.
   { name: "cases.refresh-linked", everyMs: 0.3 * SECOND_MS, slot: null, run: refreshLinkedCases },
+  {
+    // Seldom enough that what a supervisor hands out in one go comes in one message.
+    name: "cases.assigned-mail",
+    everyMs: 30 * SECOND_MS,
+    slot: slotOfMinutes(2),
+    run: (ctx) => mailAssigned(ctx, { appUrl: mailSettings().appUrl }),
+  },
 ];
