@@ -10,6 +10,9 @@ import { keepSnapshot, type LabelSource } from "./learn";
 /** What shall hold from now on at a place of the log; 0 takes the label away. */
 export type Replacement = LabelSource & { place: number; label: Label | 0 };
 
+/** With a vector in each, one statement of all of a person's labels would be too large for the database. */
+const ROWS_IN_STATEMENT = 1_000;
+
 /** A fold made before the lock was taken, so that others need not wait for a long one. */
 export type FoldAhead = {
   scorerId: string;
@@ -42,10 +45,37 @@ export async function replaceLabels(
   ahead?: FoldAhead,
 ): Promise<void> {
   if (changes.length === 0) return;
+  const seqBefore = held.logSeq;
+  for (let from = 0; from < changes.length; from += ROWS_IN_STATEMENT) {
+    await appendRows(tx, held, now, changes.slice(from, from + ROWS_IN_STATEMENT));
+  }
+  const lowest = lowestPlace(changes);
+  await tx
+    .delete(scorerSnapshots)
+    .where(and(eq(scorerSnapshots.scorerId, held.id), gte(scorerSnapshots.place, lowest)));
+  const usable = ahead && (await isStillGood(tx, held, seqBefore, ahead)) ? ahead : null;
+  const caughtUp = usable
+    ? await foldLog(
+        tx,
+        { scorer: restoreScorer(usable.state), place: usable.logSeq, signals: held.signals },
+        held.logSeq,
+      )
+    : await foldLog(tx, await foldStart(tx, foldedBy(held), lowest), held.logSeq);
+  for (const snapshot of [...(usable?.snapshots ?? []), ...caughtUp.snapshots]) {
+    await keepSnapshot(tx, held.id, snapshot.place, snapshot.state);
+  }
+  held.scorer = caughtUp.scorer;
+}
+
+async function appendRows(
+  tx: Tx,
+  held: HeldScorer,
+  now: Date,
+  changes: readonly Replacement[],
+): Promise<void> {
   const places = changes.map((change) => change.place);
   const roots = await tx.select().from(labelLog).where(inArray(labelLog.seq, places));
   const rootOf = new Map(roots.map((root) => [root.seq, root]));
-  const seqBefore = held.logSeq;
   await tx.insert(labelLog).values(
     changes.map((change) => {
       const root = rootOf.get(change.place);
@@ -64,22 +94,6 @@ export async function replaceLabels(
       };
     }),
   );
-  const lowest = lowestPlace(changes);
-  await tx
-    .delete(scorerSnapshots)
-    .where(and(eq(scorerSnapshots.scorerId, held.id), gte(scorerSnapshots.place, lowest)));
-  const usable = ahead && (await isStillGood(tx, held, seqBefore, ahead)) ? ahead : null;
-  const caughtUp = usable
-    ? await foldLog(
-        tx,
-        { scorer: restoreScorer(usable.state), place: usable.logSeq, signals: held.signals },
-        held.logSeq,
-      )
-    : await foldLog(tx, await foldStart(tx, foldedBy(held), lowest), held.logSeq);
-  for (const snapshot of [...(usable?.snapshots ?? []), ...caughtUp.snapshots]) {
-    await keepSnapshot(tx, held.id, snapshot.place, snapshot.state);
-  }
-  held.scorer = caughtUp.scorer;
 }
 
 /** Labels that only came behind the fold can be caught up with; a replacement among them cannot. */
