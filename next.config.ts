@@ -21,6 +21,8 @@ const config: NextConfig = {
   typescript: { ignoreBuildErrors: true },
   // The checks build beside a running installation, not over it.
   distDir: process.env.CUPEL_BUILD_DIR ?? ".next",
+  // Browsers ask for it unbidden where they have not seen the page's own icon yet.
+  rewrites: async () => [{ source: "/favicon.ico", destination: "/icon.svg" }],
   headers: async () => [
     { source: "/:path*", headers: COMMON_HEADERS },
     { source: "/api/:path*", headers: [API_POLICY] },

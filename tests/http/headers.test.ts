@@ -39,6 +39,11 @@ describe("every page", () => {
     expect(headers.get("Strict-Transport-Security")).toBeNull();
   });
 
+  test.each(["/icon.svg", "/favicon.ico"])("has its icon, at %s too", async (path) => {
+    const response = await fetch(new URL(path, url));
+    expect([response.status, response.headers.get("Content-Type")]).toEqual([200, "image/svg+xml"]);
+  });
+
   test("cannot be asked to believe where a stranger came from", async () => {
     const response = await fetch(new URL("/people", url), {
       redirect: "manual",
