@@ -5,6 +5,7 @@ import { applyLearned, nextFor } from "../cases/after-decision";
 import type { Context } from "../context";
 import { probabilityOf } from "../decibans";
 import { lockScorerInUse, saveScorer } from "../learning/held-scorer";
+import { liftMatured } from "../learning/lift-matured";
 import { labelsInForce } from "../learning/place";
 import { newId } from "../new-id";
 import { policyInForce } from "../policy/read";
@@ -23,6 +24,7 @@ export async function decideCase(ctx: Context, input: DecideInput): Promise<Deci
   const actId = newId();
   const decided: string[] = [];
   const learned: Settled["learned"][] = [];
+  let lifted = false;
   const answer = await writeOnce<DecideView>(
     ctx,
     async (tx) => {
@@ -38,6 +40,7 @@ export async function decideCase(ctx: Context, input: DecideInput): Promise<Deci
         tx,
         targets.map((target) => target.transaction.id),
       );
+      lifted = await liftMatured(tx, held, now, inForce);
       const act = {
         actId,
         person,
@@ -72,7 +75,7 @@ export async function decideCase(ctx: Context, input: DecideInput): Promise<Deci
     { complete: false },
   );
   const steps = learned.flatMap((one) => one?.step ?? []);
-  const moved = await applyLearned(ctx, { version: answer.scorerVersion, steps, decided });
+  const moved = await applyLearned(ctx, { version: answer.scorerVersion, steps, decided, rebuilt: lifted });
   const complete = { ...answer, moved, next: await nextFor(ctx, person) };
   await completeAnswer(ctx, complete);
   return complete;
