@@ -2,6 +2,7 @@ import { describe, expect, test } from "vitest";
 import { createScorer, logLoss, METHODS, probabilityOf } from "@/lib/scorer";
 import { logistic } from "@/lib/scorer/logistic";
 import { posteriorLogit, pulledLogit } from "@/lib/scorer/pull";
+import { dot } from "@/lib/scorer/vector";
 import { seededNumbers } from "./fixture";
 
 describe("the logistic function and the log-loss", () => {
@@ -117,36 +118,45 @@ describe.each(METHODS)("%s", (method) => {
   });
 });
 
-test("leverage stays right through 200,000 labels on nearly collinear signals", () => {
-  const dimension = 6;
-  const scorer = createScorer({ dimension });
-  const next = seededNumbers(21);
-  const gathered = new Float64Array(dimension * dimension);
-  for (let i = 0; i < dimension; i++) gathered[i * dimension + i] = 1;
-  const draw = () => {
-    const base = 2 * next() - 1;
-    return Float64Array.from({ length: dimension }, (_, i) =>
-      i === dimension - 1 ? 1 : base + 1e-5 * (2 * next() - 1),
-    );
-  };
-  for (let n = 0; n < 200_000; n++) {
-    const x = draw();
-    const before = scorer.score(x).leverage;
-    const { step } = scorer.learn(x, next() < 0.1 ? 1 : -1);
-    const h = step.shrink / (1 - step.shrink * before);
-    for (let i = 0; i < dimension; i++) {
-      for (let j = 0; j < dimension; j++) {
-        const at = i * dimension + j;
-        gathered[at] = (gathered[at] as number) + h * (x[i] as number) * (x[j] as number);
+describe("a million labels on five signals", () => {
+  test.each([
+    { signals: "well spread", spread: 1, common: 0, tolerance: 1e-11 },
+    { signals: "nearly collinear", spread: 1e-5, common: 1, tolerance: 1e-6 },
+  ])("leave the leverage right and the weights finite where they are $signals", (drawn) => {
+    const { spread, common, tolerance } = drawn;
+    const dimension = 6;
+    const scorer = createScorer({ dimension });
+    const next = seededNumbers(21);
+    const gathered = new Float64Array(dimension * dimension);
+    for (let i = 0; i < dimension; i++) gathered[i * dimension + i] = 1;
+    const draw = () => {
+      const base = common * (2 * next() - 1);
+      return Float64Array.from({ length: dimension }, (_, i) =>
+        i === dimension - 1 ? 1 : base + spread * (2 * next() - 1),
+      );
+    };
+    for (let n = 0; n < 1_000_000; n++) {
+      const x = draw();
+      const { step } = scorer.learn(x, next() < 0.1 ? 1 : -1);
+      // The step's u is Px as it was, so x·u is the leverage before it, and h follows from what P lost.
+      const h = step.shrink / (1 - step.shrink * dot(x, step.u));
+      for (let i = 0; i < dimension; i++) {
+        for (let j = 0; j < dimension; j++) {
+          const at = i * dimension + j;
+          gathered[at] = (gathered[at] as number) + h * (x[i] as number) * (x[j] as number);
+        }
       }
     }
-  }
-  // s = x·A⁻¹x from the curvature itself, by elimination, against the P kept up to date label by label.
-  for (let n = 0; n < 50; n++) {
-    const x = draw();
-    const direct = quadraticInverse(gathered, x);
-    expect(Math.abs(scorer.score(x).leverage / direct - 1)).toBeLessThan(1e-6);
-  }
+    expect(scorer.labels).toBe(1_000_000);
+    expect(scorer.weights().every(Number.isFinite)).toBe(true);
+    // s = x·A⁻¹x from the curvature itself, by elimination, against the P kept up to date label by label.
+    let worst = 0;
+    for (let n = 0; n < 50; n++) {
+      const x = draw();
+      worst = Math.max(worst, Math.abs(scorer.score(x).leverage / quadraticInverse(gathered, x) - 1));
+    }
+    expect(worst).toBeLessThan(tolerance);
+  });
 });
 
 /** x·A⁻¹x by Gaussian elimination with pivoting. */
