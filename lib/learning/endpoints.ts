@@ -18,6 +18,7 @@ import {
 } from "./learning-schema";
 import { PassedInput, PassedView } from "./passed-schema";
 import { ScorerInput, ScorerView } from "./schema";
+import { ScorecardInput, ScorecardView } from "./scorecard-schema";
 
 export const learningEndpoints = {
   "GET /api/scorer": {
@@ -25,6 +26,12 @@ export const learningEndpoints = {
     may: "scorer.read",
     input: ScorerInput,
     output: ScorerView,
+  },
+  "GET /api/scorer/scorecard": {
+    summary: "The scorer in use, frozen, with the definitions of its signals and an example to check by",
+    may: "scorer.read",
+    input: ScorecardInput,
+    output: ScorecardView,
   },
   "GET /api/learning": {
     summary: "The scorer in use and the candidates beside it, judged on the same labels",

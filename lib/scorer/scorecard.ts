@@ -1,9 +1,9 @@
 import { probabilityOf } from "./logistic";
 import type { ResolvedOptions } from "./options";
-import { readLogit } from "./reading";
+import { partLogit, readLogit } from "./reading";
 import type { Rule } from "./rule";
 import { multiply } from "./triangle";
-import type { Scorecard } from "./types";
+import type { PartReading, Scorecard } from "./types";
 import { dot, withinLength } from "./vector";
 
 const AVERAGED =
@@ -34,18 +34,31 @@ export function freezeScorecard(rule: Rule, options: ResolvedOptions, labels: nu
   };
 }
 
+/** What one part of a card makes of a vector. */
+export interface CardPartScore {
+  /** z0, without the offset. */
+  rawEvidence: number;
+  /** s; 0 where the part holds nothing back. */
+  leverage: number;
+  logit: number;
+}
+
 /** The frozen score of a vector; also the reference for whoever computes it elsewhere. */
-export function scoreByCard(card: Scorecard, x: Float64Array): { logit: number; probability: number } {
+export function scoreByCard(
+  card: Scorecard,
+  x: Float64Array,
+): { logit: number; probability: number; parts: CardPartScore[] } {
   const vector = withinLength(x, card.featureBound);
-  const places = new Float64Array(2 * card.parts.length);
   const u = new Float64Array(vector.length);
-  card.parts.forEach((part, k) => {
-    places[2 * k] = dot(Float64Array.from(part.weights), vector);
-    if (part.triangle === null) return;
-    multiply(Float64Array.from(part.triangle), vector, u);
-    places[2 * k + 1] = Math.max(0, dot(vector, u));
+  const readings = card.parts.map(({ outcomeWeight, share }) => ({ outcomeWeight, share, remembers: true }));
+  const parts = card.parts.map(({ weights, triangle }, k) => {
+    const rawEvidence = dot(Float64Array.from(weights), vector);
+    if (triangle !== null) multiply(Float64Array.from(triangle), vector, u);
+    const leverage = triangle === null ? 0 : Math.max(0, dot(vector, u));
+    const logit = partLogit(readings[k] as PartReading, card.offset, rawEvidence, leverage);
+    return { rawEvidence, leverage, logit };
   });
-  const parts = card.parts.map(({ outcomeWeight, share }) => ({ outcomeWeight, share, remembers: true }));
-  const logit = readLogit({ offset: card.offset, parts }, places);
-  return { logit, probability: probabilityOf(logit) };
+  const places = Float64Array.from(parts.flatMap(({ rawEvidence, leverage }) => [rawEvidence, leverage]));
+  const logit = readLogit({ offset: card.offset, parts: readings }, places);
+  return { logit, probability: probabilityOf(logit), parts };
 }
