@@ -29,8 +29,8 @@ export function DriftSection({ query, mayManage, onSeen }: DriftSectionProps) {
             <Gauges view={view} />
             {view.warnings.length === 0 ? (
               <EmptyState title="No warning so far">
-                {view.watched < view.warmUp
-                  ? `A scorer is watched from ${countText(view.warmUp)} labels on; there are ${countText(view.watched)}.`
+                {view.watched === 0
+                  ? `Labels are watched after the first ${countText(view.warmUp)}.`
                   : "A warning stands here with the signals that moved, once a statistic leaves its band."}
               </EmptyState>
             ) : (

@@ -106,6 +106,11 @@ const TERMS = [
       "Each drawn payment stands for as many as its chance to be drawn says: drawn with a chance of 1 in 50, it counts for 50 (Horvitz and Thompson 1952). Choosing what to review does not bend it.",
   },
   {
+    term: "Waiting and lapsed",
+    means:
+      "Drawn payments without a verdict are taken to be like those that have one: they are handed out by turn, not by score.",
+  },
+  {
     term: "Interval",
     means: "The truth lies within it 95 times in 100. It is wide while few have been drawn.",
   },

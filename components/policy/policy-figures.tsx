@@ -1,3 +1,4 @@
+import type { PassedView } from "@/lib/learning/passed-schema";
 import { project } from "@/lib/policy/projection";
 import type { PolicyView } from "@/lib/policy/schema";
 import { countText } from "../ui/count";
@@ -5,9 +6,10 @@ import { Figure, FigureRow } from "../ui/figure";
 import { signedDecibans } from "../ui/probability";
 import { Time } from "../ui/time";
 import { perDay, probabilityWords } from "./effect";
+import { PassedFigure } from "./passed-figure";
 
-/** The version in force and what its lines make of the recent payments. */
-export function PolicyFigures({ view }: { view: PolicyView }) {
+/** The version in force, what its lines make of the recent payments, and what they let through. */
+export function PolicyFigures({ view, passed }: { view: PolicyView; passed: PassedView }) {
   const { inForce, reviewDecibans, holdDecibans, recent } = view;
   const { terms } = inForce;
   const projection = project(terms, recent);
@@ -35,6 +37,7 @@ export function PolicyFigures({ view }: { view: PolicyView }) {
             : `fixed at ${probabilityWords(reviewDecibans)}`
         }
       />
+      <PassedFigure passed={passed} />
       <Figure
         label="Hold line"
         value={signedDecibans(holdDecibans)}

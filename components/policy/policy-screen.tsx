@@ -2,6 +2,7 @@
 import { useRouter } from "next/navigation";
 import { parseAsString, useQueryState } from "nuqs";
 import { useState } from "react";
+import type { PassedView } from "@/lib/learning/passed-schema";
 import type { PolicyRecord, PolicyTerms, PolicyView } from "@/lib/policy/schema";
 import { Button } from "../ui/button";
 import { EmptyState } from "../ui/empty-state";
@@ -15,12 +16,19 @@ import { ScoresSection } from "./scores-section";
 import { TermsInForce } from "./terms-in-force";
 import { WaitingProposal } from "./waiting-proposal";
 
-type PolicyScreenProps = { view: PolicyView; personId: string; mayPropose: boolean; mayApprove: boolean };
+type PolicyScreenProps = {
+  view: PolicyView;
+  /** Fraud among what the review line lets pass. */
+  passed: PassedView;
+  personId: string;
+  mayPropose: boolean;
+  mayApprove: boolean;
+};
 
 /** The editor starts from the newest version's terms. */
 const FROM_NEWEST = "newest";
 
-export function PolicyScreen({ view, personId, mayPropose, mayApprove }: PolicyScreenProps) {
+export function PolicyScreen({ view, passed, personId, mayPropose, mayApprove }: PolicyScreenProps) {
   const router = useRouter();
   // Which terms the form starts from is part of the address: "newest", or the record whose terms to put back.
   const [from, setFrom] = useQueryState("propose", parseAsString);
@@ -56,7 +64,7 @@ export function PolicyScreen({ view, personId, mayPropose, mayApprove }: PolicyS
         )}
       </PageHead>
       <div aria-live="polite">{said && <Notice className="mb-5">{said}</Notice>}</div>
-      <PolicyFigures view={view} />
+      <PolicyFigures view={view} passed={passed} />
       {newest.version !== inForce.version && newest.effectiveAt && (
         <Notice kind="caution" className="mb-5" title={`Version ${newest.version} is approved`}>
           It comes into force <Time at={newest.effectiveAt} />.
