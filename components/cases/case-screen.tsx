@@ -101,8 +101,9 @@ function Evidence({ view }: { view: CaseView }) {
         <WithoutSignals lines={evidence.withoutSignals} />
       </div>
       <p className="mt-3 text-small text-soft">
-        Scorer version {evidence.scorerVersion}, policy version {evidence.policyVersion}. Decibans are ten
-        times the decimal logarithm of the odds: 0 is even odds, +10 is ten to one on fraud.
+        Scorer “{evidence.scorerName}”, version {evidence.scorerVersion}; policy version{" "}
+        {evidence.policyVersion}. Decibans are ten times the decimal logarithm of the odds: 0 is even odds,
+        +10 is ten to one on fraud.
       </p>
       {silent.length > 0 && (
         <p className="mt-1 text-small text-soft">

@@ -24,7 +24,7 @@ export type Scored = {
 export function evidenceView(
   scored: Scored,
   thresholds: Thresholds,
-  versions: { scorerVersion: number; policyVersion: number },
+  versions: { scorerName: string; scorerVersion: number; policyVersion: number },
 ): EvidenceView {
   const { evidence } = scored;
   const common = isOfThisCatalogue(scored) ? everyPaymentNats(evidence.contributions) : 0;

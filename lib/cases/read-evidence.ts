@@ -6,10 +6,10 @@ import type { decisions } from "@/db/schema/cases";
 import { scores, transactions } from "@/db/schema/transactions";
 import { evidenceOf, unpackEvidence } from "../learning/evidence";
 import { readScorerForScoring } from "../learning/held-scorer";
-import { signalSetOfVersion } from "../learning/lineage";
+import { stageOrThrow } from "../learning/lineage";
 import { type PolicyInForce, policyInForce } from "../policy/read";
 import { thresholdsInForce } from "../policy/thresholds";
-import { FORMULA_COLUMNS } from "../signals/read-signal-set";
+import { FORMULA_COLUMNS, signalSetOfScorer } from "../signals/read-signal-set";
 import { extendSignals, type SignalSet } from "../signals/signal-set";
 import { spansOf, whatWouldChange } from "../signals/what-would-change";
 import { evidenceView } from "./evidence-view";
@@ -27,7 +27,7 @@ export async function readEvidenceNow(
   policy: PolicyInForce,
   now: Date,
 ): Promise<EvidenceView> {
-  const { scorer, version, signals } = await readScorerForScoring(db);
+  const { name, scorer, version, signals } = await readScorerForScoring(db);
   const score = await readScoreOrThrow(db, scoreId, signals);
   return evidenceView(
     {
@@ -36,19 +36,24 @@ export async function readEvidenceNow(
       without: whatWouldChange(scorer, score.vector, spansOf(signals)),
     },
     await thresholdsInForce(db, policy, now),
-    { scorerVersion: version, policyVersion: policy.version },
+    { scorerName: name, scorerVersion: version, policyVersion: policy.version },
   );
 }
 
 /** The evidence that was before the person who decided, with the lines as they lay then. */
 export async function readEvidenceShown(db: Executor, decision: DecisionRow): Promise<EvidenceView> {
-  const signals = await signalSetOfVersion(db, decision.scorerVersionBefore);
+  const stage = await stageOrThrow(db, decision.scorerVersionBefore);
+  const signals = await signalSetOfScorer(db, stage);
   const score = await readScoreOrThrow(db, decision.scoreId, signals);
   const policy = await policyInForce(db, decision.decidedAt);
   return evidenceView(
     { ...score, evidence: unpackEvidence(bytesToVector(decision.evidence)), without: null },
     await thresholdsInForce(db, policy, decision.decidedAt),
-    { scorerVersion: decision.scorerVersionBefore, policyVersion: decision.policyVersion },
+    {
+      scorerName: stage.name,
+      scorerVersion: decision.scorerVersionBefore,
+      policyVersion: decision.policyVersion,
+    },
   );
 }
 

@@ -97,6 +97,8 @@ export const EvidenceView = z.strictObject({
   withoutSignals: z.array(WithoutSignal).nullable(),
   reviewDecibans: z.number(),
   holdDecibans: z.number(),
+  /** Which scorer gave it, by its name; versions go on from one scorer in use to the next. */
+  scorerName: z.string(),
   scorerVersion: z.int(),
   policyVersion: z.int(),
 });

@@ -53,7 +53,7 @@ export async function readLearning(ctx: Context, input: LearningInput): Promise<
   const fromSeq = rows[0]?.seq ?? 0;
   // The best weights are those since the first label; beside a curve that begins later they would mean nothing.
   const known = fromSeq === 1 ? fits.map(({ asOfSeq, loss }) => [asOfSeq, loss] as const) : [];
-  const inForce = rows.filter(({ holds }) => holds !== 0);
+  const inForce = rows.filter(isMeasure);
   return {
     window: {
       from: input.from ?? null,
@@ -111,13 +111,16 @@ async function figuresOf(
   };
 }
 
-/** Labels that were taken away since are no measure of a prediction; one that was replaced counts as it now holds. */
+/** A label that was taken away since is no measure of a prediction, nor is one that nobody found. */
+const isMeasure = ({ holds, isFinding }: JudgedRow) => holds !== 0 && isFinding;
+
+/** A label that was replaced counts as it now holds. */
 function judgedOf(
   rows: readonly JudgedRow[],
   { count, probabilities }: Predictions,
   startedSeq: number,
 ): { judged: Judged; lived: number } {
-  const chosen = rows.slice(0, count).flatMap(({ holds }, index) => (holds === 0 ? [] : index));
+  const chosen = rows.slice(0, count).flatMap((row, index) => (isMeasure(row) ? index : []));
   const judged: Judged = {
     probabilities: Float64Array.from(chosen, (index) => probabilities[index] as number),
     labels: Int8Array.from(chosen, (index) => (rows[index] as JudgedRow).holds),

@@ -9,6 +9,8 @@ import { demand } from "../auth/demand";
 import { Breath, inBreaths } from "../breath";
 import type { Context } from "../context";
 import { bestInHindsightInSteps, createScorer, type Label, type ScorerOptions } from "../scorer";
+import { signalSetOfScorer } from "../signals/read-signal-set";
+import type { SignalSet } from "../signals/signal-set";
 import { isNewFitDue, prefixesOf } from "./hindsight-rules";
 import { labelsInForceUpTo } from "./labels-in-force";
 
@@ -41,6 +43,7 @@ export async function fitHindsight(ctx: Context, signal: AbortSignal): Promise<v
   demand(ctx, "scorer.read");
   const running = await ctx.db
     .select({
+      id: scorers.id,
       signalSetVersion: scorers.signalSetVersion,
       options: scorers.options,
       inUse: scorers.inUse,
@@ -55,14 +58,15 @@ export async function fitHindsight(ctx: Context, signal: AbortSignal): Promise<v
   );
   for (const { scorer, ...yardstick } of yardsticks.values()) {
     if (signal.aborted) return;
-    await fitOne(ctx, yardstick, scorer.options.dimension, headSeq, signal);
+    const signals = await signalSetOfScorer(ctx.db, scorer);
+    await fitOne(ctx, yardstick, signals, headSeq, signal);
   }
 }
 
 async function fitOne(
   ctx: Context,
   yardstick: Yardstick,
-  dimension: number,
+  signals: SignalSet,
   headSeq: number,
   signal: AbortSignal,
 ): Promise<void> {
@@ -76,7 +80,7 @@ async function fitOne(
   const replacedFrom = newest ? await earliestReplaced(ctx.db, newest.asOfSeq) : null;
   // With nothing replaced, every row since is a label more.
   if (newest && replacedFrom === null && !isNewFitDue(newest.labels, headSeq - newest.asOfSeq)) return;
-  const log = await readLog(ctx.db, yardstick, dimension, headSeq);
+  const log = await readLog(ctx.db, yardstick, signals, headSeq);
   const standing = kept.filter((fit) => replacedFrom === null || fit.asOfSeq < replacedFrom);
   const asOfSeqs: number[] = [];
   let start: Float64Array | undefined;
@@ -129,13 +133,13 @@ type Log = { seqs: number[]; labels: Label[]; vectors: Float64Array[] };
 async function readLog(
   db: Executor,
   { featureBound }: Yardstick,
-  dimension: number,
+  signals: SignalSet,
   headSeq: number,
 ): Promise<Log> {
-  const bounding = createScorer({ method: "gradient", dimension, featureBound });
+  const bounding = createScorer({ method: "gradient", dimension: signals.dimension, featureBound });
   const log: Log = { seqs: [], labels: [], vectors: [] };
   const breath = new Breath();
-  for await (const { seq, label, vector } of labelsInForceUpTo(db, headSeq)) {
+  for await (const { seq, label, vector } of labelsInForceUpTo(db, signals, headSeq)) {
     log.seqs.push(seq);
     log.labels.push(label);
     log.vectors.push(bounding.place(vector).vector);

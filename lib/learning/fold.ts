@@ -2,6 +2,7 @@ import "server-only";
 import { and, asc, desc, eq, gt, isNotNull, isNull, lt, lte, min } from "drizzle-orm";
 import type { Executor } from "@/db/client";
 import { labelLog, scorerSnapshots } from "@/db/schema/scorers";
+import { Breath } from "../breath";
 import { createScorer, type Label, restoreScorer, type Scorer, type ScorerOptions } from "../scorer";
 import { fitVectors } from "../signals/read-signal-set";
 import type { SignalSet } from "../signals/signal-set";
@@ -34,6 +35,7 @@ export async function foldLog(
   for (const [place, label] of overrides) replaced.set(place, label);
   const { scorer } = from;
   const snapshots: Folded["snapshots"] = [];
+  const breath = new Breath();
   for (let after = from.place; ; ) {
     const rows = await db
       .select({
@@ -53,6 +55,7 @@ export async function foldLog(
       if (label === 0) continue;
       scorer.learn(vectors[index] as Float64Array, label, row.weight);
       if (isSnapshotDue(scorer.labels)) snapshots.push({ place: row.seq, state: scorer.snapshot() });
+      await breath.take();
     }
     const last = rows.at(-1);
     if (!last || rows.length < PAGE_ROWS) return { scorer, snapshots };

@@ -32,7 +32,7 @@ export async function findScorerInUse(db: Executor): Promise<HeldScorer | null> 
   return row ? toHeld(db, row) : null;
 }
 
-export type ScoringScorer = Pick<HeldScorer, "id" | "version" | "signals" | "scorer">;
+export type ScoringScorer = Pick<HeldScorer, "id" | "name" | "version" | "signals" | "scorer">;
 
 // One version of one scorer is one state, so the last one read serves everybody until there is a newer one.
 const scoring = new WeakMap<Database, ScoringScorer>();

@@ -1,9 +1,10 @@
 import "server-only";
 import { and, asc, gt, gte, isNotNull, isNull, lte } from "drizzle-orm";
 import type { Executor } from "@/db/client";
-import { bytesToVector } from "@/db/columns";
 import { labelLog } from "@/db/schema/scorers";
 import type { Label } from "../scorer";
+import { fitVectors } from "../signals/read-signal-set";
+import type { SignalSet } from "../signals/signal-set";
 
 const PAGE_ROWS = 1_000;
 
@@ -23,19 +24,29 @@ export async function replacedLabels(
 
 export type PlacedLabel = { seq: number; label: Label; vector: Float64Array };
 
-/** Labels in force at the places up to `toSeq`, in order, a page at a time. */
-export async function* labelsInForceUpTo(db: Executor, toSeq: number): AsyncGenerator<PlacedLabel> {
+/** Labels in force at the places up to `toSeq`, in order, with their vectors as the signals have them. */
+export async function* labelsInForceUpTo(
+  db: Executor,
+  signals: SignalSet,
+  toSeq: number,
+): AsyncGenerator<PlacedLabel> {
   const replaced = await replacedLabels(db, 1, toSeq);
   for (let after = 0; ; ) {
     const rows = await db
-      .select({ seq: labelLog.seq, label: labelLog.label, vector: labelLog.vector })
+      .select({
+        seq: labelLog.seq,
+        label: labelLog.label,
+        transactionId: labelLog.transactionId,
+        vector: labelLog.vector,
+      })
       .from(labelLog)
       .where(and(isNull(labelLog.place), gt(labelLog.seq, after), lte(labelLog.seq, toSeq)))
       .orderBy(asc(labelLog.seq))
       .limit(PAGE_ROWS);
-    for (const { seq, label, vector } of rows) {
+    const vectors = await fitVectors(db, signals, rows);
+    for (const [index, { seq, label }] of rows.entries()) {
       const holds = replaced.get(seq) ?? (label as Label);
-      if (holds !== 0) yield { seq, label: holds, vector: bytesToVector(vector) };
+      if (holds !== 0) yield { seq, label: holds, vector: vectors[index] as Float64Array };
     }
     const last = rows.at(-1);
     if (!last || rows.length < PAGE_ROWS) return;

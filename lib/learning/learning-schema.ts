@@ -61,7 +61,7 @@ export const ScorerFigures = z.strictObject({
   predicted: z.int(),
   /** How many of them it predicted as they came, and not afterwards. */
   livedPredicted: z.int(),
-  /** Sum in nats over the window, as predicted before each label. */
+  /** Sum in nats over every label of the window, as predicted before it and as it came, matured ones included. */
   cumulativeLoss: z.number(),
   meanLoss: z.number().nullable(),
   /** Upper bound on its regret since the first label, in nats, where the method has one. */
@@ -95,7 +95,7 @@ export const LearningView = z.strictObject({
   window: z.strictObject({
     from: Instant.nullable(),
     to: Instant.nullable(),
-    /** Labels in force of the window's rows. */
+    /** Labels in force of the window's rows, those left out that matured by themselves. */
     labels: z.int(),
     fraudulent: z.int(),
     fromSeq: z.int(),

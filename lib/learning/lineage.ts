@@ -17,16 +17,29 @@ export async function readLineage(db: Executor): Promise<ScorerStage[]> {
     .orderBy(asc(scorers.version));
 }
 
-/** The signals that the scorer in use read when it had the version. @throws Error when none ever had it */
-export async function signalSetOfVersion(db: Executor, version: number): Promise<SignalSet> {
+/** The scorer that had the version. @throws Error when none ever did */
+export async function stageOrThrow(
+  db: Executor,
+  version: number,
+): Promise<ScorerStage & { signalSetVersion: number }> {
   const [row] = await db
-    .select({ id: scorers.id, signalSetVersion: scorers.signalSetVersion })
+    .select({
+      id: scorers.id,
+      name: scorers.name,
+      lastVersion: scorers.version,
+      signalSetVersion: scorers.signalSetVersion,
+    })
     .from(scorers)
     .where(and(inArray(scorers.role, ["in_use", "retired"]), gte(scorers.version, version)))
     .orderBy(asc(scorers.version))
     .limit(1);
   if (!row) throw new Error(`No scorer had version ${version}`);
-  return signalSetOfScorer(db, row);
+  return row;
+}
+
+/** The signals that the scorer in use read when it had the version. @throws Error when none ever had it */
+export async function signalSetOfVersion(db: Executor, version: number): Promise<SignalSet> {
+  return signalSetOfScorer(db, await stageOrThrow(db, version));
 }
 
 /** The scorer that had the version; null where none ever did. */

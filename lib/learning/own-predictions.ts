@@ -10,8 +10,15 @@ import { countUpTo } from "./rows";
 
 const PAGE_ROWS = 2_000;
 
-/** A label as it came: what holds now may be another. */
-export type JudgedRow = { seq: number; at: Date; came: Label; holds: Label | 0; livedLoss: number };
+/** A label as it came: what holds now may be another. `isFinding`: somebody found it; else it matured by itself. */
+export type JudgedRow = {
+  seq: number;
+  at: Date;
+  came: Label;
+  holds: Label | 0;
+  isFinding: boolean;
+  livedLoss: number;
+};
 
 /** Rows of the label log in a span of time, at most the newest so many, and how many older ones were left out. */
 export async function readJudged(
@@ -42,13 +49,21 @@ export async function readJudged(
   const breath = new Breath();
   for (let after = (first?.seq ?? 1) - 1; ; ) {
     const page = await db
-      .select({ seq: labelLog.seq, at: labelLog.at, label: labelLog.label, loss: labelLog.loss })
+      .select({
+        seq: labelLog.seq,
+        at: labelLog.at,
+        kind: labelLog.kind,
+        label: labelLog.label,
+        loss: labelLog.loss,
+      })
       .from(labelLog)
       .where(and(inSpan, gt(labelLog.seq, after)))
       .orderBy(asc(labelLog.seq))
       .limit(PAGE_ROWS);
-    for (const { seq, at, label, loss } of page)
-      rows.push({ seq, at, came: label as Label, holds: label as Label, livedLoss: loss ?? 0 });
+    for (const { seq, at, kind, label, loss } of page) {
+      const came = label as Label;
+      rows.push({ seq, at, came, holds: came, isFinding: kind !== "matured", livedLoss: loss ?? 0 });
+    }
     await breath.take();
     const last = page.at(-1);
     if (!last || page.length < PAGE_ROWS) break;

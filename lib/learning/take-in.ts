@@ -5,7 +5,7 @@ import { candidateLosses } from "@/db/schema/learning";
 import { labelLog, scorerSnapshots } from "@/db/schema/scorers";
 import { Breath } from "../breath";
 import { type Label, probabilityOf } from "../scorer";
-import { fitVector } from "../signals/read-signal-set";
+import { fitVectors } from "../signals/read-signal-set";
 import { foldedBy, foldLog, foldStart } from "./fold";
 import { type HeldScorer, saveScorer } from "./held-scorer";
 import { isSnapshotDue, keepSnapshot } from "./learn";
@@ -28,18 +28,19 @@ export async function takeInRows(tx: Tx, held: HeldScorer, now: Date, atMost: nu
     .where(gt(labelLog.seq, held.logSeq))
     .orderBy(asc(labelLog.seq))
     .limit(atMost);
+  const vectors = await fitVectors(tx, held.signals, rows);
   const startedMs = performance.now();
   const breath = new Breath();
   const booked: Booked[] = [];
   let taken = 0;
   /** Earliest place whose label was replaced since the state was last folded. */
   let replacedFrom: number | null = null;
-  for (const row of rows) {
+  for (const [index, row] of rows.entries()) {
     if (row.place !== null) replacedFrom = Math.min(replacedFrom ?? row.place, row.place);
     else {
       if (replacedFrom !== null) await foldAgain(tx, held, replacedFrom);
       replacedFrom = null;
-      booked.push(await liveOne(tx, held, row));
+      booked.push(await liveOne(tx, held, row, vectors[index] as Float64Array));
     }
     held.logSeq = row.seq;
     taken += 1;
@@ -53,8 +54,12 @@ export async function takeInRows(tx: Tx, held: HeldScorer, now: Date, atMost: nu
   return taken;
 }
 
-async function liveOne(tx: Tx, held: HeldScorer, row: typeof labelLog.$inferSelect): Promise<Booked> {
-  const vector = await fitVector(tx, held.signals, row.transactionId, row.vector);
+async function liveOne(
+  tx: Tx,
+  held: HeldScorer,
+  row: typeof labelLog.$inferSelect,
+  vector: Float64Array,
+): Promise<Booked> {
   const { loss, logit } = held.scorer.learn(vector, row.label as Label, row.weight);
   held.cumulativeLoss += loss;
   if (isSnapshotDue(held.scorer.labels)) await keepSnapshot(tx, held.id, row.seq, held.scorer.snapshot());

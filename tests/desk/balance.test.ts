@@ -27,6 +27,7 @@ const evidence = (signals: SignalEvidence[], littleExperienceDecibans = 0): Evid
     withoutSignals: null,
     reviewDecibans: -10,
     holdDecibans: 6,
+    scorerName: "First scorer",
     scorerVersion: 1,
     policyVersion: 1,
   };

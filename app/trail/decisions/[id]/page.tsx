@@ -49,7 +49,8 @@ export default async function DecisionPage({ params }: { params: Promise<{ id: s
           </p>
         )}
         <p className="mt-3 text-small text-soft">
-          Scorer version {evidence.scorerVersion} before the decision, {record.scorerVersionAfter} after it.
+          Scorer “{evidence.scorerName}”, version {evidence.scorerVersion} before the decision,{" "}
+          {record.scorerVersionAfter} after it.
         </p>
         <Notice
           className="mt-3"
