@@ -17,7 +17,7 @@ import { thresholdsInForce } from "../policy/thresholds";
 import { recomputeVectors } from "../signals/recompute";
 import type { SignalVector } from "../signals/vectors";
 import { UNDECIDED_STATES } from "./codes";
-import { casesChanged } from "./notify";
+import { casesRescored } from "./notify";
 
 /** Labels whose linked cases are refreshed in one go. */
 const LABELS_IN_BATCH = 200;
@@ -55,7 +55,7 @@ export async function refreshLinkedCases(ctx: Context, signal: AbortSignal): Pro
     const startedMs = performance.now();
     const refreshed = await inTransaction(ctx.db, (tx) => refreshBatch(ctx, tx, first.id));
     if (refreshed === null) return;
-    casesChanged(refreshed);
+    casesRescored(refreshed);
     if (refreshed.length > 0) await rest(REST_FACTOR * (performance.now() - startedMs), signal);
   }
 }

@@ -111,8 +111,8 @@ describe("when a payment is labelled", () => {
     const row = await rowOf(byDevice.caseId);
     expect(row).toMatchObject({ scoreId: fresh.id, revision: 1 });
     // The ranking has its new signals too.
-    const logit = await rankingOf(world.db).read(minutes(4), (view) => view.logitOf(byDevice.caseId));
-    expect(Math.abs((logit as number) - fresh.logit)).toBeLessThan(1e-9);
+    const ranked = () => rankingOf(world.db).read(minutes(4), (view) => view.logitOf(byDevice.caseId));
+    await expect.poll(async () => Math.abs(((await ranked()) as number) - fresh.logit)).toBeLessThan(1e-9);
   });
 
   test("of too many linked cases the closest are scored anew, then the newest, and the log says so", async () => {

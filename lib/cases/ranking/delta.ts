@@ -14,6 +14,14 @@ export type CaseDelta = {
 };
 
 const PAGE = 500;
+/** New vectors taken in at once of cases that nobody named: whoever decides meanwhile waits no longer than for those. */
+const MOST_FOUND_FRESH = 64;
+
+export type Delta = {
+  changes: CaseDelta[];
+  /** Ids of cases with a new vector that are left for the next time. */
+  left: string[];
+};
 
 /** Compares the named cases, and those found to have changed, with what is known. */
 export async function readDelta(
@@ -21,22 +29,32 @@ export async function readDelta(
   known: WaitingCases,
   caseIds: readonly string[],
   found: readonly ChangedCase[],
-): Promise<CaseDelta[]> {
+): Promise<Delta> {
+  const named = new Set(caseIds);
   const rows = new Map(found.map((row) => [row.id, row]));
   for (let from = 0; from < caseIds.length; from += PAGE) {
     for (const row of await readChangedAmong(db, caseIds.slice(from, from + PAGE))) rows.set(row.id, row);
   }
   const gone: CaseDelta[] = [];
   const fresh: string[] = [];
+  const foundFresh: string[] = [];
   const touched: string[] = [];
   for (const row of rows.values()) {
     const before = known.find(row.id) ?? null;
     if (!waits(row.state)) {
       if (before) gone.push({ caseId: row.id, state: row.state, before, after: null });
-    } else if (before?.scoreId !== row.scoreId) fresh.push(row.id);
+    } else if (before?.scoreId !== row.scoreId) (named.has(row.id) ? fresh : foundFresh).push(row.id);
     else if (!isSame(before, row)) touched.push(row.id);
   }
-  return [...gone, ...(await withVectors(db, known, fresh)), ...(await withoutVectors(db, known, touched))];
+  const taken = [...fresh, ...foundFresh.slice(0, MOST_FOUND_FRESH)];
+  return {
+    changes: [
+      ...gone,
+      ...(await withVectors(db, known, taken)),
+      ...(await withoutVectors(db, known, touched)),
+    ],
+    left: foundFresh.slice(MOST_FOUND_FRESH),
+  };
 }
 
 const waits = (state: CaseState) => UNDECIDED_STATES.some((undecided) => undecided === state);

@@ -13,6 +13,7 @@ import { PolicyWatch } from "./policy-watch";
 import {
   countWaiting,
   type LoggedLabel,
+  readChangedAmong,
   readLabels,
   readPlaced,
   readScorerHead,
@@ -26,6 +27,8 @@ import { WaitingCases } from "./waiting-cases";
 const PAGE = 200;
 /** Room for so many times the cases that wait at the start: moving all vectors into a larger array takes a while. */
 const ROOM = 1.25;
+/** Of those that wait behind, so many are looked at in one run. */
+const MOST_LATER = 64;
 /** From about as many labels as a vector has coordinates on, computing anew is cheaper than moving label by label. */
 const MOST_STEPS = 64;
 
@@ -41,6 +44,8 @@ export class RankingModel {
   private readonly state = new Turns();
   private readonly listeners = new Set<(event: RankingEvent) => void>();
   private readonly hinted = new Set<string>();
+  /** Cases with a new vector that wait for their turn behind those that somebody asked for. */
+  private later: string[] = [];
   private readonly movements = new KeptMovements();
   private pending: Promise<void> | null = null;
   private owed: Promise<void> | null = null;
@@ -93,6 +98,12 @@ export class RankingModel {
     return this.pending;
   }
 
+  /** As `catchUp`, but a few at a time and behind whatever somebody waits for. */
+  takeInLater(caseIds: readonly string[]): void {
+    this.later.push(...caseIds);
+    this.goOnSoon();
+  }
+
   /** What moved when the scorer came to this version; null when nobody counted it here. */
   movementOf(version: number): Movement | null {
     return this.movements.of(version);
@@ -121,14 +132,24 @@ export class RankingModel {
       const named = [...hinted, ...(labels ?? []).flatMap(({ caseId }) => caseId ?? [])];
       const { cases, watch } = this.loaded;
       const look = poll ? await watch.look(this.db, now) : null;
-      const delta = await readDelta(this.db, cases, named, look?.rows ?? []);
-      await this.state.take(() => this.apply(delta, labels ?? [], fresh));
+      const turn = this.later.slice(0, MOST_LATER);
+      const behind = await readChangedAmong(this.db, turn);
+      const delta = await readDelta(this.db, cases, named, [...behind, ...(look?.rows ?? [])]);
+      await this.state.take(() => this.apply(delta.changes, labels ?? [], fresh));
       if (look) watch.settle(look);
+      this.later = [...new Set([...this.later.slice(turn.length), ...delta.left])];
+      if (this.later.length > 0) this.goOnSoon();
     } catch (error) {
       for (const id of hinted) this.hinted.add(id);
       this.pollWanted ||= poll;
       throw error;
     }
+  }
+
+  private goOnSoon(): void {
+    setImmediate(() => {
+      this.catchUp().catch((error) => log.error({ err: error }, "The ranking could not be brought forward"));
+    });
   }
 
   private async load(now: Date): Promise<void> {

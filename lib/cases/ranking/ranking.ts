@@ -41,7 +41,11 @@ function follow(db: Database): Followed {
   const wake = (caseIds: readonly string[]) => {
     model.catchUp(caseIds).catch(failed);
   };
-  const unlisten = listenToCases({ casesChanged: wake, labelsLearned: () => wake([]) });
+  const unlisten = listenToCases({
+    casesChanged: wake,
+    casesRescored: (caseIds) => model.takeInLater(caseIds),
+    labelsLearned: () => wake([]),
+  });
   const poll = async () => {
     let waitMs = POLL_MS;
     try {
