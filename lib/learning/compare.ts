@@ -16,7 +16,7 @@ import { type JudgedRow, type Predictions, readJudged, readPredictions } from ".
 import { listFits, ownLossesBehind, regretAt } from "./regret";
 
 /** The newest so many labels of the window are judged; more would tell nothing new and cost a reader seconds. */
-const MOST_JUDGED = 20_000;
+const MOST_JUDGED = 10_000;
 const DAY_MS = 86_400_000;
 
 /** The scorer in use and the candidates beside it, judged on the same labels of a span of time. */
