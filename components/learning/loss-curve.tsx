@@ -1,21 +1,17 @@
 "use client";
 import { useState } from "react";
-import type { CurvePoint, LearningView, ScorerFigures } from "@/lib/learning/learning-schema";
-import { type ChartColumn, ChartData } from "../ui/chart-data";
+import type { CurvePoint, LearningView } from "@/lib/learning/learning-schema";
+import { ChartData } from "../ui/chart-data";
 import { ChoiceSet, Radio } from "../ui/choice";
 import { Time } from "../ui/time";
+import { columnsFor } from "./curve-columns";
 import { natsText, signedNats } from "./figure-text";
+import { LineEnds, LOOKS } from "./line-ends";
 import { type LossLine, lossChart, type Reckoning, spreadPlaces } from "./loss-lines";
 
 const HEIGHT_REM = 20;
 /** A name and its figure at the end of a line. */
 const NAME_REM = 2.4;
-
-const LOOKS: Readonly<Record<LossLine["look"], { stroke: string; width: number }>> = {
-  in_use: { stroke: "stroke-ink", width: 2.5 },
-  candidate: { stroke: "stroke-accent", width: 2 },
-  hindsight: { stroke: "stroke-soft", width: 2 },
-};
 
 type LossCurveProps = { view: LearningView };
 
@@ -32,7 +28,7 @@ export function LossCurve({ view: { curve, scorers } }: LossCurveProps) {
     <figure>
       {scorers.length > 1 && (
         <div className="mb-4">
-          <ChoiceSet legend="Height">
+          <ChoiceSet legend="Drawn">
             <div className="flex flex-wrap gap-x-5 gap-y-1">
               <Radio
                 name="reckoning"
@@ -52,7 +48,7 @@ export function LossCurve({ view: { curve, scorers } }: LossCurveProps) {
       )}
       <div
         className="grid grid-cols-[auto_1fr_7.5rem] sm:grid-cols-[auto_1fr_13rem]"
-        style={{ height: `${HEIGHT_REM}rem` }}
+        style={{ gridTemplateRows: `${HEIGHT_REM}rem auto` }}
       >
         <HeightScale ticks={ticks} />
         <div className="relative">
@@ -99,8 +95,8 @@ export function LossCurve({ view: { curve, scorers } }: LossCurveProps) {
           </svg>
         </div>
         <LineEnds lines={lines} places={places} say={say} />
+        <Dates curve={curve} />
       </div>
-      <Dates curve={curve} />
       <figcaption className="mt-2 text-small text-soft">
         Nats, added up from left to right in the order the labels came. Lower is better.
       </figcaption>
@@ -123,8 +119,11 @@ function pathOf({ points }: LossLine): string {
     .join("");
 }
 
-/** The best fixed weights are reckoned now and then only: a dot for each time. */
+const MOST_MARKS = 20;
+
+/** The best fixed weights are reckoned now and then only: a dot for each time, while dots can be told apart. */
 function marksOf({ points }: LossLine): string {
+  if (points.length > MOST_MARKS) return "";
   return points.map(({ x, y }) => `M${(x * 1000).toFixed(1)} ${(1000 - y * 1000).toFixed(1)}h0.01`).join("");
 }
 
@@ -150,108 +149,15 @@ const tickText = (value: number) => {
   return natsText(value, places);
 };
 
-type LineEndsProps = { lines: readonly LossLine[]; places: readonly number[]; say: (nats: number) => string };
-
-/** Each line's name at its end, set apart where lines end close to one another. */
-function LineEnds({ lines, places, say }: LineEndsProps) {
-  return (
-    <div aria-hidden="true" className="relative">
-      <svg
-        aria-hidden="true"
-        viewBox="0 0 20 1000"
-        preserveAspectRatio="none"
-        className="absolute inset-y-0 left-0 h-full w-5"
-      >
-        {lines.map(({ id, points }, index) => (
-          <path
-            key={id}
-            d={`M1 ${1000 - (points.at(-1)?.y ?? 0) * 1000}L18 ${1000 - (places[index] ?? 0) * 1000}`}
-            vectorEffect="non-scaling-stroke"
-            className="stroke-edge"
-          />
-        ))}
-      </svg>
-      {lines.map((line, index) => (
-        <div
-          key={line.id}
-          className="absolute right-0 left-6 translate-y-1/2 leading-tight"
-          style={{ bottom: `${(places[index] ?? 0) * 100}%` }}
-        >
-          <div className="flex items-center gap-1.5">
-            <Stroke line={line} />
-            <span
-              className={`truncate text-small ${line.look === "in_use" ? "font-strong" : ""}`}
-              title={line.name}
-            >
-              {line.name}
-            </span>
-          </div>
-          <div className="figures text-small text-soft">{say(line.last)}</div>
-        </div>
-      ))}
-    </div>
-  );
-}
-
-function Stroke({ line: { dash, look } }: { line: LossLine }) {
-  return (
-    <svg aria-hidden="true" viewBox="0 0 32 4" className="hidden h-1 w-8 shrink-0 sm:block">
-      <path
-        d="M0 2H32"
-        strokeDasharray={dash}
-        strokeWidth={LOOKS[look].width}
-        strokeLinecap={look === "hindsight" ? "round" : "butt"}
-        className={LOOKS[look].stroke}
-      />
-    </svg>
-  );
-}
-
 /** When the first, the last and some labels between came. */
 function Dates({ curve }: { curve: readonly CurvePoint[] }) {
   const first = curve[0];
   const last = curve.at(-1);
   if (!first || !last) return null;
   return (
-    <div
-      aria-hidden="true"
-      className="mt-1.5 flex flex-wrap justify-between gap-x-4 pr-[7.5rem] pl-8 text-small text-soft sm:pr-52"
-    >
+    <div aria-hidden="true" className="col-start-2 mt-1.5 flex justify-between gap-x-4 text-small text-soft">
       <Time at={first.at} as="day" />
       <Time at={last.at} as="day" />
     </div>
   );
 }
-
-function columnsFor(
-  scorers: readonly ScorerFigures[],
-  curve: readonly CurvePoint[],
-): ChartColumn<CurvePoint>[] {
-  const columns: ChartColumn<CurvePoint>[] = [
-    { name: "Label", field: "label_log_row", value: ({ seq }) => seq },
-    {
-      name: "Came, UTC",
-      field: "at",
-      value: ({ at }) => at,
-      say: ({ at }) => at.slice(0, 16).replace("T", " "),
-    },
-    ...scorers.map(({ id, name }) => ({
-      name,
-      field: name,
-      value: ({ losses }: CurvePoint) => losses[id] ?? null,
-      say: ({ losses }: CurvePoint) => sayLoss(losses[id]),
-    })),
-  ];
-  if (curve.some(({ hindsight }) => hindsight !== null)) {
-    columns.push({
-      name: "Best fixed weights",
-      field: "best_fixed_weights",
-      value: ({ hindsight }) => hindsight,
-      say: ({ hindsight }) => sayLoss(hindsight),
-    });
-  }
-  return columns;
-}
-
-const sayLoss = (loss: number | null | undefined) =>
-  loss === null || loss === undefined ? "–" : natsText(loss, 2);

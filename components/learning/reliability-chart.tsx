@@ -4,7 +4,10 @@ import { countText } from "../ui/count";
 import { percentOf } from "../ui/probability";
 import { brierText, NOT_DEFINED } from "./figure-text";
 
-const TICKS = [0, 0.25, 0.5, 0.75, 1];
+const TICKS = [0, 0.01, 0.05, 0.1, 0.25, 0.5, 1];
+
+/** Both axes grow with the square root, so that the many low predictions do not lie on one another. */
+const place = (share: number) => `${Math.sqrt(share) * 100}%`;
 
 const COLUMNS: readonly ChartColumn<CalibrationBin>[] = [
   {
@@ -54,11 +57,7 @@ export function ReliabilityChart({ scorer }: { scorer: ScorerFigures }) {
       <div className="grid aspect-[4/3] max-w-md grid-cols-[2.5rem_1fr] grid-rows-[1fr_1.5rem]">
         <div aria-hidden="true" className="figures relative text-small text-soft">
           {TICKS.map((tick) => (
-            <span
-              key={tick}
-              className="absolute right-2 translate-y-1/2"
-              style={{ bottom: `${tick * 100}%` }}
-            >
+            <span key={tick} className="absolute right-2 translate-y-1/2" style={{ bottom: place(tick) }}>
               {tick * 100}
             </span>
           ))}
@@ -79,7 +78,7 @@ export function ReliabilityChart({ scorer }: { scorer: ScorerFigures }) {
             <span
               key={tick}
               className="absolute top-1 -translate-x-1/2 last:-translate-x-full"
-              style={{ left: `${tick * 100}%` }}
+              style={{ left: place(tick) }}
             >
               {tick * 100}
             </span>
@@ -87,7 +86,7 @@ export function ReliabilityChart({ scorer }: { scorer: ScorerFigures }) {
         </div>
       </div>
       <p className="mt-1 text-small text-soft">
-        Across: predicted, %. Up: found fraudulent, %. {sizeWords(bins)}
+        Across: predicted, %. Up: found fraudulent, %. Low shares are drawn farther apart. {sizeWords(bins)}
       </p>
       <ChartData
         caption={`Calibration of ${name}`}
@@ -111,7 +110,7 @@ function Ground() {
       {TICKS.slice(1).map((tick) => (
         <path
           key={tick}
-          d={`M0 ${100 - tick * 100}H100`}
+          d={`M0 ${100 - Math.sqrt(tick) * 100}H100`}
           vectorEffect="non-scaling-stroke"
           className="stroke-rule"
         />
@@ -124,17 +123,17 @@ function Ground() {
 /** A point with its interval: filled where the interval holds what was predicted, hollow where it does not. */
 function Mark({ bin }: { bin: CalibrationBin }) {
   const { meanPredicted, observed, low, high, n } = bin;
-  const left = `${meanPredicted * 100}%`;
+  const left = place(meanPredicted);
   return (
     <>
       <span
         className="absolute w-0.5 -translate-x-1/2 bg-soft"
-        style={{ left, bottom: `${low * 100}%`, height: `${(high - low) * 100}%` }}
+        style={{ left, bottom: place(low), top: `${100 - Math.sqrt(high) * 100}%` }}
       />
       <span
         title={`predicted ${percent(meanPredicted)}, found ${percent(observed)}, n ${countText(n)}`}
         className={`absolute size-2.5 -translate-x-1/2 translate-y-1/2 rounded-full border-2 border-ink ${agrees(bin) ? "bg-ink" : "bg-paper"}`}
-        style={{ left, bottom: `${observed * 100}%` }}
+        style={{ left, bottom: place(observed) }}
       />
     </>
   );
