@@ -1,6 +1,6 @@
 import type { Role } from "../auth/codes";
 import type { CaseState } from "../cases/codes";
-import type { Verdict } from "./codes";
+import type { LabelKind, Verdict } from "./codes";
 
 export type DecidableCase = {
   state: CaseState;
@@ -38,6 +38,17 @@ export function labelOf(verdict: Verdict): 1 | -1 | null {
     case "customer_misuse":
       return null;
   }
+}
+
+/**
+ * Whether a reviewer's finding takes the place of a label that stands. "Cleared" is the weakest of all: it labels
+ * what nobody looks at, and whoever does look knows better. Reports of fraud and settled findings are stronger.
+ */
+export function overrules(
+  label: 1 | -1 | null,
+  inForce: { kind: LabelKind; label: 1 | -1 } | undefined,
+): boolean {
+  return inForce?.kind === "outcome" && inForce.label === -1 && label !== -1;
 }
 
 const LONGEST_HANDLING_SECONDS = 4 * 60 * 60;

@@ -12,12 +12,13 @@ import type { HeldScorer } from "../learning/held-scorer";
 import { learnLabel } from "../learning/learn";
 import { markLabel } from "../learning/mark-label";
 import type { LabelInForce } from "../learning/place";
+import { replaceLabels } from "../learning/replace";
 import { bookDecision } from "../losses/book";
 import { newId } from "../new-id";
 import type { PolicyInForce } from "../policy/read";
 import type { Step } from "../scorer";
 import { extendVector } from "../signals/signal-set";
-import { handlingSeconds, labelOf, undoUntil } from "./rules";
+import { handlingSeconds, labelOf, overrules, undoUntil } from "./rules";
 import type { Target } from "./targets";
 
 export type Act = {
@@ -35,6 +36,8 @@ export type Settled = {
   evidence: Evidence;
   /** Null where nothing was learned: the verdict is no label, or an outcome has labelled the payment before. */
   learned: { loss: number; step: Step; seq: number } | null;
+  /** Place of the log where the verdict stands instead of the label that it overrules, if it does. */
+  replacedPlace: number | null;
 };
 
 /** One verdict in full: decision, learning step, label, money, and the case closed. All in the caller's transaction. */
@@ -51,6 +54,8 @@ export async function settleCase(
   const evidence = evidenceOf(held.scorer, vector);
   const label = labelOf(finding.verdict);
   const learns = label !== null && inForce === undefined;
+  const replacedPlace = inForce && overrules(label, inForce) ? inForce.place : null;
+  const relabels = learns || replacedPlace !== null;
   const decisionId = newId();
   const holdExpiresAt = transaction.paymentState === "held" ? transaction.holdExpiresAt : null;
   const until = undoUntil(now, policy.terms.undoMinutes, holdExpiresAt);
@@ -70,31 +75,25 @@ export async function settleCase(
     evidence: vectorToBytes(packEvidence(evidence)),
     scoreWasHidden: act.scoreWasHidden ? 1 : 0,
     scorerVersionBefore: held.version,
-    scorerVersionAfter: held.version + (learns ? 1 : 0),
+    scorerVersionAfter: held.version + (relabels ? 1 : 0),
     policyVersion: policy.version,
     zone: caseRow.zone,
     actId: act.actId,
     handlingSeconds: seconds,
   });
   await closeCase(tx, caseRow.id, now);
-  const learned = learns
-    ? await learnLabel(
-        tx,
-        held,
-        now,
-        {
-          kind: "decision",
-          transactionId: transaction.id,
-          caseId: caseRow.id,
-          decisionId,
-          outcomeId: null,
-          personId: person.personId,
-        },
-        vector,
-        label,
-      )
-    : null;
-  if (learns) {
+  const source = {
+    kind: "decision" as const,
+    transactionId: transaction.id,
+    caseId: caseRow.id,
+    decisionId,
+    outcomeId: null,
+    personId: person.personId,
+  };
+  const learned = learns ? await learnLabel(tx, held, now, source, vector, label) : null;
+  if (replacedPlace !== null)
+    await replaceLabels(tx, held, now, [{ ...source, place: replacedPlace, label: label ?? 0 }]);
+  if (relabels) {
     await markLabel(tx, transaction, label, now);
     await tx.insert(signalRefreshes).values({ transactionId: transaction.id, createdAt: now });
   }
@@ -103,11 +102,12 @@ export async function settleCase(
     caseId: caseRow.id,
     transactionId: transaction.id,
     ...finding,
+    overrulesOutcome: replacedPlace !== null,
     handlingSeconds: seconds,
     terms: policy.terms,
     bookedAt: now,
   });
-  return { decisionId, undoUntil: until, evidence, learned };
+  return { decisionId, undoUntil: until, evidence, learned, replacedPlace };
 }
 
 async function closeCase(tx: Tx, caseId: string, now: Date): Promise<void> {

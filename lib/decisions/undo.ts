@@ -8,13 +8,15 @@ import { applyLearned } from "../cases/after-decision";
 import { leaseEnd, unheldState } from "../cases/rules";
 import type { Context, PersonActor } from "../context";
 import { conflict, ruleBroken } from "../errors";
+import { type FindingRow, findingThatHolds } from "../learning/finding";
 import { lockScorerInUse, saveScorer } from "../learning/held-scorer";
 import { markLabel } from "../learning/mark-label";
-import { labelsInForce } from "../learning/place";
+import { type LabelInForce, labelsInForce, placeOfDecision, rowsAtPlace } from "../learning/place";
 import { type Replacement, replaceLabels } from "../learning/replace";
-import { reverseBooking } from "../losses/book";
+import { bookOutcome, reverseBooking } from "../losses/book";
 import { settleRecoveries } from "../losses/recoveries";
 import { applyOutcomesAgain } from "../outcomes/apply-again";
+import { policyInForce } from "../policy/read";
 import { appendTrail } from "../trail/append";
 import { completeAnswer, writeOnce } from "../write-once";
 import { labelOf } from "./rules";
@@ -42,12 +44,13 @@ export async function undoDecision(ctx: Context, input: { id: string }): Promise
       const replacements: Replacement[] = [];
       for (const standing of act) {
         await takeBack(tx, standing, person, standing.caseRow.id === input.id, now);
-        const label = inForce.get(standing.transaction.id);
-        // Without one, the verdict gave none, or the scorer has been made to forget it while the payment kept it.
-        if (label ? label.decisionId !== standing.decision.id : labelOf(standing.decision.verdict) === null)
-          continue;
-        if (label) replacements.push(undoOf(standing, person, label.place));
-        await markLabel(tx, standing.transaction, null, now);
+        const taken = await labelTakenBack(tx, standing, inForce.get(standing.transaction.id));
+        if (!taken) continue;
+        const { place, back } = taken;
+        if (place !== null)
+          replacements.push({ ...undoOf(standing, person, place), label: back?.label ?? 0 });
+        await markLabel(tx, standing.transaction, back?.label || null, now);
+        if (back?.outcomeId) await bookAgain(tx, standing, { ...back, outcomeId: back.outcomeId }, now);
         await settleRecoveries(tx, recoveriesOf(standing), false, now);
         await tx.insert(signalRefreshes).values({ transactionId: standing.transaction.id, createdAt: now });
       }
@@ -134,6 +137,41 @@ async function takeBack(
       changedAt: now,
     })
     .where(eq(cases.id, caseRow.id));
+}
+
+/**
+ * Where the verdict stands in the log, and what had been found there before it and holds again. Null where it stands
+ * nowhere; without a place where the scorer has been made to forget it while the payment kept its label.
+ */
+async function labelTakenBack(
+  tx: Tx,
+  { decision, transaction }: StandingDecision,
+  inForce: LabelInForce | undefined,
+): Promise<{ place: number | null; back: FindingRow | null } | null> {
+  if (inForce && inForce.decisionId !== decision.id) return null;
+  if (!inForce && labelOf(decision.verdict) !== null) return { place: null, back: null };
+  const place = inForce?.place ?? (await placeOfDecision(tx, transaction.id, decision.id));
+  if (place === null) return null;
+  const rows = await rowsAtPlace(tx, place);
+  return { place, back: findingThatHolds(rows.filter(({ decisionId }) => decisionId !== decision.id)) };
+}
+
+/** Its line was taken back when the decision overruled it. */
+async function bookAgain(
+  tx: Tx,
+  { transaction }: StandingDecision,
+  { label, outcomeId }: { label: FindingRow["label"]; outcomeId: string },
+  now: Date,
+): Promise<void> {
+  const { terms } = await policyInForce(tx, now);
+  await bookOutcome(tx, {
+    outcomeId,
+    transactionId: transaction.id,
+    verdict: label === 1 ? "fraudulent" : "legitimate",
+    typology: label === 1 ? "other" : null,
+    terms,
+    bookedAt: now,
+  });
 }
 
 const recoveriesOf = ({ transaction }: StandingDecision) => ({

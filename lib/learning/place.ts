@@ -1,9 +1,23 @@
 import "server-only";
-import { asc, inArray } from "drizzle-orm";
+import { and, asc, eq, inArray, or } from "drizzle-orm";
 import type { Executor } from "@/db/client";
 import { labelLog } from "@/db/schema/scorers";
 import type { LabelKind } from "../decisions/codes";
 import type { Label } from "../scorer";
+import { type FindingRow, findingThatHolds } from "./finding";
+
+const FINDING = {
+  seq: labelLog.seq,
+  place: labelLog.place,
+  kind: labelLog.kind,
+  label: labelLog.label,
+  transactionId: labelLog.transactionId,
+  caseId: labelLog.caseId,
+  decisionId: labelLog.decisionId,
+  outcomeId: labelLog.outcomeId,
+  personId: labelLog.personId,
+  at: labelLog.at,
+};
 
 export type LabelInForce = { place: number; label: Label; kind: LabelKind; decisionId: string | null };
 
@@ -15,22 +29,24 @@ export async function labelsInForce(
   const held = new Map<string, LabelInForce>();
   if (transactionIds.length === 0) return held;
   const rows = await db
-    .select({
-      seq: labelLog.seq,
-      place: labelLog.place,
-      label: labelLog.label,
-      kind: labelLog.kind,
-      decisionId: labelLog.decisionId,
-      transactionId: labelLog.transactionId,
-    })
+    .select(FINDING)
     .from(labelLog)
     .where(inArray(labelLog.transactionId, [...transactionIds]))
     .orderBy(asc(labelLog.seq));
-  for (const row of rows) {
-    const { transactionId, kind, decisionId } = row;
-    const place = row.place ?? row.seq;
-    if (row.label !== 0) held.set(transactionId, { place, label: row.label as Label, kind, decisionId });
-    else if (held.get(transactionId)?.place === place) held.delete(transactionId);
+  const said = new Map<number, FindingRow[]>();
+  for (const { place: earlier, ...row } of rows) {
+    const finding = { ...row, label: row.label as Label | 0 };
+    const { transactionId, label } = finding;
+    const place = earlier ?? row.seq;
+    const there = [...(said.get(place) ?? []), finding];
+    said.set(place, there);
+    if (label === 0) {
+      if (held.get(transactionId)?.place === place) held.delete(transactionId);
+      continue;
+    }
+    // An undo or a removal may give the place back to what had been found there before.
+    const { kind, decisionId } = findingThatHolds(there) ?? finding;
+    held.set(transactionId, { place, label, kind, decisionId });
   }
   return held;
 }
@@ -53,4 +69,28 @@ export async function settledWithoutLabel(
       label === 0 && settled.includes(kind) ? transactionId : [],
     ),
   );
+}
+
+/** All that was said at one place of the log, oldest first. */
+export async function rowsAtPlace(db: Executor, place: number): Promise<FindingRow[]> {
+  const rows = await db
+    .select(FINDING)
+    .from(labelLog)
+    .where(or(eq(labelLog.seq, place), eq(labelLog.place, place)))
+    .orderBy(asc(labelLog.seq));
+  return rows.map(({ place: _, ...row }) => ({ ...row, label: row.label as Label | 0 }));
+}
+
+/** Where in the log a decision stands, or stood; null where its verdict was no label and overruled none. */
+export async function placeOfDecision(
+  db: Executor,
+  transactionId: string,
+  decisionId: string,
+): Promise<number | null> {
+  const [row] = await db
+    .select({ seq: labelLog.seq, place: labelLog.place })
+    .from(labelLog)
+    .where(and(eq(labelLog.transactionId, transactionId), eq(labelLog.decisionId, decisionId)))
+    .limit(1);
+  return row ? (row.place ?? row.seq) : null;
 }

@@ -17,6 +17,8 @@ export type DecisionBooking = {
   transactionId: string;
   verdict: Verdict;
   typology: Typology | null;
+  /** It stands instead of what an outcome said of the payment. */
+  overrulesOutcome?: boolean;
   handlingSeconds: number;
   /** Terms of the policy that the decision falls under. */
   terms: CostTerms;
@@ -26,8 +28,8 @@ export type DecisionBooking = {
 /**
  * Books the ledger line of a decision or correction that is already inserted, inside its transaction. Reads the
  * amount and where the money is from the transaction as it stands, so a disposition must not be written before.
- * Where an outcome has labelled the payment, a plain decision books its review cost alone; a correction, which is
- * stronger, takes the outcome's line back first.
+ * Where an outcome has labelled the payment, a plain decision books its review cost alone; one that overrules the
+ * outcome, and a correction, take the outcome's line back first.
  * @throws Error where the transaction does not exist
  */
 export async function bookDecision(tx: Tx, booking: DecisionBooking): Promise<LedgerLine> {
@@ -36,7 +38,8 @@ export async function bookDecision(tx: Tx, booking: DecisionBooking): Promise<Le
   const wasPassed = payment.action === "pass" || (await wasDecidedLegitimate(tx, lines, booking));
   const whole = ledgerLine({ ...booking, ...payment, wasPassed });
   const byOutcome = standingAmong(lines).filter(isOutcomeLabel);
-  const yields = byOutcome.length > 0 && (await isPlainDecision(tx, booking.decisionId));
+  const yields =
+    byOutcome.length > 0 && !booking.overrulesOutcome && (await isPlainDecision(tx, booking.decisionId));
   if (!yields) await reverseLines(tx, byOutcome, booking.bookedAt, "nothing");
   const line = yields ? { ...NOTHING_BOOKED, reviewCostMinor: whole.reviewCostMinor } : whole;
   await tx.insert(ledger).values({
