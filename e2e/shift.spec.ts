@@ -79,6 +79,7 @@ test("a whole shift goes by keyboard alone, from the sign-in on", async ({ page,
     await press(page, "s");
     await expect(page.getByText("Score hidden", { exact: true })).toBeVisible();
     await expect(page.getByRole("list", { name: /evidence is made of/ })).toHaveCount(0);
+    await expect(page.getByText("What would change this")).toHaveCount(0);
     await press(page, "ArrowLeft", "ArrowLeft");
     const done = hand;
     hand = await desk.commit(done);
@@ -86,6 +87,7 @@ test("a whole shift goes by keyboard alone, from the sign-in on", async ({ page,
     expect(await findDecision(db, done.caseId)).toMatchObject({ scoreWasHidden: 1 });
     await press(page, "s");
     await expect(page.getByRole("list", { name: /evidence is made of/ })).toBeVisible();
+    await expect(page.getByText("What would change this")).toBeVisible();
   });
 
   await test.step("takes the decision back and sees its case again", async () => {

@@ -41,6 +41,19 @@ test("an auditor searches the trail, opens one decision as it was, and verifies 
     await expect(page.getByRole("table", { name: /All that happened to the case/ })).toContainText("Decided");
   });
 
+  await test.step("every score of the case, derived again", async () => {
+    await page.goto(`/cases/${opened.caseId}`);
+    const scores = page.getByRole("region", { name: "Scores over time" });
+    const again = scores.getByRole("button", { name: "Derive again" });
+    await expect(scores.getByRole("listitem").first()).toContainText("At arrival");
+    await expect(scores.getByRole("listitem").last()).toContainText("Decision by");
+    // At arrival, and with the verdict; more where a linked payment was labelled meanwhile.
+    expect(await again.count()).toBeGreaterThanOrEqual(2);
+    for (const button of await again.all()) await button.click();
+    await expect(scores.getByText("It comes out again, equal bit for bit.")).toHaveCount(await again.count());
+    await expect(scores.getByText("What would have changed it then").first()).toBeVisible();
+  });
+
   await test.step("the chain", async () => {
     await page.goto("/trail");
     await page.getByRole("button", { name: "Verify the chain" }).click();

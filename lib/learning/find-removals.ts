@@ -1,5 +1,5 @@
 import "server-only";
-import { and, asc, eq, gte, inArray, isNotNull, lt, lte, type SQL, sql } from "drizzle-orm";
+import { and, asc, eq, gt, gte, inArray, lt, lte, or } from "drizzle-orm";
 import type { Executor } from "@/db/client";
 import { labelLog } from "@/db/schema/scorers";
 import type { Label } from "../scorer";
@@ -19,6 +19,9 @@ export type Removal = {
 
 const FINDINGS = ["decision", "second_review", "adjudication", "correction"] as const;
 
+/** So many rows are turned into objects in one go. */
+const PAGE_ROWS = 1_000;
+
 /**
  * Where the log would say something else if the person had never found anything at the places of the span: nothing, or
  * what another had found there before. What others have found since stays as it is.
@@ -27,58 +30,69 @@ const FINDINGS = ["decision", "second_review", "adjudication", "correction"] as 
  */
 export async function findRemovals(db: Executor, span: RemovalSpan, upToSeq: number): Promise<Removal[]> {
   const removals: Removal[] = [];
-  for (const [place, rows] of await rowsOfTheirPlaces(db, span, upToSeq)) {
-    const holdsAgain = findingThatHolds(rows, span.personId);
-    const label = holdsAgain?.label ?? 0;
-    const transactionId = rows[0]?.transactionId;
-    if (transactionId === undefined || label === labelAt(rows)) continue;
-    removals.push({ place, label, transactionId, holdsAgain });
+  const seen = new Set<number>();
+  for (let after = 0; ; ) {
+    const theirs = await theirRows(db, span, after, upToSeq);
+    const places = new Set(theirs.map(({ seq, place }) => place ?? seq).filter((place) => !seen.has(place)));
+    for (const [place, rows] of await rowsAt(db, [...places], upToSeq)) {
+      seen.add(place);
+      const holdsAgain = findingThatHolds(rows, span.personId);
+      const label = holdsAgain?.label ?? 0;
+      const transactionId = rows[0]?.transactionId;
+      if (transactionId === undefined || label === labelAt(rows)) continue;
+      removals.push({ place, label, transactionId, holdsAgain });
+    }
+    const last = theirs.at(-1);
+    if (!last || theirs.length < PAGE_ROWS) break;
+    after = last.seq;
   }
   return removals.sort((a, b) => a.place - b.place);
 }
 
-async function rowsOfTheirPlaces(
-  db: Executor,
-  { personId, from, to }: RemovalSpan,
-  upToSeq: number,
-): Promise<Map<number, FindingRow[]>> {
-  const theirs = db
-    .selectDistinct({ place: placeOf.as("their_place") })
+function theirRows(db: Executor, { personId, from, to }: RemovalSpan, afterSeq: number, upToSeq: number) {
+  return db
+    .select({ seq: labelLog.seq, place: labelLog.place })
     .from(labelLog)
     .where(
       and(
         eq(labelLog.personId, personId),
         inArray(labelLog.kind, [...FINDINGS]),
+        gt(labelLog.seq, afterSeq),
         lte(labelLog.seq, upToSeq),
         from ? gte(labelLog.at, from) : undefined,
         to ? lt(labelLog.at, to) : undefined,
       ),
     )
-    .as("theirs");
-  const rows = async (joined: SQL, where: SQL | undefined) =>
-    db
-      .select({ ...findingColumns, place: theirs.place })
-      .from(theirs)
-      .innerJoin(labelLog, joined)
-      .where(where)
-      .orderBy(asc(labelLog.seq));
-  const roots = await rows(eq(labelLog.seq, theirs.place), undefined);
-  const later = await rows(
-    eq(labelLog.place, theirs.place),
-    and(isNotNull(labelLog.place), lte(labelLog.seq, upToSeq)),
-  );
+    .orderBy(asc(labelLog.seq))
+    .limit(PAGE_ROWS);
+}
+
+/** All that was said at the places, each oldest first. */
+async function rowsAt(
+  db: Executor,
+  places: readonly number[],
+  upToSeq: number,
+): Promise<Map<number, FindingRow[]>> {
   const byPlace = new Map<number, FindingRow[]>();
-  for (const { place, ...row } of [...roots, ...later]) {
+  if (places.length === 0) return byPlace;
+  const rows = await db
+    .select({ ...findingColumns, place: labelLog.place })
+    .from(labelLog)
+    .where(
+      and(
+        or(inArray(labelLog.seq, [...places]), inArray(labelLog.place, [...places])),
+        lte(labelLog.seq, upToSeq),
+      ),
+    )
+    .orderBy(asc(labelLog.seq));
+  for (const { place, ...row } of rows) {
     const finding = { ...row, label: row.label as Label | 0 };
-    const known = byPlace.get(place);
+    const known = byPlace.get(place ?? row.seq);
     if (known) known.push(finding);
-    else byPlace.set(place, [finding]);
+    else byPlace.set(place ?? row.seq, [finding]);
   }
   return byPlace;
 }
-
-/** A row without a place stands at its own. */
-const placeOf = sql<number>`coalesce(${labelLog.place}, ${labelLog.seq})`.mapWith(Number);
 
 export const findingColumns = {
   seq: labelLog.seq,

@@ -12,7 +12,7 @@ import type { InfluenceResult } from "./influence-schema";
 import { readPaymentsLookedAt } from "./payments-looked-at";
 import { effectOfRemoving } from "./without-labels";
 
-const PAGE_ROWS = 5_000;
+const PAGE_ROWS = 2_000;
 /** Each is a fold of the log of its own; those with fewer labels are listed without an effect. */
 const MOST_PEOPLE = 50;
 
