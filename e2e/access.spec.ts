@@ -5,7 +5,7 @@ import { PAGES, type PagePath } from "@/lib/auth/pages";
 import { newId } from "@/lib/new-id";
 import { expectAccessible } from "./pages/accessibility";
 import { DeskPage } from "./pages/desk";
-import { press } from "./pages/keyboard";
+import { press, tabTo } from "./pages/keyboard";
 import type { Office } from "./support/office";
 import { suspiciousPayments } from "./support/payments";
 import { findDecision } from "./support/records";
@@ -106,6 +106,26 @@ test.describe("what opens over a page can be used by everybody, too", () => {
       await expectAccessible(page, "[role=dialog]");
     });
   }
+
+  test("what each signal on the Desk looks at, without a mouse", async ({ office, openAs }) => {
+    const person = await office.person("reviewer");
+    await office.openCases(suspiciousPayments(2), person);
+    const page = await openAs(person);
+    const desk = new DeskPage(page);
+    const hand = await desk.open();
+    await tabTo(page.getByText("Show as table"), "Shift+Tab");
+    await press(page, "Enter");
+    const table = page.getByRole("table", { name: "What the evidence is made of" });
+    await expect(table.getByRole("columnheader")).toHaveText([
+      "Signal",
+      "Reading",
+      "What it means",
+      "Decibans",
+    ]);
+    await expect(table.getByRole("row").filter({ hasText: "Total" })).toContainText("Sum of the lines above");
+    await expect(desk.hand).toHaveAttribute("data-case-id", hand.caseId);
+    await expectAccessible(page, "section[aria-label=Balance]");
+  });
 
   test("the form that proposes a policy", async ({ office, openAs }) => {
     const page = await openAs(await office.person("supervisor"));

@@ -58,3 +58,37 @@ export function evidenceRows(evidence: EvidenceView, most: number): EvidenceRow[
 export function silentSignals(evidence: EvidenceView): SignalEvidence[] {
   return evidence.signals.filter((signal) => !signal.available);
 }
+
+/** A line of the balance in words and figures. */
+export type EvidenceLine = { name: string; reading: string; explanation: string; decibans: number };
+
+/** All that the balance is drawn from: every signal, also those that say nothing, the total and the policy's two lines. */
+export function evidenceLines(evidence: EvidenceView): EvidenceLine[] {
+  const weighed = evidenceRows(evidence, evidence.signals.length).map((row) => ({
+    name: row.name,
+    reading: row.reading ?? "",
+    explanation: row.explanation ?? "",
+    decibans: row.decibans,
+  }));
+  const quiet = evidence.signals
+    .filter((signal) => !signal.available || signal.decibans === 0)
+    .map(({ name, reading, explanation, available }) => ({
+      name,
+      reading: available ? reading : "not available",
+      explanation,
+      decibans: 0,
+    }));
+  const line = (name: string, explanation: string, decibans: number) => ({
+    name,
+    reading: "",
+    explanation,
+    decibans,
+  });
+  return [
+    ...weighed,
+    ...quiet,
+    line("Total", "Sum of the lines above", evidence.totalDecibans),
+    line("Review from", "Line of the policy", evidence.reviewDecibans),
+    line("Hold from", "Line of the policy", evidence.holdDecibans),
+  ];
+}

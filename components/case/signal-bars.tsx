@@ -3,9 +3,23 @@ import { type CSSProperties, useState } from "react";
 import type { EvidenceView } from "@/lib/cases/schema";
 import { axisPlace } from "../ui/axis-scale";
 import { Button } from "../ui/button";
+import { type ChartColumn, ChartData } from "../ui/chart-data";
 import { signedDecibans } from "../ui/probability";
 import { AXIS_INSET, leftAt } from "./balance-axis";
-import { type EvidenceRow, evidenceRows } from "./evidence-rows";
+import { type EvidenceLine, type EvidenceRow, evidenceLines, evidenceRows } from "./evidence-rows";
+
+/** Beside the figures, what each signal looks at: the bars have room for it only under a mouse's pointer. */
+const COLUMNS: readonly ChartColumn<EvidenceLine>[] = [
+  { name: "Signal", field: "signal", value: ({ name }) => name, isText: true },
+  { name: "Reading", field: "reading", value: ({ reading }) => reading, isText: true },
+  { name: "What it means", field: "explanation", value: ({ explanation }) => explanation, isText: true },
+  {
+    name: "Decibans",
+    field: "decibans",
+    value: ({ decibans }) => decibans,
+    say: ({ decibans }) => signedDecibans(decibans),
+  },
+];
 
 type SignalBarsProps = {
   evidence: EvidenceView;
@@ -17,41 +31,51 @@ type SignalBarsProps = {
 export function SignalBars({ evidence, most }: SignalBarsProps) {
   const [all, setAll] = useState(false);
   return (
-    <div className={all ? "max-h-[50vh] overflow-y-auto" : ""}>
-      <div className={AXIS_INSET}>
-        <div aria-hidden="true" className="pointer-events-none absolute inset-0">
-          <span className="absolute inset-y-0 border-l border-ink" style={leftAt(0)} />
-          <span
-            className="absolute inset-y-0 border-l border-edge border-dotted"
-            style={leftAt(evidence.reviewDecibans)}
-          />
-          <span
-            className="absolute inset-y-0 border-l border-edge border-dotted"
-            style={leftAt(evidence.holdDecibans)}
-          />
+    <>
+      <div className={all ? "max-h-[50vh] overflow-y-auto" : ""}>
+        <div className={AXIS_INSET}>
+          <div aria-hidden="true" className="pointer-events-none absolute inset-0">
+            <span className="absolute inset-y-0 border-l border-ink" style={leftAt(0)} />
+            <span
+              className="absolute inset-y-0 border-l border-edge border-dotted"
+              style={leftAt(evidence.reviewDecibans)}
+            />
+            <span
+              className="absolute inset-y-0 border-l border-edge border-dotted"
+              style={leftAt(evidence.holdDecibans)}
+            />
+          </div>
+          <ul aria-label="What the evidence is made of, in decibans">
+            {evidenceRows(evidence, all ? evidence.signals.length : most).map((row) => (
+              <Bar key={row.key} row={row} {...(row.kind === "rest" && { onOpen: () => setAll(true) })} />
+            ))}
+            <Bar
+              row={{
+                key: "total",
+                name: "Total",
+                reading: null,
+                explanation: "Sum of the lines above",
+                decibans: evidence.totalDecibans,
+                kind: "total",
+              }}
+            />
+          </ul>
+          {all && (
+            <Button look="quiet" small className="px-0" onClick={() => setAll(false)}>
+              Only the heaviest
+            </Button>
+          )}
         </div>
-        <ul aria-label="What the evidence is made of, in decibans">
-          {evidenceRows(evidence, all ? evidence.signals.length : most).map((row) => (
-            <Bar key={row.key} row={row} {...(row.kind === "rest" && { onOpen: () => setAll(true) })} />
-          ))}
-          <Bar
-            row={{
-              key: "total",
-              name: "Total",
-              reading: null,
-              explanation: "Sum of the lines above",
-              decibans: evidence.totalDecibans,
-              kind: "total",
-            }}
-          />
-        </ul>
-        {all && (
-          <Button look="quiet" small className="px-0" onClick={() => setAll(false)}>
-            Only the heaviest
-          </Button>
-        )}
       </div>
-    </div>
+      <div className="px-3 sm:px-14">
+        <ChartData
+          caption="What the evidence is made of"
+          fileName="balance"
+          columns={COLUMNS}
+          rows={evidenceLines(evidence)}
+        />
+      </div>
+    </>
   );
 }
 

@@ -9,6 +9,8 @@ export type ChartColumn<Row> = {
   value: (row: Row) => string | number | null;
   /** How a value reads on the screen, where it is not written as it is. */
   say?: (row: Row) => string;
+  /** Words rather than figures: set from the left, and broken where they are long. */
+  isText?: true;
 };
 
 type ChartDataProps<Row> = {
@@ -31,8 +33,8 @@ export function ChartData<Row>({ caption, fileName, columns, rows }: ChartDataPr
         <Table caption={caption} captionHidden className="w-auto! text-small">
           <thead>
             <tr>
-              {columns.map(({ name, field }) => (
-                <Th key={field} numeric>
+              {columns.map(({ name, field, isText }) => (
+                <Th key={field} numeric={!isText}>
                   {name}
                 </Th>
               ))}
@@ -41,8 +43,8 @@ export function ChartData<Row>({ caption, fileName, columns, rows }: ChartDataPr
           <tbody>
             {rows.map((row) => (
               <tr key={columns.map(({ value }) => value(row)).join(" ")}>
-                {columns.map(({ field, value, say }) => (
-                  <Td key={field} numeric className="whitespace-nowrap">
+                {columns.map(({ field, value, say, isText }) => (
+                  <Td key={field} numeric={!isText} className={isText ? "min-w-32" : "whitespace-nowrap"}>
                     {say ? say(row) : value(row)}
                   </Td>
                 ))}

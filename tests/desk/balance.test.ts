@@ -1,5 +1,5 @@
 import { describe, expect, it } from "vitest";
-import { evidenceRows, silentSignals } from "@/components/case/evidence-rows";
+import { evidenceLines, evidenceRows, silentSignals } from "@/components/case/evidence-rows";
 import { linkGroups } from "@/components/case/link-groups";
 import { rugTicks } from "@/components/desk/rug";
 import { AXIS_DECIBANS, axisPlace } from "@/components/ui/axis-scale";
@@ -136,5 +136,46 @@ describe("figures", () => {
     expect(percentOf(0.0000001)).toBe("< 0.1");
     expect(percentOf(0.9999999)).toBe("> 99.9");
     expect(percentOf(0)).toBe("0.0");
+  });
+});
+
+describe("the balance as a table", () => {
+  it("names every signal with what it looks at, the silent ones too, and adds up to its total", () => {
+    const lines = evidenceLines(
+      evidence(
+        [
+          {
+            ...signal("Amount", 4),
+            reading: "3 times the usual",
+            explanation: "Against the account's usual",
+          },
+          { ...signal("Device", 0, false), explanation: "How many accounts share the device" },
+          signal("Hour", 0),
+        ],
+        -1,
+      ),
+    );
+    expect(lines.map(({ name }) => name)).toEqual([
+      "Base rate",
+      "Amount",
+      "Little experience with this pattern",
+      "Device",
+      "Hour",
+      "Total",
+      "Review from",
+      "Hold from",
+    ]);
+    expect(lines[1]).toMatchObject({
+      reading: "3 times the usual",
+      explanation: "Against the account's usual",
+    });
+    expect(lines[3]).toMatchObject({
+      reading: "not available",
+      explanation: "How many accounts share the device",
+      decibans: 0,
+    });
+    const upTo = lines.findIndex(({ name }) => name === "Total");
+    const sum = lines.slice(0, upTo).reduce((total, line) => total + line.decibans, 0);
+    expect(sum).toBeCloseTo(lines[upTo]?.decibans as number, 9);
   });
 });
