@@ -13,6 +13,7 @@ import { peopleEndpoints } from "./people/endpoints";
 import { platformEndpoints } from "./platform-endpoints";
 import { policyEndpoints } from "./policy/endpoints";
 import { profileEndpoints } from "./profile/endpoints";
+import { signalEndpoints } from "./signals/endpoints";
 import { trailEndpoints } from "./trail/endpoints";
 import { transactionEndpoints } from "./transactions/endpoints";
 
@@ -33,6 +34,7 @@ export const ENDPOINTS = {
   ...outcomeEndpoints,
   ...learningEndpoints,
   ...approvalEndpoints,
+  ...signalEndpoints,
   ...lossEndpoints,
 } as const satisfies EndpointTable;
 

@@ -5,6 +5,7 @@ import { conflict } from "../errors";
 import { promoteScorer } from "../learning/promote";
 import { foldRemovalAhead, removeLabels } from "../learning/remove-labels";
 import type { FoldAhead } from "../learning/replace";
+import { switchOwnSignal } from "../signals/switch-own";
 import type { ApprovalKind, ApprovalSubject } from "./codes";
 
 type Subjects = {
@@ -21,8 +22,8 @@ const CARRY_OUT: {
     | null;
 } = {
   "scorer.promote": promoteScorer,
-  "signal.switch_on": null,
-  "signal.switch_off": null,
+  "signal.switch_on": (ctx, tx, subject) => switchOwnSignal(ctx, tx, subject, "on"),
+  "signal.switch_off": (ctx, tx, subject) => switchOwnSignal(ctx, tx, subject, "off"),
   "labels.remove": removeLabels,
 };
 

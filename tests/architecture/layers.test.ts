@@ -134,6 +134,8 @@ describe("domains", () => {
     ],
     ["approvals", "learning", "what needs a second person asks for one, and is done when one approves"],
     ["approvals", "signals", "as above, for the team's own signals"],
+    ["approvals", "cases", "waiting cases are ranked anew behind what was approved"],
+    ["signals", "learning", "switching one of the team's own signals runs the log anew and shows its weight"],
     [
       "learning",
       "outcomes",
