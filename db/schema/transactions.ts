@@ -144,9 +144,11 @@ export const labelledEntities = mysqlTable(
 
 export const signalSets = mysqlTable("signal_sets", {
   version: int().primaryKey(),
-  /** Keys and formulas of the catalogue in the order of the vector. */
+  /** Keys and formulas of the catalogue in the order of the vector, and the team's own signals behind it. */
   definition: json<unknown>()().notNull(),
   createdAt: instant().notNull(),
+  /** When every waiting case had been scored by it. */
+  rescoredAt: instant(),
 });
 
 /** How many payments of a day came in and passed: what the chance of a sample is reckoned from. */

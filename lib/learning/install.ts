@@ -51,6 +51,7 @@ export async function ensureScorerInUse(ctx: Context): Promise<void> {
           // With their formulas: years later a score can be explained from the record alone.
           definition: catalogueDefinition(),
           createdAt: now,
+          rescoredAt: now,
         })
         .onDuplicateKeyUpdate({ set: { version: FIRST_SET } });
       await appendTrail(ctx, tx, {

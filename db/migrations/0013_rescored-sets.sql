@@ -1,0 +1,1 @@
+ALTER TABLE `signal_sets` ADD `rescored_at` datetime(3);
