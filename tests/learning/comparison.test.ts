@@ -59,10 +59,11 @@ test("before the first label nothing is defined, and nothing is 0 instead", asyn
 
 describe("once there are labels", () => {
   beforeAll(async () => {
-    await life.live(150);
+    await life.begin(70);
+    await life.live(60);
     await add("The same again", "improper");
     await add("Six together", "aggregate");
-    await life.live(60);
+    await life.live(25);
     await followLog(system(), signal);
     await fitHindsight(system(), signal);
   });

@@ -58,6 +58,17 @@ export async function mixedLife(world: World, seed: number) {
       ]),
     );
 
+  /** A history in one act: so many payments that outcomes have labelled. */
+  async function begin(count: number): Promise<void> {
+    const cases = await world.waitingCases(count, { seed: 5_000 + seed });
+    const items = cases.map(({ transactionId }) => ({
+      transactionId,
+      outcomeId: newId(),
+      label: chance.hits(0.3) ? (1 as const) : (-1 as const),
+    }));
+    await inTransaction(world.db, (tx) => labelFromOutcomes(tx, later(), items));
+  }
+
   /** Decides so many cases, with everything that happens to decisions in between. */
   async function live(count: number): Promise<void> {
     const cases = await world.waitingCases(count, { seed: seed + decided.length });
@@ -73,5 +84,5 @@ export async function mixedLife(world: World, seed: number) {
     }
   }
 
-  return { reviewer, supervisor, later, decide, live };
+  return { reviewer, supervisor, later, decide, begin, live };
 }

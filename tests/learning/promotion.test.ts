@@ -10,7 +10,7 @@ import type { PersonActor } from "@/lib/context";
 import { scorerAsOf } from "@/lib/learning/as-of";
 import { createCandidate } from "@/lib/learning/create-candidate";
 import { dropCandidate } from "@/lib/learning/drop-candidate";
-import { readScorerInUse } from "@/lib/learning/held-scorer";
+import { type HeldScorer, readScorerInUse } from "@/lib/learning/held-scorer";
 import { CandidateInput } from "@/lib/learning/learning-schema";
 import { proposePromotion } from "@/lib/learning/propose-promotion";
 import { replayLog } from "@/lib/learning/replay";
@@ -78,6 +78,11 @@ test("a candidate that a second person approves is in use, with the next version
   expect(held.scorer.method).toBe("implicit");
   expect(await rowOf(before.id)).toMatchObject({ role: "retired", version: before.version });
 
+  await expectRankedBy(held);
+});
+
+/** Every waiting case stands where the scorer puts it. */
+async function expectRankedBy(held: HeldScorer): Promise<void> {
   const view = await rankingOf(world.db).read(life.later(), (ranking) => ({
     version: ranking.version,
     logits: waiting.map(({ caseId }) => ranking.logitOf(caseId) as number),
@@ -86,7 +91,7 @@ test("a candidate that a second person approves is in use, with the next version
   for (const [index, { vector }] of waiting.entries()) {
     expect(view.logits[index]).toBeCloseTo(held.scorer.score(vector).logit, 9);
   }
-});
+}
 
 test("the review line is taken anew by the scorer that came into use, however young the last one was", async () => {
   const cuts = await world.db.select().from(policyCuts).orderBy(asc(policyCuts.computedAt));
@@ -165,8 +170,8 @@ test("the scorer of any version can be derived across promotions", async () => {
   );
 });
 
-test("of two who approve at once, one does it", async () => {
-  const { id } = await add("Raced", "improper", { regularization: 0.1 });
+test("of two who approve at once, one does it, and the queue follows a scorer of many parts too", async () => {
+  const { id } = await add("Raced", "aggregate");
   await follow();
   const { approvalId } = await ask(id);
   await expect(ask(id)).rejects.toMatchObject({ code: "conflict" });
@@ -180,7 +185,9 @@ test("of two who approve at once, one does it", async () => {
   const [promotions] = await world.db.select({ count: count() }).from(trail).where(eq(trail.subjectId, id));
   // Added and promoted, once each.
   expect(promotions?.count).toBe(2);
-  expect((await readScorerInUse(world.db)).id).toBe(id);
+  const held = await readScorerInUse(world.db);
+  expect(held.id).toBe(id);
+  await expectRankedBy(held);
   await expect(ask(id)).rejects.toMatchObject({ code: "conflict" });
 });
 
