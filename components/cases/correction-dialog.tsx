@@ -1,15 +1,14 @@
 "use client";
 import { useMutation } from "@tanstack/react-query";
-import { type FormEvent, useState } from "react";
+import { useState } from "react";
 import type { CaseView, DecisionView } from "@/lib/cases/schema";
 import { type Typology, VERDICTS, type Verdict } from "@/lib/decisions/codes";
 import { type ApiProblem, api } from "../api";
 import { typologiesFor } from "../desk/marker";
 import { movedLine } from "../desk/moved-line";
-import { Button } from "../ui/button";
 import { ChoiceSet, Radio } from "../ui/choice";
-import { Dialog } from "../ui/dialog";
 import { Field, Select, TextArea } from "../ui/field";
+import { FormDialog } from "../ui/form-dialog";
 import { Notice } from "../ui/notice";
 import { TYPOLOGY_WORDS, VERDICT_WORDS } from "../words";
 
@@ -37,61 +36,52 @@ export function CorrectionDialog({ view, standing, onClose, onDone }: Correction
     },
     onSuccess: onClose,
   });
-  const submit = (event: FormEvent) => {
-    event.preventDefault();
-    if (!correct.isPending) correct.mutate();
-  };
   const { error } = correct;
   const unplaced = error && !error.errorAt("typology") && !error.errorAt("reason");
   return (
-    <Dialog
-      open
-      onOpenChange={onClose}
+    <FormDialog
       title={`Correct the verdict on case ${view.number}`}
       description={`${standing.by.name} found it ${VERDICT_WORDS[standing.verdict].toLowerCase()}. That stays on record; the scorer learns anew from the corrected log.`}
+      verb="Correct"
+      wayOut="Leave it"
+      busy={correct.isPending}
+      onSend={() => correct.mutate()}
+      onClose={onClose}
     >
-      <form onSubmit={submit} className="flex flex-col gap-4">
-        <ChoiceSet legend="Verdict">
-          {VERDICTS.map((one) => (
-            <Radio
-              key={one}
-              name="verdict"
-              label={VERDICT_WORDS[one]}
-              checked={verdict === one}
-              onChange={() => setVerdict(one)}
-            />
-          ))}
-        </ChoiceSet>
-        {verdict === "fraudulent" && (
-          <Field label="Typology" error={error?.errorAt("typology")}>
-            <Select
-              value={typology ?? ""}
-              onChange={(event) =>
-                setTypology(
-                  typologiesFor(view.transaction.channel).find((one) => one === event.target.value) ?? null,
-                )
-              }
-            >
-              <option value="">Choose one</option>
-              {typologiesFor(view.transaction.channel).map((one) => (
-                <option key={one} value={one}>
-                  {TYPOLOGY_WORDS[one]}
-                </option>
-              ))}
-            </Select>
-          </Field>
-        )}
-        <Field label="Reason" error={error?.errorAt("reason")} required>
-          <TextArea value={reason} onChange={(event) => setReason(event.target.value)} maxLength={4000} />
+      <ChoiceSet legend="Verdict">
+        {VERDICTS.map((one) => (
+          <Radio
+            key={one}
+            name="verdict"
+            label={VERDICT_WORDS[one]}
+            checked={verdict === one}
+            onChange={() => setVerdict(one)}
+          />
+        ))}
+      </ChoiceSet>
+      {verdict === "fraudulent" && (
+        <Field label="Typology" error={error?.errorAt("typology")}>
+          <Select
+            value={typology ?? ""}
+            onChange={(event) =>
+              setTypology(
+                typologiesFor(view.transaction.channel).find((one) => one === event.target.value) ?? null,
+              )
+            }
+          >
+            <option value="">Choose one</option>
+            {typologiesFor(view.transaction.channel).map((one) => (
+              <option key={one} value={one}>
+                {TYPOLOGY_WORDS[one]}
+              </option>
+            ))}
+          </Select>
         </Field>
-        {unplaced && <Notice kind="error">{error.message}</Notice>}
-        <div className="flex justify-end gap-2">
-          <Button onClick={onClose}>Leave it</Button>
-          <Button type="submit" look="action" busy={correct.isPending}>
-            Correct
-          </Button>
-        </div>
-      </form>
-    </Dialog>
+      )}
+      <Field label="Reason" error={error?.errorAt("reason")} required>
+        <TextArea value={reason} onChange={(event) => setReason(event.target.value)} maxLength={4000} />
+      </Field>
+      {unplaced && <Notice kind="error">{error.message}</Notice>}
+    </FormDialog>
   );
 }

@@ -1,14 +1,13 @@
 "use client";
 import { useMutation } from "@tanstack/react-query";
-import { type FormEvent, useId, useState } from "react";
+import { useState } from "react";
 import { PERSONAL_SCOPES } from "@/lib/auth/access";
 import { SCOPES, type Scope } from "@/lib/auth/codes";
 import type { AddKeyView } from "@/lib/keys/schema";
 import { type ApiProblem, api } from "../api";
-import { Button } from "../ui/button";
 import { Checkbox, ChoiceSet } from "../ui/choice";
-import { Dialog } from "../ui/dialog";
 import { Field, Input, Select } from "../ui/field";
+import { FormDialog } from "../ui/form-dialog";
 import { Notice } from "../ui/notice";
 
 export type ActingPerson = { id: string; name: string };
@@ -30,7 +29,6 @@ type AddKeyDialogProps = {
 
 export function AddKeyDialog({ people, onClose, onDone }: AddKeyDialogProps) {
   const [scopes, setScopes] = useState<Scope[]>(["transactions:write"]);
-  const formId = useId();
   const needsPerson = scopes.some((scope) => PERSONAL_SCOPES.includes(scope));
   const add = useMutation<AddKeyView | null, ApiProblem, FormData>({
     mutationFn: (form) =>
@@ -42,72 +40,54 @@ export function AddKeyDialog({ people, onClose, onDone }: AddKeyDialogProps) {
       }),
     onSuccess: onDone,
   });
-  const send = (event: FormEvent<HTMLFormElement>) => {
-    event.preventDefault();
-    add.mutate(new FormData(event.currentTarget));
-  };
   const toggle = (scope: Scope, on: boolean) =>
     setScopes(SCOPES.filter((each) => (each === scope ? on : scopes.includes(each))));
   const problem = add.error;
   return (
-    <Dialog
-      open
-      onOpenChange={onClose}
-      title="Add a key"
-      footer={
-        <>
-          <Button onClick={onClose}>Cancel</Button>
-          <Button type="submit" form={formId} look="action" busy={add.isPending}>
-            Add
-          </Button>
-        </>
-      }
-    >
-      <form id={formId} onSubmit={send} className="flex flex-col gap-4">
-        <Field label="Name" error={problem?.errorAt("name")} required>
-          <Input name="name" maxLength={80} autoComplete="off" />
-        </Field>
+    <FormDialog title="Add a key" verb="Add" busy={add.isPending} onSend={add.mutate} onClose={onClose}>
+      <Field label="Name" error={problem?.errorAt("name")} required>
+        <Input name="name" maxLength={80} autoComplete="off" />
+      </Field>
+      <Field
+        label="Source"
+        hint="Namespace of the identifiers that come in through it, such as core-banking"
+        error={problem?.errorAt("source")}
+        required
+      >
+        <Input name="source" maxLength={64} autoComplete="off" spellCheck={false} />
+      </Field>
+      <ChoiceSet legend="Scopes">
+        {SCOPES.map((scope) => (
+          <Checkbox
+            key={scope}
+            label={<code>{scope}</code>}
+            hint={WHAT_THEY_OPEN[scope]}
+            checked={scopes.includes(scope)}
+            onChange={(event) => toggle(scope, event.target.checked)}
+          />
+        ))}
+      </ChoiceSet>
+      {needsPerson && (
         <Field
-          label="Source"
-          hint="Namespace of the identifiers that come in through it, such as core-banking"
-          error={problem?.errorAt("source")}
+          label="Acts for"
+          hint="With this person's rights and no more; the trail shows both"
+          error={problem?.errorAt("actsForPersonId")}
           required
         >
-          <Input name="source" maxLength={64} autoComplete="off" spellCheck={false} />
-        </Field>
-        <ChoiceSet legend="Scopes">
-          {SCOPES.map((scope) => (
-            <Checkbox
-              key={scope}
-              label={<code>{scope}</code>}
-              hint={WHAT_THEY_OPEN[scope]}
-              checked={scopes.includes(scope)}
-              onChange={(event) => toggle(scope, event.target.checked)}
-            />
-          ))}
-        </ChoiceSet>
-        {needsPerson && (
-          <Field
-            label="Acts for"
-            hint="With this person's rights and no more; the trail shows both"
-            error={problem?.errorAt("actsForPersonId")}
-            required
-          >
-            <Select name="actsForPersonId" defaultValue="">
-              <option value="" disabled>
-                Choose a person
+          <Select name="actsForPersonId" defaultValue="">
+            <option value="" disabled>
+              Choose a person
+            </option>
+            {people.map(({ id, name }) => (
+              <option key={id} value={id}>
+                {name}
               </option>
-              {people.map(({ id, name }) => (
-                <option key={id} value={id}>
-                  {name}
-                </option>
-              ))}
-            </Select>
-          </Field>
-        )}
-        {problem && <KeyProblem problem={problem} />}
-      </form>
-    </Dialog>
+            ))}
+          </Select>
+        </Field>
+      )}
+      {problem && <KeyProblem problem={problem} />}
+    </FormDialog>
   );
 }
 

@@ -3,8 +3,7 @@ import { useMutation } from "@tanstack/react-query";
 import { useState } from "react";
 import type { PersonView } from "@/lib/people/schema";
 import { type ApiProblem, api } from "../api";
-import { Button } from "../ui/button";
-import { Dialog } from "../ui/dialog";
+import { FormDialog } from "../ui/form-dialog";
 import { Notice } from "../ui/notice";
 import { RoleChoices } from "./role-choices";
 
@@ -18,24 +17,16 @@ export function RolesDialog({ person, onClose, onDone }: RolesDialogProps) {
   });
   const problem = change.error;
   return (
-    <Dialog
-      open
-      onOpenChange={onClose}
+    <FormDialog
       title={`Roles of ${person.name}`}
       description="The change acts on the person's next request; they have to sign in again."
-      footer={
-        <>
-          <Button onClick={onClose}>Cancel</Button>
-          <Button look="action" busy={change.isPending} onClick={() => change.mutate()}>
-            Set roles
-          </Button>
-        </>
-      }
+      verb="Set roles"
+      busy={change.isPending}
+      onSend={() => change.mutate()}
+      onClose={onClose}
     >
-      <div className="flex flex-col gap-4">
-        <RoleChoices roles={roles} onChange={setRoles} error={problem?.errorAt("roles")} />
-        {problem && !problem.errorAt("roles") && <Notice kind="error">{problem.message}</Notice>}
-      </div>
-    </Dialog>
+      <RoleChoices roles={roles} onChange={setRoles} error={problem?.errorAt("roles")} />
+      {problem && !problem.errorAt("roles") && <Notice kind="error">{problem.message}</Notice>}
+    </FormDialog>
   );
 }
