@@ -1,12 +1,11 @@
 "use client";
 import { useMutation } from "@tanstack/react-query";
-import { type FormEvent, useId, useState } from "react";
+import { useState } from "react";
 import type { CandidateView } from "@/lib/learning/learning-schema";
 import { type ApiProblem, api } from "../api";
-import { Button } from "../ui/button";
 import { ChoiceSet, Radio } from "../ui/choice";
-import { Dialog } from "../ui/dialog";
 import { Field, Input } from "../ui/field";
+import { FormDialog } from "../ui/form-dialog";
 import { Notice } from "../ui/notice";
 import {
   CANDIDATE_METHODS,
@@ -26,14 +25,12 @@ export function CandidateDialog({ onClose, onDone }: CandidateDialogProps) {
   const [method, setMethod] = useState<CandidateMethod>("improper");
   const [draft, setDraft] = useState<OptionDraft>({});
   const [asked, setAsked] = useState(false);
-  const formId = useId();
   const { options, unreadable } = readOptions(method, draft);
   const add = useMutation<CandidateView | null, ApiProblem>({
     mutationFn: () => api("POST /api/scorers", { name, method, options }),
     onSuccess: () => onDone(name.trim()),
   });
-  const send = (event: FormEvent) => {
-    event.preventDefault();
+  const send = () => {
     setAsked(true);
     if (unreadable.length === 0) add.mutate();
   };
@@ -41,72 +38,64 @@ export function CandidateDialog({ onClose, onDone }: CandidateDialogProps) {
   const errorAt = (key: OptionKey) =>
     asked && unreadable.includes(key) ? "needs a number" : problem?.errorAt(`options.${key}`);
   return (
-    <Dialog
-      open
+    <FormDialog
       wide
-      onOpenChange={onClose}
       title="Run another beside it"
       description="It predicts every label before it learns from it, from the first label on, and gives no scores. Payments and cases are not touched."
-      footer={
-        <>
-          <Button onClick={onClose}>Cancel</Button>
-          <Button type="submit" form={formId} look="action" busy={add.isPending}>
-            Run it
-          </Button>
-        </>
-      }
+      verb="Run it"
+      busy={add.isPending}
+      onSend={send}
+      onClose={onClose}
     >
-      <form id={formId} onSubmit={send} noValidate className="flex flex-col gap-5">
-        <Field label="Name" hint="How it is called in every table." error={problem?.errorAt("name")} required>
-          <Input
-            value={name}
-            maxLength={80}
-            autoComplete="off"
-            className="max-w-80"
-            onChange={(event) => setName(event.target.value)}
+      <Field label="Name" hint="How it is called in every table." error={problem?.errorAt("name")} required>
+        <Input
+          value={name}
+          maxLength={80}
+          autoComplete="off"
+          className="max-w-80"
+          onChange={(event) => setName(event.target.value)}
+        />
+      </Field>
+      <ChoiceSet legend="Method">
+        {CANDIDATE_METHODS.map((each) => (
+          <Radio
+            key={each}
+            name="method"
+            label={METHOD_WORDS[each].name}
+            hint={METHOD_WORDS[each].does}
+            checked={method === each}
+            onChange={() => setMethod(each)}
           />
-        </Field>
-        <ChoiceSet legend="Method">
-          {CANDIDATE_METHODS.map((each) => (
-            <Radio
-              key={each}
-              name="method"
-              label={METHOD_WORDS[each].name}
-              hint={METHOD_WORDS[each].does}
-              checked={method === each}
-              onChange={() => setMethod(each)}
-            />
+        ))}
+      </ChoiceSet>
+      <fieldset>
+        <legend className="text-small font-strong">Settings</legend>
+        <p className="mb-3 text-small text-soft">A field left empty takes the method's usual value.</p>
+        <div className="grid items-end gap-x-6 gap-y-4 sm:grid-cols-2">
+          {optionFields(method).map(({ key, initial }) => (
+            <Field
+              key={key}
+              label={OPTION_WORDS[key].name}
+              hint={
+                <>
+                  {OPTION_WORDS[key].does} {OPTION_RANGES[key]}; usually {initial}.
+                </>
+              }
+              error={errorAt(key)}
+            >
+              <Input
+                inputMode="decimal"
+                autoComplete="off"
+                className="max-w-32 text-right"
+                value={draft[key] ?? ""}
+                onChange={(event) => setDraft({ ...draft, [key]: event.target.value })}
+              />
+            </Field>
           ))}
-        </ChoiceSet>
-        <fieldset>
-          <legend className="text-small font-strong">Settings</legend>
-          <p className="mb-3 text-small text-soft">A field left empty takes the method's usual value.</p>
-          <div className="grid items-end gap-x-6 gap-y-4 sm:grid-cols-2">
-            {optionFields(method).map(({ key, initial }) => (
-              <Field
-                key={key}
-                label={OPTION_WORDS[key].name}
-                hint={
-                  <>
-                    {OPTION_WORDS[key].does} {OPTION_RANGES[key]}; usually {initial}.
-                  </>
-                }
-                error={errorAt(key)}
-              >
-                <Input
-                  inputMode="decimal"
-                  autoComplete="off"
-                  className="max-w-32 text-right"
-                  value={draft[key] ?? ""}
-                  onChange={(event) => setDraft({ ...draft, [key]: event.target.value })}
-                />
-              </Field>
-            ))}
-          </div>
-        </fieldset>
-        {problem && <Refusal problem={problem} />}
-      </form>
-    </Dialog>
+        </div>
+      </fieldset>
+      {problem && <Refusal problem={problem} />}
+    </FormDialog>
   );
 }
 

@@ -16,7 +16,15 @@ import { InfluenceSection } from "./influence-section";
 import { LearningFigures } from "./learning-figures";
 import { PassedSection } from "./passed-section";
 import { ScorersSection } from "./scorers-section";
-import { useApprovals, useComparison, useDrift, useInfluence, usePassed, useRenewal } from "./use-learning";
+import {
+  useApprovals,
+  useComparison,
+  useDrift,
+  useInfluence,
+  usePassed,
+  useRenewal,
+  useSignals,
+} from "./use-learning";
 import { windowOf } from "./window";
 
 type LearningScreenProps = {
@@ -39,10 +47,12 @@ export function LearningScreen(props: LearningScreenProps) {
   const renew = useRenewal();
   const drift = useDrift();
   const influence = useInfluence();
+  const signals = useSignals(approvals.items.some(({ subject }) => "signalId" in subject));
   const view = comparison.data ?? first.view;
   const names = new Map([
     ...view.scorers.map(({ id, name }) => [id, name] as const),
     ...(influence.data?.people.map(({ person }) => [person.id, person.name] as const) ?? []),
+    ...(signals.data?.own.map(({ signalId, name }) => [signalId, name] as const) ?? []),
   ]);
   return (
     <Page>

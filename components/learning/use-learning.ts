@@ -6,6 +6,7 @@ import type { DriftView } from "@/lib/learning/drift-schema";
 import type { InfluenceView } from "@/lib/learning/influence-schema";
 import type { LearningInput, LearningView } from "@/lib/learning/learning-schema";
 import type { PassedView } from "@/lib/learning/passed-schema";
+import type { SignalsView } from "@/lib/signals/own-schema";
 import { type ApiProblem, api } from "../api";
 
 /** Everything on the screen stands under it, so that one act can renew all of it. */
@@ -73,5 +74,14 @@ export function useInfluence() {
     queryKey: [LEARNING, "influence"],
     queryFn: ({ signal }) => answer(api("GET /api/learning/influence", {}, { signal })),
     refetchInterval: ({ state }) => (state.data?.state === "pending" ? RECKONING_MS : REFRESH_MS),
+  });
+}
+
+/** For what own signals are called in proposals about them; not asked for while there are none. */
+export function useSignals(enabled: boolean) {
+  return useQuery<SignalsView, ApiProblem>({
+    queryKey: [LEARNING, "signals"],
+    queryFn: ({ signal }) => answer(api("GET /api/signals", {}, { signal })),
+    enabled,
   });
 }

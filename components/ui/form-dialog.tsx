@@ -12,6 +12,7 @@ type FormDialogProps = {
   wayOut?: string;
   /** It has been sent, and the answer is not here yet. */
   busy: boolean;
+  wide?: boolean;
   onSend: (form: FormData) => void;
   onClose: () => void;
   children: ReactNode;
@@ -19,7 +20,17 @@ type FormDialogProps = {
 
 /** A dialog that asks for something and sends it: Enter sends too, and nothing is sent twice. */
 export function FormDialog(props: FormDialogProps) {
-  const { title, description, verb, wayOut = "Cancel", busy, onSend, onClose, children } = props;
+  const {
+    title,
+    description,
+    verb,
+    wayOut = "Cancel",
+    busy,
+    wide = false,
+    onSend,
+    onClose,
+    children,
+  } = props;
   const formId = useId();
   const send = (event: FormEvent<HTMLFormElement>) => {
     event.preventDefault();
@@ -31,6 +42,7 @@ export function FormDialog(props: FormDialogProps) {
       onOpenChange={onClose}
       title={title}
       description={description}
+      wide={wide}
       footer={
         <>
           <Button onClick={onClose}>{wayOut}</Button>
