@@ -10,6 +10,7 @@ export const PAGES = {
   "/floor": { may: "floor.read", name: "Floor" },
   "/policy": { may: "policy.read", name: "Policy" },
   "/learning": { may: "scorer.read", name: "Learning" },
+  "/signals": { may: "scorer.read", name: "Signals" },
   "/losses": { may: "losses.read", name: "Losses" },
   "/trail": { may: "trail.read", name: "Trail" },
   "/trail/decisions/[id]": { may: "trail.own", name: "Decision" },

@@ -7,6 +7,7 @@ import { freeStrandedCases } from "./free-stranded";
 import { lapseUnreachedCases } from "./lapse";
 import { mailAssigned } from "./mail-assigned";
 import { refreshLinkedCases } from "./refresh";
+import { rescoreWaitingCases } from "./rescore-waiting";
 
 const SECOND_MS = 1_000;
 
@@ -18,6 +19,8 @@ export const caseJobs: readonly Job[] = [
   { name: "cases.free-stranded", everyMs: 60 * SECOND_MS, slot: null, run: freeStrandedCases },
   // People expect linked cases to rise at once.
   { name: "cases.refresh-linked", everyMs: 0.3 * SECOND_MS, slot: null, run: refreshLinkedCases },
+  // Each pass looks for cases of an earlier set of signals, so that two servers at it do no harm.
+  { name: "cases.rescore-waiting", everyMs: 2 * SECOND_MS, slot: null, run: rescoreWaitingCases },
   {
     // Seldom enough that what a supervisor hands out in one go comes in one message.
     name: "cases.assigned-mail",
