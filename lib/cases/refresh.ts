@@ -1,7 +1,7 @@
 import "server-only";
 import { setTimeout as sleep } from "node:timers/promises";
 import { and, asc, desc, eq, inArray, max, type SQL, sql } from "drizzle-orm";
-import type { Tx } from "@/db/client";
+import type { Executor, Tx } from "@/db/client";
 import { vectorToBytes } from "@/db/columns";
 import { cases } from "@/db/schema/cases";
 import { signalRefreshes } from "@/db/schema/scorers";
@@ -21,43 +21,58 @@ import { casesRescored } from "./notify";
 
 /** Labels whose linked cases are refreshed in one go. */
 const LABELS_IN_BATCH = 200;
-/** Decisions come first: between two batches this rests so many times as long as the last one took. */
-const REST_FACTOR = 6;
-/** A counterparty may have taken part in any number of payments; the newest are looked at. */
-const NEWEST_OF_ENTITY = 2_000;
-/** What one transaction may take on. Those beyond keep the signals they have. */
+/** Cases refreshed in one transaction: so long a decision on one of them may have to wait. */
+const CASES_IN_TURN = 40;
+/** Decisions come first: between two turns this rests so many times as long as the last one took. */
+const REST_FACTOR = 8;
+/** What one batch may take on. Those beyond keep the signals they have. */
 const MOST_REFRESHED = 500;
-/** The closest ties first: many strangers may pay the same counterparty. */
+/**
+ * The closest ties first: many strangers may pay the same counterparty. An entity may have taken part in any number of
+ * payments; the newest are looked at.
+ */
 const TIES = [
-  { column: "accountId", closeness: 0 },
-  { column: "deviceId", closeness: 0 },
-  { column: "cardRef", closeness: 0 },
-  { column: "counterpartyId", closeness: 1 },
+  { column: "accountId", closeness: 0, newest: 2_000 },
+  { column: "deviceId", closeness: 0, newest: 2_000 },
+  { column: "cardRef", closeness: 0, newest: 2_000 },
+  { column: "counterpartyId", closeness: 1, newest: MOST_REFRESHED },
 ] as const;
 type Tie = (typeof TIES)[number];
 
-type Linked = { caseId: string; transactionId: string; vector: Buffer };
+type Wish = { id: number; transactionId: string };
+type Linked = { caseId: string; transactionId: string };
 
 /**
  * Gives waiting cases that share an account, card, device or counterparty with a newly labelled payment their history
  * signals anew, as a further score. What was scored before stays; the case's revision does not rise.
- * The wish to refresh is written with the label and goes with the new scores, so that a crash in between loses nothing.
+ * The wish to refresh is written with the label and goes with the last new scores, so that a crash loses nothing.
  */
 export async function refreshLinkedCases(ctx: Context, signal: AbortSignal): Promise<void> {
   demand(ctx, "desk.work");
   while (!signal.aborted) {
-    const [first] = await ctx.db
-      .select({ id: signalRefreshes.id })
+    const wishes: Wish[] = await ctx.db
+      .select({ id: signalRefreshes.id, transactionId: signalRefreshes.transactionId })
       .from(signalRefreshes)
       .orderBy(asc(signalRefreshes.id))
-      .limit(1);
-    if (!first) return;
-    const startedMs = performance.now();
-    const refreshed = await inTransaction(ctx.db, (tx) => refreshBatch(ctx, tx, first.id));
-    if (refreshed === null) return;
-    casesRescored(refreshed);
-    if (refreshed.length > 0) await rest(REST_FACTOR * (performance.now() - startedMs), signal);
+      .limit(LABELS_IN_BATCH);
+    if (wishes.length === 0 || !(await fulfil(ctx, wishes, signal))) return;
   }
+}
+
+/** @returns false when another server is at it, or this one is to stop */
+async function fulfil(ctx: Context, wishes: readonly Wish[], signal: AbortSignal): Promise<boolean> {
+  const linked = await findLinked(ctx.db, [...new Set(wishes.map(({ transactionId }) => transactionId))]);
+  for (let from = 0; from === 0 || from < linked.length; from += CASES_IN_TURN) {
+    if (signal.aborted) return false;
+    const startedMs = performance.now();
+    const turn = linked.slice(from, from + CASES_IN_TURN);
+    const isLast = from + CASES_IN_TURN >= linked.length;
+    const refreshed = await inTransaction(ctx.db, (tx) => refreshTurn(ctx, tx, wishes, turn, isLast));
+    if (refreshed === null) return false;
+    casesRescored(refreshed);
+    if (turn.length > 0) await rest(REST_FACTOR * (performance.now() - startedMs), signal);
+  }
+  return true;
 }
 
 /** Ends early when the server stops. */
@@ -66,43 +81,65 @@ async function rest(ms: number, signal: AbortSignal): Promise<void> {
 }
 
 /** @returns the refreshed cases, or null while another server is at it: one at a time, or older signals might win */
-async function refreshBatch(ctx: Context, tx: Tx, firstId: number): Promise<string[] | null> {
-  const wishes = await tx
-    .select()
+async function refreshTurn(
+  ctx: Context,
+  tx: Tx,
+  wishes: readonly Wish[],
+  turn: readonly Linked[],
+  isLast: boolean,
+): Promise<string[] | null> {
+  const theirs = inArray(
+    signalRefreshes.id,
+    wishes.map(({ id }) => id),
+  );
+  const locked = await tx
+    .select({ id: signalRefreshes.id })
     .from(signalRefreshes)
-    .orderBy(asc(signalRefreshes.id))
-    .limit(LABELS_IN_BATCH)
+    .where(theirs)
     .for("update", { skipLocked: true });
-  if (wishes[0]?.id !== firstId) return null;
-  const labelled = [...new Set(wishes.map(({ transactionId }) => transactionId))];
-  const linked = await findLinked(tx, labelled);
+  if (locked.length < wishes.length) return null;
   const held = await readScorerInUse(tx);
   const vectors = await recomputeVectors(
     ctx.db,
-    linked.map(({ transactionId }) => transactionId),
+    turn.map(({ transactionId }) => transactionId),
     held.signals,
   );
-  const changed = linked.filter(({ transactionId, vector }) => {
+  const present = await presentVectors(tx, turn);
+  const changed = turn.filter(({ caseId, transactionId }) => {
     const fresh = vectors.get(transactionId);
-    return fresh !== undefined && !vectorToBytes(fresh.vector).equals(vector);
+    const before = present.get(caseId);
+    return fresh !== undefined && before !== undefined && !vectorToBytes(fresh.vector).equals(before);
   });
   await writeScores(ctx, tx, held, changed, vectors);
-  await tx.delete(signalRefreshes).where(
-    inArray(
-      signalRefreshes.id,
-      wishes.map(({ id }) => id),
-    ),
-  );
+  if (isLast) await tx.delete(signalRefreshes).where(theirs);
   return changed.map(({ caseId }) => caseId);
+}
+
+/** Vectors of those that still wait. */
+async function presentVectors(tx: Tx, turn: readonly Linked[]): Promise<Map<string, Buffer>> {
+  if (turn.length === 0) return new Map();
+  const rows = await tx
+    .select({ caseId: cases.id, vector: scores.vector })
+    .from(cases)
+    .innerJoin(scores, eq(scores.id, cases.scoreId))
+    .where(
+      and(
+        inArray(
+          cases.id,
+          turn.map(({ caseId }) => caseId),
+        ),
+        inArray(cases.state, [...UNDECIDED_STATES]),
+      ),
+    );
+  return new Map(rows.map(({ caseId, vector }) => [caseId, vector]));
 }
 
 /**
  * Waiting cases that share an entity with one of the payments: of each entity its newest payments, those of an account,
  * device or card before those of a counterparty, and the newest first.
  */
-async function findLinked(tx: Tx, labelled: readonly string[]): Promise<Linked[]> {
-  if (labelled.length === 0) return [];
-  const payments = await tx
+async function findLinked(db: Executor, labelled: readonly string[]): Promise<Linked[]> {
+  const payments = await db
     .select({
       accountId: transactions.accountId,
       cardRef: transactions.cardRef,
@@ -120,12 +157,11 @@ async function findLinked(tx: Tx, labelled: readonly string[]): Promise<Linked[]
   }
   const newest = sql.join([...keys.values()], sql` union all `);
   const linked = sql`(select id, min(closeness) as closeness from (${newest}) tied group by id) linked`;
-  const rows = await tx
-    .select({ caseId: cases.id, transactionId: cases.transactionId, vector: scores.vector })
+  const rows = await db
+    .select({ caseId: cases.id, transactionId: cases.transactionId })
     .from(cases)
     .innerJoin(linked, sql`linked.id = ${cases.transactionId}`)
     .innerJoin(transactions, eq(transactions.id, cases.transactionId))
-    .innerJoin(scores, eq(scores.id, cases.scoreId))
     .where(inArray(cases.state, [...UNDECIDED_STATES]))
     .orderBy(sql`linked.closeness`, desc(transactions.occurredAt), desc(cases.number))
     .limit(MOST_REFRESHED + 1);
@@ -138,10 +174,10 @@ async function findLinked(tx: Tx, labelled: readonly string[]): Promise<Linked[]
   return rows.slice(0, MOST_REFRESHED);
 }
 
-function newestOf({ column, closeness }: Tie, key: string): SQL {
+function newestOf({ column, closeness, newest }: Tie, key: string): SQL {
   return sql`(select id, ${sql.raw(String(closeness))} as closeness from ${transactions}
     where ${transactions[column]} = ${key}
-    order by ${transactions.occurredAt} desc limit ${sql.raw(String(NEWEST_OF_ENTITY))})`;
+    order by ${transactions.occurredAt} desc limit ${sql.raw(String(newest))})`;
 }
 
 /** Writes fresh scores of waiting cases; one that was decided meanwhile keeps the score it has. */
