@@ -53,6 +53,7 @@ export async function decideCase(ctx: Context, input: DecideInput): Promise<Deci
       for (const target of targets) {
         settled.push(await settleCase(tx, held, act, target, inForce.get(target.transaction.id)));
       }
+      lifted ||= settled.some(({ replacedPlace }) => replacedPlace !== null);
       await saveScorer(tx, held, now);
       await appendTrail(
         ctx,
@@ -97,6 +98,7 @@ function trailEntry(target: Target, settled: Settled, act: { actId: string; poli
       logit: settled.evidence.logit,
       policyVersion: act.policy.version,
       labelSeq: settled.learned?.seq ?? null,
+      replacedPlace: settled.replacedPlace,
       loss: settled.learned?.loss ?? null,
     },
   };
