@@ -7,7 +7,7 @@ import type { Label } from "./types";
 import { checkVector, dot } from "./vector";
 
 /** Multiplications between two pauses: a few milliseconds. */
-const WORK_BETWEEN_PAUSES = 2e6;
+const WORK_BETWEEN_PAUSES = 1e6;
 
 /** Predicted decrease, as a part of the loss, below which full Newton steps are taken unchecked. */
 const CLOSE = 1e-9;
