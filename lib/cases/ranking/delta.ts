@@ -1,7 +1,7 @@
 import "server-only";
 import type { Database } from "@/db/client";
 import { type CaseState, UNDECIDED_STATES } from "../codes";
-import { type ChangedCase, readChangedAmong, readFacts, readPlaced } from "./read-waiting";
+import { type ChangedCase, readFacts, readPlaced } from "./read-waiting";
 import type { CaseFacts, WaitingCases } from "./waiting-cases";
 
 /** How a case differs from what the ranking knows; `after` is null once it waits no longer. */
@@ -23,18 +23,18 @@ export type Delta = {
   left: string[];
 };
 
-/** Compares the named cases, and those found to have changed, with what is known. */
+/**
+ * Compares cases that may have changed with what is known.
+ * @param named rows of cases that somebody waits for; @param found others
+ */
 export async function readDelta(
   db: Database,
   known: WaitingCases,
-  caseIds: readonly string[],
+  named: readonly ChangedCase[],
   found: readonly ChangedCase[],
 ): Promise<Delta> {
-  const named = new Set(caseIds);
-  const rows = new Map(found.map((row) => [row.id, row]));
-  for (let from = 0; from < caseIds.length; from += PAGE) {
-    for (const row of await readChangedAmong(db, caseIds.slice(from, from + PAGE))) rows.set(row.id, row);
-  }
+  const isNamed = new Set(named.map(({ id }) => id));
+  const rows = new Map([...found, ...named].map((row) => [row.id, row]));
   const gone: CaseDelta[] = [];
   const fresh: string[] = [];
   const foundFresh: string[] = [];
@@ -43,7 +43,7 @@ export async function readDelta(
     const before = known.find(row.id) ?? null;
     if (!waits(row.state)) {
       if (before) gone.push({ caseId: row.id, state: row.state, before, after: null });
-    } else if (before?.scoreId !== row.scoreId) (named.has(row.id) ? fresh : foundFresh).push(row.id);
+    } else if (before?.scoreId !== row.scoreId) (isNamed.has(row.id) ? fresh : foundFresh).push(row.id);
     else if (!isSame(before, row)) touched.push(row.id);
   }
   const taken = [...fresh, ...foundFresh.slice(0, MOST_FOUND_FRESH)];

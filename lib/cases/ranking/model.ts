@@ -8,15 +8,15 @@ import { padVector } from "../../signals/signal-set";
 import { advance, recompute } from "./advance";
 import { ChangeWatch } from "./change-watch";
 import { type CaseDelta, readDelta } from "./delta";
+import { actsOf, leadingTo, MOST_STEPS } from "./label-acts";
 import { KeptMovements, type Movement } from "./movement";
 import { PolicyWatch } from "./policy-watch";
 import {
   countWaiting,
   type LoggedLabel,
   readChangedAmong,
-  readLabels,
   readPlaced,
-  readScorerHead,
+  readScorerNews,
   readWaitingIds,
 } from "./read-waiting";
 import { Breath, Turns } from "./turns";
@@ -29,8 +29,6 @@ const PAGE = 200;
 const ROOM = 1.25;
 /** Of those that wait behind, so many are looked at in one run. */
 const MOST_LATER = 64;
-/** From about as many labels as a vector has coordinates on, computing anew is cheaper than moving label by label. */
-const MOST_STEPS = 64;
 
 export type RankingEvent = { version: number; logSeq: number; changes: readonly CaseDelta[] };
 
@@ -123,17 +121,23 @@ export class RankingModel {
     this.hinted.clear();
     this.pollWanted = false;
     try {
-      await this.refreshPolicy(now);
+      // A look is due often enough; whoever waits for a decision's effect need not wait for the policy as well.
+      if (poll || !this.loaded) await this.refreshPolicy(now);
       if (!this.loaded) return await this.load(now);
-      const labels = await this.labelsUpTo(await readScorerHead(this.db));
-      const fresh = labels ? null : await readScorerInUse(this.db);
-      if (fresh && !isOfSameShape(fresh, this.loaded.held)) return await this.load(now);
-      // A decided case leaves before the others move, whoever decided it.
-      const named = [...hinted, ...(labels ?? []).flatMap(({ caseId }) => caseId ?? [])];
-      const { cases, watch } = this.loaded;
-      const look = poll ? await watch.look(this.db, now) : null;
+      const { cases, watch, held } = this.loaded;
       const turn = this.later.slice(0, MOST_LATER);
-      const behind = await readChangedAmong(this.db, turn);
+      const [news, named, behind] = await Promise.all([
+        readScorerNews(this.db, held.logSeq, MOST_STEPS + 1),
+        readChangedAmong(this.db, hinted),
+        readChangedAmong(this.db, turn),
+      ]);
+      const labels = leadingTo(news, held);
+      const fresh = labels ? null : await readScorerInUse(this.db);
+      if (fresh && !isOfSameShape(fresh, held)) return await this.load(now);
+      // A decided case leaves before the others move, whoever decided it.
+      const decided = (labels ?? []).flatMap(({ caseId }) => caseId ?? []);
+      named.push(...(await readChangedAmong(this.db, without(decided, hinted))));
+      const look = poll ? await watch.look(this.db, now) : null;
       const delta = await readDelta(this.db, cases, named, [...behind, ...(look?.rows ?? [])]);
       await this.state.take(() => this.apply(delta.changes, labels ?? [], fresh));
       if (look) watch.settle(look);
@@ -179,22 +183,6 @@ export class RankingModel {
     void this.catchUp([], true).catch((error) =>
       log.error({ err: error }, "The ranking could not be brought forward"),
     );
-  }
-
-  /** The labels that lead on to where the scorer stands; null when its state has to be taken from the database. */
-  private async labelsUpTo(head: {
-    id: string;
-    version: number;
-    logSeq: number;
-  }): Promise<LoggedLabel[] | null> {
-    const { held } = this.present();
-    if (head.id !== held.id) return null;
-    if (head.logSeq === held.logSeq) return head.version === held.version ? [] : null;
-    const labels = await readLabels(this.db, held.logSeq, head.logSeq, MOST_STEPS + 1);
-    if (labels.length > MOST_STEPS || labels.some(({ place }) => place !== null)) return null;
-    const leadsOn =
-      labels.at(-1)?.scorerVersion === head.version && held.version + labels.length === head.version;
-    return leadsOn ? labels : null;
   }
 
   private async apply(
@@ -277,22 +265,10 @@ export class RankingModel {
   }
 }
 
+const without = (ids: readonly string[], others: readonly string[]) =>
+  ids.filter((id) => !others.includes(id));
+
 const isOfSameShape = (one: HeldScorer, other: HeldScorer) =>
   one.signalSetVersion === other.signalSetVersion &&
   one.scorer.dimension === other.scorer.dimension &&
   one.scorer.reading().parts.length === other.scorer.reading().parts.length;
-
-/** Labels that one act brought belong together: what moved is counted once for all of them. */
-function actsOf(labels: readonly LoggedLabel[]): LoggedLabel[][] {
-  const acts: LoggedLabel[][] = [];
-  for (const label of labels) {
-    const before = acts.at(-1)?.at(-1);
-    const isSameAct = before?.personId === label.personId && before.at.getTime() === label.at.getTime();
-    if (isSameAct) acts.at(-1)?.push(label);
-    else acts.push([label]);
-  }
-  return acts;
-}
-
-/** A case may wait with the vector of an earlier set of signals until it is scored anew. */
-const fitting = (vector: Float64Array, { signals }: HeldScorer) => padVector(signals, vector);

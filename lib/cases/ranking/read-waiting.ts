@@ -9,18 +9,7 @@ import { type CaseState, UNDECIDED_STATES } from "../codes";
 import type { NumberGap } from "./number-gaps";
 import type { CaseFacts } from "./waiting-cases";
 
-export type ScorerHead = { id: string; version: number; logSeq: number };
-
-/** Where the scorer in use stands, without its state. @throws Error on an installation without one */
-export async function readScorerHead(db: Executor): Promise<ScorerHead> {
-  const [head] = await db
-    .select({ id: scorers.id, version: scorers.version, logSeq: scorers.logSeq })
-    .from(scorers)
-    .where(eq(scorers.inUse, 1))
-    .limit(1);
-  if (!head) throw new Error("No scorer is in use; the installation is not set up");
-  return head;
-}
+const PAGE = 500;
 
 export type LoggedLabel = {
   seq: number;
@@ -34,29 +23,37 @@ export type LoggedLabel = {
   at: Date;
 };
 
-/** Rows of the label log behind `after`, up to and with `upTo`. */
-export async function readLabels(
-  db: Executor,
-  after: number,
-  upTo: number,
-  limit: number,
-): Promise<LoggedLabel[]> {
-  return db
+/** Where the scorer in use stands, and the rows of its label log behind a place. */
+export type ScorerNews = { id: string; version: number; logSeq: number; labels: LoggedLabel[] };
+
+/**
+ * In one statement, so that the labels lead just up to where the scorer stands.
+ * @throws Error on an installation without a scorer
+ */
+export async function readScorerNews(db: Executor, after: number, limit: number): Promise<ScorerNews> {
+  const rows = await db
     .select({
-      seq: labelLog.seq,
-      place: labelLog.place,
-      label: labelLog.label,
-      weight: labelLog.weight,
-      vector: labelLog.vector,
-      scorerVersion: labelLog.scorerVersion,
-      caseId: labelLog.caseId,
-      personId: labelLog.personId,
-      at: labelLog.at,
+      head: { id: scorers.id, version: scorers.version, logSeq: scorers.logSeq },
+      label: {
+        seq: labelLog.seq,
+        place: labelLog.place,
+        label: labelLog.label,
+        weight: labelLog.weight,
+        vector: labelLog.vector,
+        scorerVersion: labelLog.scorerVersion,
+        caseId: labelLog.caseId,
+        personId: labelLog.personId,
+        at: labelLog.at,
+      },
     })
-    .from(labelLog)
-    .where(and(gt(labelLog.seq, after), lte(labelLog.seq, upTo)))
+    .from(scorers)
+    .leftJoin(labelLog, and(gt(labelLog.seq, after), lte(labelLog.seq, scorers.logSeq)))
+    .where(eq(scorers.inUse, 1))
     .orderBy(asc(labelLog.seq))
     .limit(limit);
+  const [first] = rows;
+  if (!first) throw new Error("No scorer is in use; the installation is not set up");
+  return { ...first.head, labels: rows.flatMap(({ label }) => label ?? []) };
 }
 
 /** A row that has changed, and enough of it to tell whether the ranking knows already. */
@@ -130,12 +127,12 @@ export async function readNewestNumbers(db: Executor, limit: number): Promise<nu
 }
 
 export async function readChangedAmong(db: Executor, ids: readonly string[]): Promise<ChangedCase[]> {
-  return ids.length === 0
-    ? []
-    : db
-        .select(changed)
-        .from(cases)
-        .where(inArray(cases.id, [...ids]));
+  const rows: ChangedCase[] = [];
+  for (let from = 0; from < ids.length; from += PAGE) {
+    const some = inArray(cases.id, ids.slice(from, from + PAGE));
+    rows.push(...(await db.select(changed).from(cases).where(some)));
+  }
+  return rows;
 }
 
 const facts = {
