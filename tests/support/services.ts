@@ -16,13 +16,20 @@ declare module "vitest" {
 export default async function startServices(project: TestProject) {
   const { folder, remove } = throwAwayFolder("test");
   const [mariadb, mail] = await Promise.all([startMariadb(folder, { fast: true }), startMailCatcher()]);
-  const schemaStatements = await describeTemplate(mariadb.ownerUrl);
-  project.provide("mariadb", { url: mariadb.url, ownerUrl: mariadb.ownerUrl, schemaStatements });
-  project.provide("smtpUrl", mail.smtpUrl);
-  project.provide("mailUrl", mail.url);
-  return async () => {
+  const stop = async () => {
     await mail.stop();
     await mariadb.service.stop();
     remove();
   };
+  try {
+    const schemaStatements = await describeTemplate(mariadb.ownerUrl);
+    project.provide("mariadb", { url: mariadb.url, ownerUrl: mariadb.ownerUrl, schemaStatements });
+  } catch (error) {
+    // A migration that fails must not leave a database behind that keeps the run from ending.
+    await stop();
+    throw error;
+  }
+  project.provide("smtpUrl", mail.smtpUrl);
+  project.provide("mailUrl", mail.url);
+  return stop;
 }
