@@ -77,7 +77,7 @@ export function heights(values: readonly number[]): { low: number; high: number;
   const most = Math.max(0, ...values);
   const step = roundStep((most - least) / 4 || 0.25);
   const from = Math.floor(least / step + 1e-9);
-  const to = Math.ceil(most / step - 1e-9);
+  const to = Math.max(from + 1, Math.ceil(most / step - 1e-9));
   const ticks = Array.from({ length: to - from + 1 }, (_, index) =>
     Number(((from + index) * step).toPrecision(12)),
   );
