@@ -25,6 +25,3 @@ export function actsOf(labels: readonly LoggedLabel[]): LoggedLabel[][] {
   }
   return acts;
 }
-
-/** A case may wait with the vector of an earlier set of signals until it is scored anew. */
-const fitting = (vector: Float64Array, { signals }: HeldScorer) => padVector(signals, vector);

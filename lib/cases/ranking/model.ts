@@ -272,3 +272,6 @@ const isOfSameShape = (one: HeldScorer, other: HeldScorer) =>
   one.signalSetVersion === other.signalSetVersion &&
   one.scorer.dimension === other.scorer.dimension &&
   one.scorer.reading().parts.length === other.scorer.reading().parts.length;
+
+/** A case may wait with the vector of an earlier set of signals until it is scored anew. */
+const fitting = (vector: Float64Array, { signals }: HeldScorer) => padVector(signals, vector);
