@@ -1,5 +1,5 @@
 import "server-only";
-import { and, eq, isNull } from "drizzle-orm";
+import { eq } from "drizzle-orm";
 import { NextRequest } from "next/server";
 import { getToken } from "next-auth/jwt";
 import type { Database } from "@/db/client";
@@ -8,7 +8,7 @@ import type { Actor, PersonActor } from "../context";
 import { environment } from "../env";
 import { unauthenticated } from "../errors";
 import { hashOfKey } from "./key-hash";
-import { findActivePerson, findPersonForSession } from "./read";
+import { findKey, findPersonForSession } from "./read";
 import { isOverLongest, SessionClaims, sessionCookie } from "./session";
 
 /** Whose request it is: a key in the Authorization header, else the session cookie. @throws KnownError unauthenticated */
@@ -45,18 +45,15 @@ const ended = () => unauthenticated("Your session has ended; sign in again");
 async function identifyKey(header: string, db: Database, now: Date): Promise<Actor> {
   const key = /^Bearer +([\x21-\x7e]+)$/i.exec(header)?.[1];
   if (!key) throw unauthenticated("Send the key as Authorization: Bearer <key>");
-  const [row] = await db
-    .select()
-    .from(apiKeys)
-    .where(and(eq(apiKeys.hash, hashOfKey(key)), isNull(apiKeys.revokedAt)));
-  if (!row) throw unauthenticated("This key is not known or has been revoked");
+  const found = await findKey(db, hashOfKey(key));
+  if (!found) throw unauthenticated("This key is not known or has been revoked");
+  const { row, person } = found;
   // To the minute: a feed of thousands of requests should not write a row for each.
   if (!row.lastUsedAt || now.getTime() - row.lastUsedAt.getTime() > 60_000) {
     await db.update(apiKeys).set({ lastUsedAt: now }).where(eq(apiKeys.id, row.id));
   }
   const { id, source, scopes } = row;
   if (!row.actsForPersonId) return { kind: "key", id, source, scopes };
-  const person = await findActivePerson(db, row.actsForPersonId);
   if (!person) throw unauthenticated("The person this key acts for is no longer active");
   return { kind: "person", ...person, key: { id, source, scopes } };
 }

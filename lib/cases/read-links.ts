@@ -44,7 +44,16 @@ export async function readLinks(db: Executor, payment: Payment): Promise<z.infer
   if (linked.size === 0) return [];
   const rows = await db
     .select({
-      transaction: transactions,
+      transaction: {
+        id: transactions.id,
+        externalId: transactions.externalId,
+        accountId: transactions.accountId,
+        occurredAt: transactions.occurredAt,
+        amountMinor: transactions.amountMinor,
+        currency: transactions.currency,
+        channel: transactions.channel,
+        label: transactions.label,
+      },
       caseId: cases.id,
       number: cases.number,
       state: cases.state,

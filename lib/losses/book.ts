@@ -6,7 +6,7 @@ import { transactions } from "@/db/schema/transactions";
 import type { Typology, Verdict } from "../decisions/codes";
 import type { PolicyTerms } from "../policy/schema";
 import { settleRecoveries } from "./recoveries";
-import { isOutcomeLabel, type LedgerRow, linesOn, reverseLines, standingAmong } from "./reverse";
+import { isOutcomeLabel, type LedgerRow, reverseLines, standingAmong } from "./reverse";
 import { type LedgerLine, ledgerLine, NOTHING_BOOKED } from "./rules";
 
 type CostTerms = Pick<PolicyTerms, "reviewCostMinorPerHour" | "lostMargin">;
@@ -33,8 +33,7 @@ export type DecisionBooking = {
  * @throws Error where the transaction does not exist
  */
 export async function bookDecision(tx: Tx, booking: DecisionBooking): Promise<LedgerLine> {
-  const payment = await paymentOrThrow(tx, booking.transactionId);
-  const lines = await linesOn(tx, booking.transactionId);
+  const { payment, lines } = await bookedSoFarOrThrow(tx, booking.transactionId);
   const wasPassed = payment.action === "pass" || (await wasDecidedLegitimate(tx, lines, booking));
   const whole = ledgerLine({ ...booking, ...payment, wasPassed });
   const byOutcome = standingAmong(lines).filter(isOutcomeLabel);
@@ -71,8 +70,7 @@ export type OutcomeBooking = {
  */
 export async function bookOutcome(tx: Tx, booking: OutcomeBooking): Promise<LedgerLine> {
   const { transactionId, bookedAt } = booking;
-  const payment = await paymentOrThrow(tx, transactionId);
-  const lines = await linesOn(tx, transactionId);
+  const { payment, lines } = await bookedSoFarOrThrow(tx, transactionId);
   const wasPassed = payment.action === "pass" || (await wasDecidedLegitimate(tx, lines, { transactionId }));
   const findings = standingAmong(lines).filter((row) => row.recoveredMinor === 0);
   await reverseLines(tx, findings, bookedAt, "review_cost");
@@ -106,18 +104,24 @@ export async function reverseBooking(
 
 const isFraud = (finding: { verdict: Verdict }) => finding.verdict === "fraudulent";
 
-async function paymentOrThrow(tx: Tx, transactionId: string) {
-  const [payment] = await tx
+/** The payment as it stands and all its lines, in one statement: every decision waits for it. */
+async function bookedSoFarOrThrow(tx: Tx, transactionId: string) {
+  const rows = await tx
     .select({
-      amountBaseMinor: transactions.amountBaseMinor,
-      paymentState: transactions.paymentState,
-      action: transactions.action,
-      occurredAt: transactions.occurredAt,
+      payment: {
+        amountBaseMinor: transactions.amountBaseMinor,
+        paymentState: transactions.paymentState,
+        action: transactions.action,
+        occurredAt: transactions.occurredAt,
+      },
+      line: ledger,
     })
     .from(transactions)
+    .leftJoin(ledger, eq(ledger.transactionId, transactions.id))
     .where(eq(transactions.id, transactionId));
-  if (!payment) throw new Error("A loss can only be booked for a transaction that exists");
-  return payment;
+  const [first] = rows;
+  if (!first) throw new Error("A loss can only be booked for a transaction that exists");
+  return { payment: first.payment, lines: rows.flatMap(({ line }) => line ?? []) };
 }
 
 /** A verdict of "legitimate" other than this one was given on the payment and not taken back as a slip. */
