@@ -54,7 +54,7 @@ function Outcome({ derivation }: { derivation: DerivationView }) {
       </p>
       {!problem && (
         <div className="mt-1">
-          <WithoutSignals lines={derivation.withoutSignals} title="What would have changed it then" />
+          <WithoutSignals lines={derivation.withoutSignals} past />
         </div>
       )}
     </Notice>

@@ -4,19 +4,32 @@ import { percentOf, signedDecibans } from "../ui/probability";
 type WithoutSignalsProps = {
   /** The strongest first; null where the scorer that gave the score is not at hand. */
   lines: readonly WithoutSignal[] | null;
-  title?: string;
+  /** The score is one of the past. */
+  past?: boolean;
+};
+
+const WORDS = {
+  now: {
+    title: "What would change this",
+    some: "Where it would stand without one signal, the rest as they are.",
+  },
+  past: {
+    title: "What would have changed it then",
+    some: "Where it would have stood without one signal, the rest as they were.",
+  },
 };
 
 /** What would change the score most: where it would stand without one signal. */
-export function WithoutSignals({ lines, title = "What would change this" }: WithoutSignalsProps) {
+export function WithoutSignals({ lines, past = false }: WithoutSignalsProps) {
   if (!lines) return null;
+  const { title, some } = WORDS[past ? "past" : "now"];
   return (
     <div className="text-small">
       <p>
         <span className="font-strong">{title}</span>
         <span className="text-soft">
           {lines.length > 0
-            ? " One signal away, the rest as they are. Signals act together, so these do not add up."
+            ? ` ${some} Signals act together, so these do not add up.`
             : " No single signal: none speaks for anything by itself."}
         </span>
       </p>
@@ -24,7 +37,7 @@ export function WithoutSignals({ lines, title = "What would change this" }: With
         <ul className="grid gap-x-6 lg:grid-cols-3">
           {lines.map((line) => (
             <li key={line.key}>
-              Without <span className="font-strong">{line.name}</span> it would stand at{" "}
+              Without <span className="font-strong">{line.name}</span>:{" "}
               <span className="whitespace-nowrap">
                 <span className="figures">{signedDecibans(line.totalDecibans)}</span>
                 <span className="text-soft"> decibans, </span>
