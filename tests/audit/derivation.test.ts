@@ -1,3 +1,4 @@
+// Long: one installation lives through some hours, and every promise is held against all of them.
 import { desc, eq } from "drizzle-orm";
 import { beforeAll, describe, expect, test } from "vitest";
 import { createDatabase } from "@/db/client";
