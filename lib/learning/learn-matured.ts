@@ -7,7 +7,6 @@ import { labelLog } from "@/db/schema/scorers";
 import { scores, transactions } from "@/db/schema/transactions";
 import { inTransaction } from "@/db/tx";
 import { demand } from "../auth/demand";
-import { labelsLearned } from "../cases/notify";
 import type { Context } from "../context";
 import { newId } from "../new-id";
 import { policyInForce } from "../policy/read";
@@ -40,8 +39,8 @@ export async function learnMatured(ctx: Context, signal: AbortSignal): Promise<v
   const days = [dayOf(now, terms.maturityDays.cards, CARDS), dayOf(now, terms.maturityDays.other, OTHER)];
   const drawn = await draw(ctx.db, days, await decidedOn(ctx.db, dayOf(now, 0, [])));
   for (let from = 0; from < drawn.length && !signal.aborted; from += IN_ONE_TRANSACTION) {
+    // The ranking follows the log by itself.
     await learnSome(ctx, drawn.slice(from, from + IN_ONE_TRANSACTION));
-    labelsLearned();
   }
 }
 
