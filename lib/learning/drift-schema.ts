@@ -14,6 +14,10 @@ export const MovedSignal = z.strictObject({
 });
 export type MovedSignal = z.infer<typeof MovedSignal>;
 
+/** Shift in nats of the log odds told that made labels as promised when somebody saw a warning; later ones are held against it. */
+export const DriftBaseline = z.strictObject({ shift: z.number(), labels: z.int() });
+export type DriftBaseline = z.infer<typeof DriftBaseline>;
+
 /** What a warning rests on, as it is kept. */
 export const DriftDetail = z.strictObject({
   /** `worse`: labels cost more than the scores promised, so they were too sure. `better`: less, so they were too timid. */
@@ -28,6 +32,8 @@ export const DriftDetail = z.strictObject({
   /** How far the scores themselves have moved: population stability index over ten bins; null with too few labels. */
   scoreShift: z.number().nullable(),
   movedSignals: z.array(MovedSignal),
+  /** Taken when it was seen; null before, and where there were too few labels. */
+  accepted: DriftBaseline.nullable(),
 });
 export type DriftDetail = z.infer<typeof DriftDetail>;
 

@@ -6,6 +6,7 @@ import { candidateLosses, driftWarnings } from "@/db/schema/learning";
 import { labelLog, scorers } from "@/db/schema/scorers";
 import type { DriftKind } from "./codes";
 import { type LivedLabel, WARM_UP_LABELS } from "./drift-rules";
+import { type DriftBaseline, DriftDetail } from "./drift-schema";
 
 /** Older labels say nothing about today, and cost every look. */
 const NEWEST_LABELS = 20_000;
@@ -68,23 +69,32 @@ export async function readVectors(db: Executor, fromSeq: number, toSeq: number):
   return rows.map(({ vector }) => bytesToVector(vector));
 }
 
-export type LastWarning = { id: string; seq: number; seenAt: Date | null };
+/** `accepted` is of the newest warning that was seen, which need not be the last one. */
+export type LastWarning = { id: string; seq: number; seenAt: Date | null; accepted: DriftBaseline | null };
 
 export async function findLastWarning(
   db: Executor,
   scorerId: string,
   kind: DriftKind,
 ): Promise<LastWarning | null> {
+  const ofKind = and(eq(driftWarnings.scorerId, scorerId), eq(driftWarnings.kind, kind));
   const [row] = await db
     .select({ id: driftWarnings.id, seq: driftWarnings.seq, seenAt: driftWarnings.seenAt })
     .from(driftWarnings)
-    .where(and(eq(driftWarnings.scorerId, scorerId), eq(driftWarnings.kind, kind)))
+    .where(ofKind)
     .orderBy(desc(driftWarnings.seq))
     .limit(1);
-  return row ?? null;
+  if (!row) return null;
+  const [seen] = await db
+    .select({ detail: driftWarnings.detail })
+    .from(driftWarnings)
+    .where(and(ofKind, isNotNull(driftWarnings.seenAt)))
+    .orderBy(desc(driftWarnings.seq))
+    .limit(1);
+  return { ...row, accepted: seen ? DriftDetail.parse(seen.detail).accepted : null };
 }
 
-/** The labels that count since the last warning, and where they begin: all that came after it, and after it was seen. */
+/** Position of the first label that counts since the last warning: after it, and after it was seen. */
 export function sinceWarning(labels: readonly LivedLabel[], last: LastWarning | null): number {
   if (!last) return 0;
   const from = labels.findIndex(({ seq, at }) => seq > last.seq && (!last.seenAt || at > last.seenAt));

@@ -8,6 +8,7 @@ import type { Context } from "../context";
 import { newId } from "../new-id";
 import { appendTrail } from "../trail/append";
 import { DRIFT_KINDS, type DriftKind } from "./codes";
+import { againstBaseline } from "./drift-baseline";
 import { type Crossing, type LivedLabel, promisedLoss, toldProbability, WATCHES } from "./drift-rules";
 import type { DriftDetail } from "./drift-schema";
 import {
@@ -39,7 +40,8 @@ async function raiseNext(ctx: Context, stream: DriftStream, kind: DriftKind): Pr
   const last = await findLastWarning(ctx.db, stream.scorerId, kind);
   const start = sinceWarning(stream.labels, last);
   const isQuiet = last === null || last.seenAt !== null;
-  const { crossing } = WATCHES[kind](stream.labels.slice(start), isQuiet);
+  const watched = againstBaseline(stream.labels.slice(start), last?.accepted ?? null);
+  const { crossing } = WATCHES[kind](watched, isQuiet);
   if (!crossing) return false;
   const detail = await detailOf(ctx, stream.labels, crossing, start);
   return inTransaction(ctx.db, async (tx) => {
@@ -95,6 +97,7 @@ async function detailOf(
     promisedLoss: meanOf(recent.map(({ loss }) => promisedLoss(loss))),
     scoreShift: scoreShift(recent.map(toldProbability), before.map(toldProbability)),
     movedSignals: movedSignals(await vectorsOf(ctx, recent), await vectorsOf(ctx, before)),
+    accepted: null,
   };
 }
 

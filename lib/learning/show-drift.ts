@@ -6,6 +6,8 @@ import { people } from "@/db/schema/people";
 import { scorers } from "@/db/schema/scorers";
 import { demand } from "../auth/demand";
 import type { Context } from "../context";
+import type { DriftKind } from "./codes";
+import { againstBaseline } from "./drift-baseline";
 import {
   CALIBRATION_WINDOW,
   LABELS_PER_FALSE_WARNING,
@@ -24,9 +26,16 @@ export async function showDrift(ctx: Context): Promise<DriftView> {
   demand(ctx, "scorer.read");
   const stream = await readDriftStream(ctx.db);
   const labels = stream?.labels ?? [];
-  const last = stream && (await findLastWarning(ctx.db, stream.scorerId, "loss"));
-  const loss = watchLoss(labels.slice(sinceWarning(labels, last)), false);
-  const calibration = watchCalibration(labels.slice(-CALIBRATION_WINDOW), false);
+  const lastOf = async (kind: DriftKind) => stream && findLastWarning(ctx.db, stream.scorerId, kind);
+  const [lastLoss, lastCalibration] = [await lastOf("loss"), await lastOf("calibration")];
+  const loss = watchLoss(
+    againstBaseline(labels.slice(sinceWarning(labels, lastLoss)), lastLoss?.accepted ?? null),
+    false,
+  );
+  const calibration = watchCalibration(
+    againstBaseline(labels.slice(-CALIBRATION_WINDOW), lastCalibration?.accepted ?? null),
+    false,
+  );
   return {
     watched: labels.length,
     warmUp: WARM_UP_LABELS,

@@ -11,31 +11,8 @@ import {
   watchLoss,
 } from "@/lib/learning/drift-rules";
 import { createScorer, logLoss } from "@/lib/scorer";
-import { drawLabelled, seededNumbers } from "../scorer/fixture";
-
-const sigma = (z: number) => 1 / (1 + Math.exp(-z));
-
-/** Log odds told over the cases that a team decides: from a mixed queue to one where fraud is rare. */
-const QUEUES = {
-  mixed: { centre: -1, spread: 1.5 },
-  rare: { centre: -3.5, spread: 1.2 },
-  wide: { centre: 0, spread: 4 },
-  unsure: { centre: 0, spread: 0.5 },
-};
-
-type Drawn = { count: number; queue: keyof typeof QUEUES; seed: number; truth?: (told: number) => number };
-
-/** Labels that come with the log odds `truth` where others were told. */
-function drawLives({ count, queue, seed, truth = (told) => told }: Drawn): LivedLabel[] {
-  const unit = seededNumbers(seed);
-  const { centre, spread } = QUEUES[queue];
-  return Array.from({ length: count }, (_, i) => {
-    const normal = Math.sqrt(-2 * Math.log(1 - unit())) * Math.cos(2 * Math.PI * unit());
-    const told = centre + spread * normal;
-    const label = unit() < sigma(truth(told)) ? 1 : -1;
-    return { seq: i + 1, at: new Date(i * 1_000), label, loss: logLoss(told, label) };
-  });
-}
+import { drawLabelled } from "../scorer/fixture";
+import { drawLives, QUEUES, type Queue, sigma } from "./drawn-lives";
 
 /** Every warning of a life, each seen at once. */
 function warningsIn(labels: readonly LivedLabel[], watch: typeof watchLoss): Crossing[] {
@@ -94,7 +71,7 @@ describe("the evidence in one loss", () => {
 test("without drift, false warnings are rarer than promised on every kind of queue", () => {
   const [streams, count] = [24, 10_000];
   const labels = streams * count;
-  for (const [k, queue] of (Object.keys(QUEUES) as (keyof typeof QUEUES)[]).entries()) {
+  for (const [k, queue] of (Object.keys(QUEUES) as Queue[]).entries()) {
     let loss = 0;
     let calibration = 0;
     for (let stream = 0; stream < streams; stream++) {
@@ -112,7 +89,7 @@ test("without drift, false warnings are rarer than promised on every kind of que
 describe("with drift after 1,000 labels", () => {
   const BEFORE = 1_000;
   /** Labels from the change to the first warning of either kind, in order of size, over 60 lives. */
-  function delays(queue: keyof typeof QUEUES, truth: (told: number) => number): number[] {
+  function delays(queue: Queue, truth: (told: number) => number): number[] {
     return Array.from({ length: 60 }, (_, i) => {
       const before = drawLives({ count: BEFORE, queue, seed: 50_000 + i });
       const after = drawLives({ count: 3_000, queue, seed: 60_000 + i, truth });

@@ -30,10 +30,17 @@ beforeAll(async () => {
   [waiting] = (await world.waitingCases(1)) as [WaitingCase];
 });
 
-/** Labels as decisions teach them, each predicted before it is learned; `turned` is the world after the change. */
+/** Log odds of fraud by what the telling signal reads. */
+const WORLDS = {
+  first: (told: number) => -1 + 3 * told,
+  turned: (told: number) => -1 - 3 * told,
+  flood: () => 4,
+};
+
+/** Labels as decisions teach them, each predicted before it is learned. */
 async function live(
   count: number,
-  turned: boolean,
+  lived: keyof typeof WORLDS,
   kind: "decision" | "outcome" = "decision",
 ): Promise<void> {
   await inTransaction(world.db, async (tx) => {
@@ -43,10 +50,9 @@ async function live(
       const vector = new Float64Array(DIMENSION);
       const told = 2 * chance.unit() - 1;
       vector[OFFSETS[TELLING] as number] = told;
-      vector[OFFSETS[MOVING] as number] = turned && chance.hits(0.5) ? 1 : 0;
+      vector[OFFSETS[MOVING] as number] = lived === "turned" && chance.hits(0.5) ? 1 : 0;
       vector[DIMENSION - 1] = 1;
-      const odds = -1 + (turned ? -3 : 3) * told;
-      const label = kind === "outcome" || chance.unit() < 1 / (1 + Math.exp(-odds)) ? 1 : -1;
+      const label = kind === "outcome" || chance.unit() < 1 / (1 + Math.exp(-WORLDS[lived](told))) ? 1 : -1;
       const source = {
         kind,
         transactionId: waiting.transactionId,
@@ -65,7 +71,7 @@ const warnings = () => world.db.select().from(driftWarnings).orderBy(desc(driftW
 
 describe("on the label log of an installation", () => {
   test("nothing is watched while the scorer warms up", async () => {
-    await live(150, false);
+    await live(150, "first");
     await raiseDriftWarnings(system());
     const view = await showDrift(world.ctx(supervisor, now()));
     expect(view).toMatchObject({ watched: 0, warmUp: 200, warnings: [] });
@@ -74,29 +80,29 @@ describe("on the label log of an installation", () => {
   });
 
   test("without drift there is no warning, and both statistics are in their bands", async () => {
-    await live(1_050, false);
+    await live(750, "first");
     await raiseDriftWarnings(system());
     const { watched, loss, calibration, warnings: raised } = await showDrift(world.ctx(supervisor, now()));
-    expect(watched).toBe(1_000);
+    expect(watched).toBe(700);
     expect(raised).toEqual([]);
     expect(Math.abs(loss.value as number)).toBeLessThan(loss.line);
     expect(Math.abs(calibration.value as number)).toBeLessThan(calibration.line);
   });
 
   test("reported outcomes, which are always fraud, are no drift", async () => {
-    await live(100, false, "outcome");
+    await live(60, "first", "outcome");
     await raiseDriftWarnings(system());
     expect(await warnings()).toEqual([]);
-    expect((await showDrift(world.ctx(supervisor, now()))).watched).toBe(1_000);
+    expect((await showDrift(world.ctx(supervisor, now()))).watched).toBe(700);
     // What the scorer made of them is unlearned again.
-    await live(600, false);
+    await live(400, "first");
     await raiseDriftWarnings(system());
     for (const { id } of await warnings()) await seeDriftWarning(world.ctx(supervisor, now()), { id });
   });
 
   test("drift is warned of once, names the signals that moved, and is in the trail", async () => {
     const before = (await warnings()).length;
-    await live(300, true);
+    await live(300, "turned");
     await raiseDriftWarnings(system());
     await raiseDriftWarnings(system());
     const raised = (await warnings()).slice(0, -before || undefined);
@@ -152,7 +158,7 @@ describe("on the label log of an installation", () => {
       if (!seenAt) await seeDriftWarning(world.ctx(supervisor, now()), { id });
     }
     const before = (await warnings()).length;
-    await live(300, false);
+    await live(150, "flood");
     await raiseDriftWarnings(system());
     expect((await warnings()).length).toBeGreaterThan(before);
   });
