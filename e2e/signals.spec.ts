@@ -2,6 +2,7 @@ import { desc, eq } from "drizzle-orm";
 import { approvals } from "@/db/schema/approvals";
 import { ownSignals } from "@/db/schema/learning";
 import { newId } from "@/lib/new-id";
+import type { OpenedCase } from "./support/office";
 import { suspiciousPayments } from "./support/payments";
 import { expect, test } from "./support/test";
 
@@ -20,7 +21,8 @@ test("a supervisor writes a signal, sees what it measures, and a second person s
     ...payment,
     attributes: { [attribute]: [3, 8, 1][index] },
   }));
-  const [opened] = await office.openCases(payments, owner);
+  const [, many, few] = (await office.openCases(payments, owner)) as [OpenedCase, OpenedCase, OpenedCase];
+  await office.decide(many, "fraudulent", "details_theft");
   const supervisor = await office.person("supervisor");
   const theirs = await openAs(supervisor);
 
@@ -88,9 +90,9 @@ test("a supervisor writes a signal, sees what it measures, and a second person s
 
   await test.step("the case shows its line", async () => {
     const reviewer = await openAs(owner);
-    await reviewer.goto(`/cases/${opened?.caseId}`);
-    await expect(reviewer.getByText(name).first()).toBeVisible();
-    await expect(reviewer.getByText("about 3").first()).toBeVisible();
+    await reviewer.goto(`/cases/${few.caseId}`);
+    const balance = reviewer.getByRole("list", { name: "What the evidence is made of, in decibans" });
+    await expect(balance.getByRole("listitem").filter({ hasText: name })).toContainText("about 1");
   });
 
   await test.step("and it is switched off again the same way", async () => {

@@ -1,3 +1,4 @@
+import fc from "fast-check";
 import { describe, expect, it } from "vitest";
 import { scopeOf } from "@/lib/signals/formula-fields";
 import { compileFormula } from "@/lib/signals/own-formula";
@@ -205,6 +206,61 @@ describe("what is not on the list is refused when read", () => {
       Object.getOwnPropertyNames(of.prototype).join(),
     );
     expect(after).toEqual(before);
+  });
+});
+
+describe("whatever is written", () => {
+  const PIECES = [
+    ..."()[]{}.,;:?=!<>+-*/%^&|~'\"\\#@$ \n_1a",
+    ...[
+      "amount",
+      "attributes",
+      "constructor",
+      "__proto__",
+      "currency",
+      "log",
+      "max",
+      "and",
+      "or",
+      "not",
+      "true",
+    ],
+    ...[
+      "==",
+      "!=",
+      "<=",
+      "0.5",
+      "1e15",
+      '"EUR"',
+      "attributes.x",
+      'attributes["x"]',
+      "eval",
+      "end",
+      "to",
+      "in",
+    ],
+  ];
+  const scope = scopeOf(examplePayment);
+  const soup = fc
+    .array(fc.oneof(fc.constantFrom(...PIECES), fc.string({ maxLength: 3, unit: "binary" })), {
+      maxLength: 40,
+    })
+    .map((pieces) => pieces.join(""));
+
+  it("is refused with a message or measures a finite number or nothing, and never throws", () => {
+    fc.assert(
+      fc.property(soup, (text) => {
+        const { formula, problem } = compileFormula(text);
+        if (!formula) {
+          expect(problem.message).not.toBe("");
+          if (problem.at !== null) expect(problem.at).toBeLessThanOrEqual(text.length);
+          return;
+        }
+        const value = formula.measure(scope);
+        expect(value === null || Number.isFinite(value)).toBe(true);
+      }),
+      { numRuns: 5_000 },
+    );
   });
 });
 
