@@ -1,6 +1,6 @@
 import "server-only";
 import { setTimeout as sleep } from "node:timers/promises";
-import { and, asc, desc, eq, inArray, max, type SQL, sql } from "drizzle-orm";
+import { and, asc, desc, eq, gt, inArray, max, type SQL, sql } from "drizzle-orm";
 import type { Executor, Tx } from "@/db/client";
 import { vectorToBytes } from "@/db/columns";
 import { cases } from "@/db/schema/cases";
@@ -22,22 +22,28 @@ import { casesRescored } from "./notify";
 /** Labels whose linked cases are refreshed in one go. */
 const LABELS_IN_BATCH = 200;
 /** Cases refreshed in one transaction: so long a decision on one of them may have to wait. */
-const CASES_IN_TURN = 40;
+const CASES_IN_TURN = 20;
 /** Decisions come first: between two turns this rests so many times as long as the last one took. */
-const REST_FACTOR = 8;
+const REST_FACTOR = 16;
 /** What one batch may take on. Those beyond keep the signals they have. */
 const MOST_REFRESHED = 500;
 /**
  * The closest ties first: many strangers may pay the same counterparty. An entity may have taken part in any number of
  * payments; the newest are looked at.
  */
-const TIES = [
+const TIES: readonly Tie[] = [
   { column: "accountId", closeness: 0, newest: 2_000 },
   { column: "deviceId", closeness: 0, newest: 2_000 },
   { column: "cardRef", closeness: 0, newest: 2_000 },
   { column: "counterpartyId", closeness: 1, newest: MOST_REFRESHED },
-] as const;
-type Tie = (typeof TIES)[number];
+];
+const CLOSEST_TIES = TIES.filter(({ closeness }) => closeness === 0);
+
+type Tie = {
+  column: "accountId" | "deviceId" | "cardRef" | "counterpartyId";
+  closeness: number;
+  newest: number;
+};
 
 type Wish = { id: number; transactionId: string };
 type Linked = { caseId: string; transactionId: string };
@@ -50,18 +56,23 @@ type Linked = { caseId: string; transactionId: string };
 export async function refreshLinkedCases(ctx: Context, signal: AbortSignal): Promise<void> {
   demand(ctx, "desk.work");
   while (!signal.aborted) {
-    const wishes: Wish[] = await ctx.db
-      .select({ id: signalRefreshes.id, transactionId: signalRefreshes.transactionId })
-      .from(signalRefreshes)
-      .orderBy(asc(signalRefreshes.id))
-      .limit(LABELS_IN_BATCH);
+    const wishes = await listWishes(ctx.db, 0);
     if (wishes.length === 0 || !(await fulfil(ctx, wishes, signal))) return;
   }
 }
 
+const listWishes = (db: Executor, afterId: number): Promise<Wish[]> =>
+  db
+    .select({ id: signalRefreshes.id, transactionId: signalRefreshes.transactionId })
+    .from(signalRefreshes)
+    .where(gt(signalRefreshes.id, afterId))
+    .orderBy(asc(signalRefreshes.id))
+    .limit(LABELS_IN_BATCH);
+
 /** @returns false when another server is at it, or this one is to stop */
 async function fulfil(ctx: Context, wishes: readonly Wish[], signal: AbortSignal): Promise<boolean> {
-  const linked = await findLinked(ctx.db, [...new Set(wishes.map(({ transactionId }) => transactionId))]);
+  const linked = await findLinked(ctx.db, wishes, TIES);
+  let lifted = wishes.at(-1)?.id ?? 0;
   for (let from = 0; from === 0 || from < linked.length; from += CASES_IN_TURN) {
     if (signal.aborted) return false;
     const startedMs = performance.now();
@@ -71,8 +82,22 @@ async function fulfil(ctx: Context, wishes: readonly Wish[], signal: AbortSignal
     if (refreshed === null) return false;
     casesRescored(refreshed);
     if (turn.length > 0) await rest(REST_FACTOR * (performance.now() - startedMs), signal);
+    lifted = await liftClosest(ctx, lifted);
   }
   return true;
+}
+
+/**
+ * The closest ties of labels that came meanwhile: nobody should wait for the many customers of a counterparty. Their
+ * wishes stay, and have their own batch. @returns the last wish looked at
+ */
+async function liftClosest(ctx: Context, afterId: number): Promise<number> {
+  const wishes = await listWishes(ctx.db, afterId);
+  const last = wishes.at(-1);
+  if (!last) return afterId;
+  const turn = (await findLinked(ctx.db, wishes, CLOSEST_TIES)).slice(0, CASES_IN_TURN);
+  casesRescored((await inTransaction(ctx.db, (tx) => refreshTurn(ctx, tx, wishes, turn, false))) ?? []);
+  return last.id;
 }
 
 /** Ends early when the server stops. */
@@ -138,7 +163,8 @@ async function presentVectors(tx: Tx, turn: readonly Linked[]): Promise<Map<stri
  * Waiting cases that share an entity with one of the payments: of each entity its newest payments, those of an account,
  * device or card before those of a counterparty, and the newest first.
  */
-async function findLinked(db: Executor, labelled: readonly string[]): Promise<Linked[]> {
+async function findLinked(db: Executor, wishes: readonly Wish[], ties: readonly Tie[]): Promise<Linked[]> {
+  const labelled = [...new Set(wishes.map(({ transactionId }) => transactionId))];
   const payments = await db
     .select({
       accountId: transactions.accountId,
@@ -147,14 +173,15 @@ async function findLinked(db: Executor, labelled: readonly string[]): Promise<Li
       counterpartyId: transactions.counterpartyId,
     })
     .from(transactions)
-    .where(inArray(transactions.id, [...labelled]));
+    .where(inArray(transactions.id, labelled));
   const keys = new Map<string, SQL>();
   for (const payment of payments) {
-    for (const tie of TIES) {
+    for (const tie of ties) {
       const key = payment[tie.column];
       if (key !== null) keys.set(`${tie.column} ${key}`, newestOf(tie, key));
     }
   }
+  if (keys.size === 0) return [];
   const newest = sql.join([...keys.values()], sql` union all `);
   const linked = sql`(select id, min(closeness) as closeness from (${newest}) tied group by id) linked`;
   const rows = await db

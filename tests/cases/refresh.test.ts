@@ -151,6 +151,33 @@ describe("when a payment is labelled", () => {
     for (const left of [labelled, oldest, old]) expect(ids).not.toContain(left.transactionId);
   });
 
+  test("the closest ties of a label that comes meanwhile do not wait for the many of a counterparty", async () => {
+    const made = await waiting(90);
+    const [first, second, tied] = made as [WaitingCase, WaitingCase, WaitingCase];
+    for (const { transactionId } of [second, tied]) {
+      await world.db
+        .update(transactions)
+        .set({ deviceId: "device-of-two", occurredAt: days(-40) })
+        .where(eq(transactions.id, transactionId));
+    }
+    const refreshes = async () => {
+      const ids = made.map(({ transactionId }) => transactionId);
+      return world.db
+        .select({ id: scores.id, transactionId: scores.transactionId })
+        .from(scores)
+        .where(and(eq(scores.kind, "refresh"), inArray(scores.transactionId, ids)))
+        .orderBy(scores.id);
+    };
+    await decide(first.caseId);
+    const running = refreshLinkedCases(job(minutes(1)), signal);
+    await expect.poll(async () => (await refreshes()).length).toBeGreaterThan(0);
+    await decide(second.caseId);
+    await running;
+    const order = (await refreshes()).map(({ transactionId }) => transactionId);
+    expect(order).toContain(tied.transactionId);
+    expect(order.indexOf(tied.transactionId)).toBeLessThan(60);
+  });
+
   test("two servers that refresh at once give each linked case one new score", async () => {
     const made = await scoredTruly(6, () => ({ deviceId: "device-crowd" }));
     await refreshLinkedCases(job(minutes(1)), signal);
