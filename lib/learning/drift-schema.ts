@@ -14,8 +14,8 @@ export const MovedSignal = z.strictObject({
 });
 export type MovedSignal = z.infer<typeof MovedSignal>;
 
-/** How labels stood to the log odds told, in nats, when somebody saw a warning: later ones are held against it. */
-export const DriftBaseline = z.strictObject({ shift: z.number(), slope: z.number(), labels: z.int() });
+/** Shift in nats of the log odds told that made labels as promised when somebody saw a warning; later ones are held against it. */
+export const DriftBaseline = z.strictObject({ shift: z.number(), labels: z.int() });
 export type DriftBaseline = z.infer<typeof DriftBaseline>;
 
 /** What a warning rests on, as it is kept. */

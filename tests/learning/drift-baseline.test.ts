@@ -38,20 +38,16 @@ describe("a baseline", () => {
     expect(Math.abs(shifts.reduce((sum, shift) => sum + shift, 0) / 20 + 1.2)).toBeLessThan(0.06);
   });
 
-  test("takes scores that are too even as they are, and never excuses those that are too sure", () => {
-    const even = drawLives({ count: 2_000, queue: "mixed", seed: 5, truth: (told) => 2 * told + 1 });
-    expect(fitBaseline(even, 2_000)?.slope).toBeCloseTo(2, 0);
-    expect(fitBaseline(even, 2_000)?.shift).toBeCloseTo(1, 0);
+  test("never excuses scores that tell nothing", () => {
     const lost = drawLives({ count: 2_000, queue: "mixed", seed: 6, truth: () => -1 });
-    const fit = fitBaseline(lost, 2_000);
-    expect(fit?.slope).toBe(1);
-    const warned = drawLives({ count: 1_000, queue: "mixed", seed: 7, truth: () => -1 });
-    expect(watchLoss(againstBaseline(warned, fit), true).crossing?.statistic).toBeGreaterThan(0);
+    const later = drawLives({ count: 1_000, queue: "mixed", seed: 7, truth: () => -1 });
+    const watched = watchLoss(againstBaseline(later, fitBaseline(lost, 2_000)), true);
+    expect(watched.crossing?.statistic).toBeGreaterThan(0);
   });
 
   test("changes no loss where the scores have been right", () => {
     const lived = drawLives({ count: 50, queue: "rare", seed: 2 });
-    const same = againstBaseline(lived, { shift: 0, slope: 1, labels: 1_000 });
+    const same = againstBaseline(lived, { shift: 0, labels: 1_000 });
     same.forEach(({ loss }, i) => {
       expect(loss).toBeCloseTo(lived[i]?.loss as number, 10);
     });
@@ -61,7 +57,7 @@ describe("a baseline", () => {
   test("stays finite where the loss rounds to 0 or is a thousand", () => {
     const at = new Date(0);
     const far = [0, 1e-300, 1_000].map((loss, i) => ({ seq: i, at, label: 1, loss }));
-    for (const { loss } of againstBaseline(far, { shift: 0.5, slope: 2, labels: 500 })) {
+    for (const { loss } of againstBaseline(far, { shift: 0.5, labels: 500 })) {
       expect(Number.isFinite(loss)).toBe(true);
     }
   });
