@@ -75,6 +75,11 @@ const termsOf = ({ labelsPerFalseWarning }: DriftView) => [
   },
   { term: "Calibration", means: "Spiegelhalter's z: findings against predictions, in standard deviations." },
   {
+    term: "Seen",
+    means:
+      "Saying that a warning was seen takes how many findings were fraud, against what was predicted, as known. From then on only a departure from that is warned of.",
+  },
+  {
     term: "Signals that moved",
     means:
       "Signals whose readings lie elsewhere than before, in standard deviations (sd) of what they were. They say where to look, not what is at fault.",

@@ -15,7 +15,7 @@ export function PassedFigure({ passed: { estimate, reason, decided } }: { passed
     <Figure
       label="Fraud below the review line"
       value={estimate ? rate(estimate.perThousand.value) : "–"}
-      unit={estimate ? `in ${countText(1000)} passed` : undefined}
+      unit={estimate ? `in ${countText(1000)}` : undefined}
       note={
         estimate ? (
           <>
