@@ -1,4 +1,5 @@
 import "server-only";
+import { approvalJobs } from "../approvals/jobs";
 import { caseJobs } from "../cases/jobs";
 import { importJobs } from "../imports/jobs";
 import type { Job } from "../job";
@@ -13,6 +14,7 @@ import { housekeepingJobs } from "./housekeeping";
 export const JOBS: readonly Job[] = [
   ...caseJobs,
   ...policyJobs,
+  ...approvalJobs,
   ...importJobs,
   ...outcomeJobs,
   ...mailJobs,
