@@ -1,4 +1,7 @@
-import { createDatabase } from "@/db/client";
+import { setTimeout as sleep } from "node:timers/promises";
+import { sql } from "drizzle-orm";
+import { createDatabase, type Database } from "@/db/client";
+import type { DemoTransaction } from "@/db/demo/payment";
 import { scenarioDays } from "@/db/demo/scenario";
 import type { CaseView } from "@/lib/cases/schema";
 import { startApp } from "../support/app";
@@ -31,6 +34,7 @@ export async function run(): Promise<Row[]> {
     );
     const reviewers = keys.map((key) => new Api(app.url, key));
     await work(reviewers, 5, 0);
+    await age(db);
     const paced = await work(reviewers, DECISIONS_EACH, PAUSE_MS);
     const flatOut = await work(reviewers, DECISIONS_EACH, 0);
     const p95 = quantile(paced, 0.95);
@@ -60,11 +64,26 @@ async function fillQueue(sender: Api): Promise<void> {
   let sent = 0;
   for (let seed = 1; sent < WAITING_CASES + 2_000; seed++) {
     for (const { transactions } of scenarioDays(seed, new Date("2026-11-30T00:00:00Z"))) {
-      const items = transactions.map(({ item }) => ({ ...item, externalId: `${seed}-${item.externalId}` }));
+      const items = transactions.map(({ item }) => asCustomersOf(seed, item));
       await sender.mustPost("/api/transactions", { transactions: items.slice(0, 1_000) });
       sent += items.length;
     }
   }
+}
+
+/** The queue has stood for a while: none of it is news that the server would look at again for two minutes. */
+async function age(db: Database): Promise<void> {
+  await db.execute(sql`update cases set changed_at = changed_at - interval 1 hour`);
+  await sleep(10_000);
+}
+
+/** Every scenario has customers of its own; the merchants and payees are the same everywhere. */
+function asCustomersOf(seed: number, item: DemoTransaction["item"]): DemoTransaction["item"] {
+  const own = ["externalId", "accountId", "cardRef", "deviceId"];
+  const renamed = Object.entries(item).map(([field, value]) =>
+    own.includes(field) && typeof value === "string" ? [field, `${seed}-${value}`] : [field, value],
+  );
+  return Object.fromEntries(renamed);
 }
 
 /** @returns the time of each decision call in ms */
@@ -73,7 +92,7 @@ async function work(reviewers: Api[], decisions: number, pauseMs: number): Promi
   await Promise.all(
     reviewers.map(async (api, number) => {
       for (let index = 0; index < decisions; index++) {
-        if (pauseMs > 0) await new Promise((resolve) => setTimeout(resolve, pauseMs * (0.5 + Math.random())));
+        if (pauseMs > 0) await sleep(pauseMs * (0.5 + Math.random()));
         const view = await api.mustPost<CaseView>("/api/queue/next", {});
         const fraudulent = (number + index) % 10 === 0;
         const answer = await api.post(`/api/cases/${view.caseId}/decision`, {
