@@ -31,11 +31,31 @@ export async function foldLog(
   upToSeq: number,
   overrides: ReadonlyMap<number, Label | 0> = new Map(),
 ): Promise<Folded> {
-  const replaced = await replacements(db, from.place, upToSeq);
-  for (const [place, label] of overrides) replaced.set(place, label);
   const { scorer } = from;
   const snapshots: Folded["snapshots"] = [];
   const breath = new Breath();
+  for await (const rows of readPlaces(db, from, upToSeq)) {
+    for (const row of rows) {
+      const label = overrides.get(row.place) ?? row.label;
+      if (label === 0) continue;
+      scorer.learn(row.vector, label, row.weight);
+      if (isSnapshotDue(scorer.labels)) snapshots.push({ place: row.place, state: scorer.snapshot() });
+      await breath.take();
+    }
+  }
+  return { scorer, snapshots };
+}
+
+/** What holds at a place of the log. */
+export type PlaceRow = { place: number; label: Label | 0; weight: number; vector: Float64Array };
+
+/** The places (from.place, upToSeq] in order, a page at a time, as the log stood at row `upToSeq`. */
+export async function* readPlaces(
+  db: Executor,
+  from: Pick<FoldFrom, "place" | "signals">,
+  upToSeq: number,
+): AsyncGenerator<PlaceRow[]> {
+  const replaced = await replacements(db, from.place, upToSeq);
   for (let after = from.place; ; ) {
     const rows = await db
       .select({
@@ -50,15 +70,14 @@ export async function foldLog(
       .orderBy(asc(labelLog.seq))
       .limit(PAGE_ROWS);
     const vectors = await fitVectors(db, from.signals, rows);
-    for (const [index, row] of rows.entries()) {
-      const label = replaced.get(row.seq) ?? (row.label as Label | 0);
-      if (label === 0) continue;
-      scorer.learn(vectors[index] as Float64Array, label, row.weight);
-      if (isSnapshotDue(scorer.labels)) snapshots.push({ place: row.seq, state: scorer.snapshot() });
-      await breath.take();
-    }
+    yield rows.map(({ seq, label, weight }, index) => ({
+      place: seq,
+      label: replaced.get(seq) ?? (label as Label | 0),
+      weight,
+      vector: vectors[index] as Float64Array,
+    }));
     const last = rows.at(-1);
-    if (!last || rows.length < PAGE_ROWS) return { scorer, snapshots };
+    if (!last || rows.length < PAGE_ROWS) return;
     after = last.seq;
   }
 }

@@ -4,21 +4,24 @@ import type { Database } from "@/db/client";
 import { labelLog } from "@/db/schema/scorers";
 import { Breath } from "../breath";
 import { wilsonInterval } from "../quality/wilson";
-import type { Label } from "../scorer";
+import type { Label, Scorer } from "../scorer";
 import { findingColumns, findRemovals } from "./find-removals";
 import { type FindingRow, type GivenLabels, GivenLabelsByPerson } from "./finding";
+import { foldApart, type Overrides } from "./fold-apart";
 import type { HeldScorer } from "./held-scorer";
-import type { InfluenceResult } from "./influence-schema";
+import type { InfluenceResult, ScorerEffect } from "./influence-schema";
 import { readPaymentsLookedAt } from "./payments-looked-at";
-import { effectOfRemoving } from "./without-labels";
+import { effectOf, overridesOf } from "./without-labels";
 
 const PAGE_ROWS = 2_000;
-/** Each is a fold of the log of its own; those with fewer labels are listed without an effect. */
+/** Those with fewer labels are listed without an effect. */
 const MOST_PEOPLE = 50;
+/** Folded side by side, in one reading of the log. */
+const TOGETHER = 25;
 
 type Reckoning = {
   held: HeldScorer;
-  /** Told after each person, so that the work can be claimed on; false ends it early. */
+  /** Asked now and then, so that the work can be claimed on; false ends it early. */
   goesOn: () => Promise<boolean>;
 };
 
@@ -32,17 +35,47 @@ export async function reckonInfluence(
 ): Promise<InfluenceResult | null> {
   const payments = await readPaymentsLookedAt(db, held.signals);
   const given = await readGivenLabels(db, held.logSeq);
-  const people: InfluenceResult["people"] = [];
-  for (const [personId, labels] of given) {
-    const reckoned = people.length < MOST_PEOPLE && labels.labels > 0;
-    const span = { personId, from: null, to: null };
-    const effect = reckoned
-      ? await effectOfRemoving(db, held, await findRemovals(db, span, held.logSeq), payments)
-      : null;
-    people.push({ personId, ...labelsView(labels), effect });
+  const reckoned = given.filter(([, { labels }]) => labels > 0).slice(0, MOST_PEOPLE);
+  const effects = new Map<string, ScorerEffect>();
+  // The leader keeps every vector it has seen, so no two of it at once.
+  const together = held.scorer.method === "leader" ? 1 : TOGETHER;
+  for (let from = 0; from < reckoned.length; from += together) {
+    const ids = reckoned.slice(from, from + together).map(([personId]) => personId);
+    const apart = await foldWithoutEach(db, held, ids, goesOn);
+    if (!apart) return null;
+    for (const [personId, scorer] of apart) effects.set(personId, await effectOf(held, scorer, payments));
     if (!(await goesOn())) return null;
   }
-  return { payments: { of: payments.of, count: payments.count }, people };
+  return {
+    payments: { of: payments.of, count: payments.count },
+    people: given.map(([personId, labels]) => ({
+      personId,
+      ...labelsView(labels),
+      effect: effects.get(personId) ?? null,
+    })),
+  };
+}
+
+/** The scorer as the log makes it without each of the people in turn; those whose labels change nothing are left out. */
+async function foldWithoutEach(
+  db: Database,
+  held: HeldScorer,
+  personIds: readonly string[],
+  goesOn: () => Promise<boolean>,
+): Promise<[string, Scorer][] | null> {
+  const changing: [string, Overrides][] = [];
+  for (const personId of personIds) {
+    const removals = await findRemovals(db, { personId, from: null, to: null }, held.logSeq);
+    if (removals.length > 0) changing.push([personId, overridesOf(removals)]);
+  }
+  if (changing.length === 0) return [];
+  const scorers = await foldApart(
+    db,
+    held,
+    changing.map(([, overrides]) => overrides),
+    goesOn,
+  );
+  return scorers && changing.map(([personId], index) => [personId, scorers[index] as Scorer]);
 }
 
 /** Those with most labels in force first. */

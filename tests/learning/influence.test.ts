@@ -13,6 +13,7 @@ import { readScorerInUse } from "@/lib/learning/held-scorer";
 import { readInfluence } from "@/lib/learning/influence";
 import { claimRun, endRun, renewRun } from "@/lib/learning/influence-run";
 import { InfluenceView } from "@/lib/learning/influence-schema";
+import { previewRemoval } from "@/lib/learning/preview-removal";
 import { createScorer, type Label } from "@/lib/scorer";
 import { CATALOGUE_SPANS } from "@/lib/signals/what-would-change";
 import { sendOutcome } from "../outcomes/payments";
@@ -140,6 +141,13 @@ describe("a person's influence on the scorer", () => {
       expect(effect?.signals.map(({ key }) => key)).toEqual(byDistance.slice(0, 3).map(({ key }) => key));
     }
     expect(view.payments).toEqual({ of: "waiting", count: waiting.length });
+  });
+
+  test("is to the last bit what a preview of their labels' removal says", async () => {
+    for (const { person, effect } of (await ready()).people) {
+      const preview = await previewRemoval(world.ctx(riskManager), { personId: person.id });
+      expect(preview.effect).toEqual(effect);
+    }
   });
 
   test("stands beside the most that one label can do, and how long the weights are", async () => {
