@@ -55,6 +55,7 @@ export function SignalFiguresView({ figures }: { figures: SignalFigures }) {
 }
 
 function signed(value: number): string {
-  const text = numberText(Number(value.toFixed(2)));
-  return value >= 0.005 ? `+${text}` : text;
+  const text = Math.abs(value).toFixed(2);
+  if (text === "0.00") return text;
+  return value > 0 ? `+${text}` : `−${text}`;
 }

@@ -16,10 +16,21 @@ export const LONGEST_FORMULA = 1_000;
 const DEEPEST_BRACKETS = 24;
 const LONGEST_TEXT = 64;
 
-/** Signs that people write, and what they stand for; one character each, so that places stay where they are. */
-const SIGNS: Readonly<Record<string, string>> = { "−": "-", "×": "*", "·": "*", "÷": "/" };
+/**
+ * Signs that people write, and what they stand for; one character each, so that places stay where they are. A line may
+ * end anywhere: to the parser that would begin another statement.
+ */
+const SIGNS: Readonly<Record<string, string>> = {
+  "−": "-",
+  "×": "*",
+  "·": "*",
+  "÷": "/",
+  "\n": " ",
+  "\r": " ",
+  "\t": " ",
+};
 /** Outside texts: no statement, comment, object, array of its own, escape, transpose or letter beyond ASCII. */
-const ALLOWED = /[A-Za-z0-9_ \n\t.,()[\]+\-*/^%<>=!?:"]/;
+const ALLOWED = /[A-Za-z0-9_ .,()[\]+\-*/^%<>=!?:"]/;
 
 /**
  * Checks a formula's characters and size before any parser does, and gives it in plain signs. Texts stand in double

@@ -8,6 +8,8 @@ export type LabelledValue = { label: number; value: number | null };
 
 export const BINS = 20;
 const SAMPLES = 5;
+/** The most that a definition takes. */
+const LARGEST_REACH = 1e15;
 
 /**
  * What a signal looks like on recent payments, newest first, and on labelled ones.
@@ -51,8 +53,11 @@ function suggestScale(sorted: readonly number[]): { middle: number; reach: numbe
   const farther = (share: number) =>
     Math.max(quantile(sorted, 1 - share) - middle, middle - quantile(sorted, share));
   const reach = farther(0.01) || farther(0) || 1;
-  return { middle, reach: Number.isFinite(reach) ? reach : Number.MAX_VALUE };
+  return { middle: rounded(middle), reach: rounded(Math.min(reach, LARGEST_REACH)) };
 }
+
+/** A scale is read and typed by people: four significant places are as good. */
+const rounded = (value: number): number => Number(value.toPrecision(4));
 
 function histogramOf(scaled: readonly number[]): number[] {
   const bins = new Array<number>(BINS).fill(0);

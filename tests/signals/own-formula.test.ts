@@ -29,6 +29,7 @@ describe("a formula", () => {
     ["hour", 18.5],
     ["weekday", 3],
     ["remote == true", 1],
+    ["(hour >= 18 or hour < 5)\n\t and amount > 100\r\n  ? 2\n  : 3", 2],
   ])("%s is %d", (text, value) => {
     expect(measure(text)).toBeCloseTo(value, 12);
   });
@@ -87,6 +88,7 @@ describe("a mistake is named with its place", () => {
     ["amount +", "too early", 7],
     ["amount + * 2", "cannot be read from here", 9],
     ["(amount", "too early", 6],
+    ["amount >\n  amuont", "There is no field amuont", 11],
     ["amount = 3", "assigns nothing", 7],
     ["currency + 1", "text can only be compared", 9],
     ['amount == "EUR"', "text can only be compared", 7],
