@@ -68,6 +68,7 @@ test("a supervisor runs a scorer beside, cannot promote it alone, and the risk m
   await test.step("its promotion is proposed, with a reason", async () => {
     await theirs.getByRole("button", { name: `Propose promotion of ${name}` }).click();
     const dialog = theirs.getByRole("dialog");
+    await dialog.getByRole("textbox", { name: "Reason" }).fill("  ");
     await dialog.getByRole("button", { name: "Propose" }).click();
     await expect(dialog.getByRole("textbox", { name: "Reason" })).toHaveAccessibleDescription(
       /needs a reason/,
@@ -136,7 +137,10 @@ test("the window of labels stands in the address and narrows every figure; the c
     Number((await textOf(table(page).locator("tbody td").first())).replace(/\D/g, ""));
   const whole = await predicted();
   expect(whole).toBeGreaterThan(0);
-  await page.getByLabel("Labels looked at").selectOption("Chosen days");
+  await expect(async () => {
+    await page.getByLabel("Labels looked at").selectOption("Chosen days");
+    await expect(page.getByLabel("To, inclusive")).toBeVisible({ timeout: 500 });
+  }).toPass();
   const lastDay = new Date(Date.now() - 7 * 86_400_000).toISOString().slice(0, 10);
   await page.getByLabel("To, inclusive").fill(lastDay);
   await page.getByRole("button", { name: "Show", exact: true }).click();
