@@ -59,7 +59,7 @@ export const DriftGauge = z.strictObject({
 });
 
 export const DriftView = z.strictObject({
-  /** Labels that are watched: decisions on reviewed cases since the scorer in use began, the warm-up aside. */
+  /** Labels that are watched: the newest decisions on reviewed cases since the scorer in use began, the warm-up aside. */
   watched: z.int(),
   /** Labels a scorer learns from before it is watched. */
   warmUp: z.int(),

@@ -1,7 +1,8 @@
 import "server-only";
-import { eq } from "drizzle-orm";
+import { eq, max } from "drizzle-orm";
+import type { Database } from "@/db/client";
 import { driftWarnings } from "@/db/schema/learning";
-import { scorers } from "@/db/schema/scorers";
+import { labelLog, scorers } from "@/db/schema/scorers";
 import { inTransaction } from "@/db/tx";
 import { demand } from "../auth/demand";
 import type { Context } from "../context";
@@ -24,9 +25,14 @@ import { scoreShift } from "./score-shift";
 /** Labels since the change that are looked at, and as many before them as give them something to be compared with. */
 const [FEWEST_RECENT, MOST_RECENT, MOST_BEFORE] = [100, 500, 2_000];
 
+/** Last row of the log that this process has looked at: without a newer one there is nothing to find. */
+const lookedAt = new WeakMap<Database, number>();
+
 /** Raises a warning for each statistic that has left its band since the last one: once for every time that it does. */
 export async function raiseDriftWarnings(ctx: Context): Promise<void> {
   demand(ctx, "scorer.read");
+  const newest = await newestRow(ctx.db);
+  if (newest === lookedAt.get(ctx.db)) return;
   const stream = await readDriftStream(ctx.db);
   if (!stream) return;
   for (const kind of DRIFT_KINDS) {
@@ -34,6 +40,12 @@ export async function raiseDriftWarnings(ctx: Context): Promise<void> {
     let raised = true;
     while (raised) raised = await raiseNext(ctx, stream, kind);
   }
+  lookedAt.set(ctx.db, newest);
+}
+
+async function newestRow(db: Database): Promise<number> {
+  const [row] = await db.select({ seq: max(labelLog.seq) }).from(labelLog);
+  return row?.seq ?? 0;
 }
 
 async function raiseNext(ctx: Context, stream: DriftStream, kind: DriftKind): Promise<boolean> {
