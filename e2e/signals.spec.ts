@@ -52,7 +52,7 @@ test("a supervisor writes a signal, sees what it measures, and a second person s
   const item = theirs.getByRole("listitem", { name });
   await test.step("propose to switch it on", async () => {
     await expect(item.getByText("Draft: counts for nothing yet")).toBeVisible();
-    await item.getByRole("button", { name: "Switch on" }).click();
+    await item.getByRole("button", { name: "Propose to switch on" }).click();
     const dialog = theirs.getByRole("dialog");
     await dialog.getByRole("button", { name: "Propose" }).click();
     await expect(dialog.getByText(/needs a reason/)).toBeVisible();
@@ -97,7 +97,7 @@ test("a supervisor writes a signal, sees what it measures, and a second person s
 
   await test.step("and it is switched off again the same way", async () => {
     await theirs.reload();
-    await item.getByRole("button", { name: "Switch off" }).click();
+    await item.getByRole("button", { name: "Propose to switch off" }).click();
     await theirs.getByRole("dialog").getByRole("textbox", { name: "Reason" }).fill("It was one sender only");
     await theirs.getByRole("dialog").getByRole("button", { name: "Propose" }).click();
     await expect(item.getByText(/To be switched off: proposed by/)).toBeVisible();

@@ -50,7 +50,7 @@ function CatalogueRow({ signal }: { signal: CatalogueSignalView }) {
   const { name, sentence, needs, formulas, weights } = signal;
   const largest = weights.reduce((most, weight) => (Math.abs(weight) > Math.abs(most) ? weight : most), 0);
   return (
-    <li className="grid gap-x-8 gap-y-1 border-b border-rule py-3 lg:grid-cols-[1fr_19rem]">
+    <li className="grid gap-x-8 gap-y-1 border-b border-rule py-3 last:border-b-0 lg:grid-cols-[1fr_19rem]">
       <div className="min-w-0">
         <h3 className="font-strong">{name}</h3>
         <p className="max-w-[70ch] text-soft">{sentence}</p>

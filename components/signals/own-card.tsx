@@ -23,7 +23,7 @@ export function OwnCard({ signal, mayManage, onEdit, onAct }: OwnCardProps) {
   return (
     <li
       aria-labelledby={nameId}
-      className="grid gap-x-8 gap-y-3 border-b border-rule py-4 lg:grid-cols-[1fr_19rem]"
+      className="grid gap-x-8 gap-y-3 border-b border-rule py-4 last:border-b-0 lg:grid-cols-[1fr_19rem]"
     >
       <div className="min-w-0">
         <div className="flex flex-wrap items-baseline gap-x-3">
@@ -78,7 +78,7 @@ export function OwnCard({ signal, mayManage, onEdit, onAct }: OwnCardProps) {
               </Button>
             )}
             <Button small onClick={() => onAct(state === "on" ? "off" : "on")}>
-              {state === "on" ? "Switch off" : "Switch on"}
+              Propose to switch {state === "on" ? "off" : "on"}
             </Button>
             {state !== "on" && (
               <Button small look="quiet" onClick={() => onAct("archive")}>
