@@ -12,6 +12,7 @@ import { takeInRows } from "./take-in";
 const ROWS_IN_TURN = 200;
 /** Decisions come first: between two turns this rests so many times as long as the last one took. */
 const REST_FACTOR = 2;
+const LONGEST_REST_MS = 1_000;
 
 /**
  * Brings every candidate up to the end of the label log, a turn each, in small transactions. This runs behind the
@@ -26,7 +27,7 @@ export async function followLog(ctx: Context, signal: AbortSignal): Promise<void
     for (const id of await candidatesBehind(ctx)) taken += await takeTurn(ctx, id);
     if (taken === 0) return;
     // Ends early when the server stops.
-    const restMs = REST_FACTOR * (performance.now() - startedMs);
+    const restMs = Math.min(LONGEST_REST_MS, REST_FACTOR * (performance.now() - startedMs));
     await sleep(restMs, undefined, { ref: false, signal }).catch(() => undefined);
   }
 }

@@ -17,7 +17,7 @@ import { takeInRows } from "@/lib/learning/take-in";
 import { createScorer } from "@/lib/scorer";
 import { signalSetOfScorer } from "@/lib/signals/read-signal-set";
 import { testWorld, type World } from "../support/world";
-import { mixedLife } from "./mixed-life";
+import { LONG_LIFE_MS, mixedLife } from "./mixed-life";
 
 let world: World;
 let supervisor: PersonActor;
@@ -72,25 +72,29 @@ async function expectFolded(id: string): Promise<void> {
 }
 
 describe("a candidate", () => {
-  test("lives the log from its first row and comes to the fold of it, bit for bit", async () => {
-    // Snapshots are kept every two hundred labels: what is replaced lies on both sides of one.
-    await life.begin(170);
-    await life.live(25);
-    const early = await add("Six together", "aggregate");
-    const twin = await add("The same again", "improper");
-    expect(early).toMatchObject({ role: "candidate", method: "aggregate" });
-    expect((await rowOf(twin.id)).logSeq).toBe(0);
-    for (let round = 0; round < 3; round++) {
-      await life.live(20);
-      await follow();
-    }
-    const held = await readScorerInUse(world.db);
-    for (const { id } of [early, twin]) {
-      expect(await rowOf(id)).toMatchObject({ logSeq: held.logSeq, role: "candidate" });
-      await expectFolded(id);
-    }
-    expect((await rowOf(twin.id)).state.equals(Buffer.from(held.scorer.snapshot()))).toBe(true);
-  });
+  test(
+    "lives the log from its first row and comes to the fold of it, bit for bit",
+    async () => {
+      // Snapshots are kept every two hundred labels: what is replaced lies on both sides of one.
+      await life.begin(170);
+      await life.live(25);
+      const early = await add("Six together", "aggregate");
+      const twin = await add("The same again", "improper");
+      expect(early).toMatchObject({ role: "candidate", method: "aggregate" });
+      expect((await rowOf(twin.id)).logSeq).toBe(0);
+      for (let round = 0; round < 3; round++) {
+        await life.live(20);
+        await follow();
+      }
+      const held = await readScorerInUse(world.db);
+      for (const { id } of [early, twin]) {
+        expect(await rowOf(id)).toMatchObject({ logSeq: held.logSeq, role: "candidate" });
+        await expectFolded(id);
+      }
+      expect((await rowOf(twin.id)).state.equals(Buffer.from(held.scorer.snapshot()))).toBe(true);
+    },
+    LONG_LIFE_MS,
+  );
 
   test("with the options of the scorer in use has lost exactly what that one lost", async () => {
     const [twin] = await world.db.select().from(scorers).where(eq(scorers.name, "The same again"));
@@ -182,22 +186,26 @@ describe("adding and dropping", () => {
   });
 });
 
-test("a new base rate lets every candidate begin anew from it", async () => {
-  const before = await world.db.select().from(scorers).where(eq(scorers.role, "candidate"));
-  await inTransaction(world.db, (tx) => rebaseScorer(world.ctx(supervisor, life.later()), tx, 0.04));
-  await life.live(10);
-  await follow();
-  const held = await readScorerInUse(world.db);
-  const after = await world.db.select().from(scorers).where(eq(scorers.role, "candidate"));
-  expect(after.map(({ name }) => name).sort()).toEqual(before.map(({ name }) => name).sort());
-  for (const row of after) {
-    expect(row.options.offset).toBe(held.scorer.options.offset);
-    expect(row.logSeq).toBe(held.logSeq);
-    await expectFolded(row.id);
-  }
-  const [dropped] = await world.db
-    .select({ count: count() })
-    .from(scorers)
-    .where(eq(scorers.role, "dropped"));
-  expect(dropped?.count).toBe(before.length + 1);
-});
+test(
+  "a new base rate lets every candidate begin anew from it",
+  async () => {
+    const before = await world.db.select().from(scorers).where(eq(scorers.role, "candidate"));
+    await inTransaction(world.db, (tx) => rebaseScorer(world.ctx(supervisor, life.later()), tx, 0.04));
+    await life.live(10);
+    await follow();
+    const held = await readScorerInUse(world.db);
+    const after = await world.db.select().from(scorers).where(eq(scorers.role, "candidate"));
+    expect(after.map(({ name }) => name).sort()).toEqual(before.map(({ name }) => name).sort());
+    for (const row of after) {
+      expect(row.options.offset).toBe(held.scorer.options.offset);
+      expect(row.logSeq).toBe(held.logSeq);
+      await expectFolded(row.id);
+    }
+    const [dropped] = await world.db
+      .select({ count: count() })
+      .from(scorers)
+      .where(eq(scorers.role, "dropped"));
+    expect(dropped?.count).toBe(before.length + 1);
+  },
+  LONG_LIFE_MS,
+);

@@ -15,7 +15,7 @@ import { showScorer } from "@/lib/learning/show-scorer";
 import { bestInHindsight, createScorer, type Label } from "@/lib/scorer";
 import { testWorld, type WaitingCase, type World } from "../support/world";
 import { labelsHeld } from "./labels-held";
-import { mixedLife } from "./mixed-life";
+import { LONG_LIFE_MS, mixedLife } from "./mixed-life";
 
 let world: World;
 let supervisor: PersonActor;
@@ -66,7 +66,7 @@ describe("once there are labels", () => {
     await life.live(25);
     await followLog(system(), signal);
     await fitHindsight(system(), signal);
-  });
+  }, LONG_LIFE_MS);
 
   test("a candidate with the options of the scorer in use has the same figures", async () => {
     const view = await look();

@@ -10,6 +10,9 @@ import { labelFromOutcomes } from "@/lib/learning/label-outcomes";
 import { newId } from "@/lib/new-id";
 import { type WaitingCase, WORLD_START, type World } from "../support/world";
 
+/** Hundreds of acts, each a transaction of its own, on a machine that has other things to do. */
+export const LONG_LIFE_MS = 240_000;
+
 /** A team that decides, takes back, corrects and is overturned, always in the same way, on a clock of its own. */
 export async function mixedLife(world: World, seed: number) {
   const reviewer = await world.person("reviewer");

@@ -17,7 +17,7 @@ import { replayLog } from "@/lib/learning/replay";
 import { followLog } from "@/lib/learning/shadow";
 import { cutByScorer, newestScores } from "@/lib/policy/recent-scores";
 import { testWorld, type WaitingCase, type World } from "../support/world";
-import { mixedLife } from "./mixed-life";
+import { LONG_LIFE_MS, mixedLife } from "./mixed-life";
 
 let world: World;
 let supervisor: PersonActor;
@@ -33,7 +33,7 @@ beforeAll(async () => {
   // Enough arrivals for a review line of the policy's own.
   waiting = await world.waitingCases(220, { seed: 9_000 });
   await life.live(60);
-});
+}, LONG_LIFE_MS);
 afterAll(() => stopRanking(world.db));
 
 const add = (name: string, method: CandidateInput["method"], options: CandidateInput["options"] = {}) =>
@@ -118,24 +118,32 @@ test("the trail tells of both, and of the two people", async () => {
   expect(JSON.parse(entries[2]?.facts ?? "")).toMatchObject({ version: held.version, logSeq: held.logSeq });
 });
 
-test("the one it replaced runs on beside it, with all that it predicted before", async () => {
-  const [demoted] = await world.db.select().from(scorers).where(eq(scorers.role, "candidate"));
-  const [retired] = await world.db.select().from(scorers).where(eq(scorers.role, "retired"));
-  expect(demoted).toMatchObject({ name: retired?.name, options: retired?.options });
-  expect(demoted?.state.equals(retired?.state as Buffer)).toBe(true);
-  await life.live(40);
-  await follow();
-  const [after] = await world.db.select().from(scorers).where(eq(scorers.role, "candidate"));
-  const held = await readScorerInUse(world.db);
-  expect(after?.logSeq).toBe(held.logSeq);
-  expect(held.cumulativeLoss).toBeCloseTo(await livedSum(), 9);
-  // Promoted back, it is bit for bit the scorer that had been in use all along.
-  const { approvalId } = await ask(demoted?.id ?? "");
-  await approve(approvalId);
-  await life.live(20);
-  const report = await replayLog(world.db);
-  expect(report).toMatchObject({ firstDifferingLoss: null, cumulativeLossEqual: true, differingStates: [] });
-});
+test(
+  "the one it replaced runs on beside it, with all that it predicted before",
+  async () => {
+    const [demoted] = await world.db.select().from(scorers).where(eq(scorers.role, "candidate"));
+    const [retired] = await world.db.select().from(scorers).where(eq(scorers.role, "retired"));
+    expect(demoted).toMatchObject({ name: retired?.name, options: retired?.options });
+    expect(demoted?.state.equals(retired?.state as Buffer)).toBe(true);
+    await life.live(40);
+    await follow();
+    const [after] = await world.db.select().from(scorers).where(eq(scorers.role, "candidate"));
+    const held = await readScorerInUse(world.db);
+    expect(after?.logSeq).toBe(held.logSeq);
+    expect(held.cumulativeLoss).toBeCloseTo(await livedSum(), 9);
+    // Promoted back, it is bit for bit the scorer that had been in use all along.
+    const { approvalId } = await ask(demoted?.id ?? "");
+    await approve(approvalId);
+    await life.live(20);
+    const report = await replayLog(world.db);
+    expect(report).toMatchObject({
+      firstDifferingLoss: null,
+      cumulativeLossEqual: true,
+      differingStates: [],
+    });
+  },
+  LONG_LIFE_MS,
+);
 
 test("a promoted scorer's own loss can be told from the one that was lived", async () => {
   const held = await rowOf((await readScorerInUse(world.db)).id);
@@ -170,26 +178,30 @@ test("the scorer of any version can be derived across promotions", async () => {
   );
 });
 
-test("of two who approve at once, one does it, and the queue follows a scorer of many parts too", async () => {
-  const { id } = await add("Raced", "aggregate");
-  await follow();
-  const { approvalId } = await ask(id);
-  await expect(ask(id)).rejects.toMatchObject({ code: "conflict" });
-  const other = await world.person("supervisor");
-  const all = await Promise.allSettled([
-    approve(approvalId),
-    approve(approvalId, other),
-    approve(approvalId, supervisor),
-  ]);
-  expect(all.filter(({ status }) => status === "fulfilled")).toHaveLength(1);
-  const [promotions] = await world.db.select({ count: count() }).from(trail).where(eq(trail.subjectId, id));
-  // Added and promoted, once each.
-  expect(promotions?.count).toBe(2);
-  const held = await readScorerInUse(world.db);
-  expect(held.id).toBe(id);
-  await expectRankedBy(held);
-  await expect(ask(id)).rejects.toMatchObject({ code: "conflict" });
-});
+test(
+  "of two who approve at once, one does it, and the queue follows a scorer of many parts too",
+  async () => {
+    const { id } = await add("Raced", "aggregate");
+    await follow();
+    const { approvalId } = await ask(id);
+    await expect(ask(id)).rejects.toMatchObject({ code: "conflict" });
+    const other = await world.person("supervisor");
+    const all = await Promise.allSettled([
+      approve(approvalId),
+      approve(approvalId, other),
+      approve(approvalId, supervisor),
+    ]);
+    expect(all.filter(({ status }) => status === "fulfilled")).toHaveLength(1);
+    const [promotions] = await world.db.select({ count: count() }).from(trail).where(eq(trail.subjectId, id));
+    // Added and promoted, once each.
+    expect(promotions?.count).toBe(2);
+    const held = await readScorerInUse(world.db);
+    expect(held.id).toBe(id);
+    await expectRankedBy(held);
+    await expect(ask(id)).rejects.toMatchObject({ code: "conflict" });
+  },
+  LONG_LIFE_MS,
+);
 
 test("a candidate that was dropped meanwhile is not promoted, and its wish still waits", async () => {
   const { id } = await add("Gone", "gradient");
