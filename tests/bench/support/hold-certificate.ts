@@ -1,7 +1,7 @@
 import { bestInHindsight, logLoss, type Scorer } from "@/lib/scorer";
 import type { LivedStream } from "./live-stream";
 
-export type CertificateCheck = { regret: number; certificate: number };
+type CertificateCheck = { regret: number; certificate: number };
 
 /**
  * The largest regret against weights that the scorer's certificate covers, beside the certificate; null where it has

@@ -12,7 +12,7 @@ export const TEST_FROM_DAY = 35;
 const ACCOUNTS_A_DAY = 100;
 const CHARGEBACK_AFTER_DAYS = 7;
 
-export type StreamPlan = {
+type StreamPlan = {
   /** First day on which fraud that nobody reviewed a week ago arrives as a chargeback; null: none ever does. */
   chargebacksFromDay: number | null;
   /** Passed payments of so many days ago, without a label, that are learned as legitimate each day. */
