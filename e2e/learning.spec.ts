@@ -3,6 +3,7 @@ import { and, eq } from "drizzle-orm";
 import { approvals } from "@/db/schema/approvals";
 import { scorers } from "@/db/schema/scorers";
 import { newId } from "@/lib/new-id";
+import { expectAccessible } from "./pages/accessibility";
 import { textOf } from "./pages/text";
 import { expect, test } from "./support/test";
 
@@ -46,6 +47,7 @@ test("a supervisor runs a scorer beside, cannot promote it alone, and the risk m
     await regularization.fill("some");
     await dialog.getByRole("button", { name: "Run it" }).click();
     await expect(dialog.getByText("needs a number")).toBeVisible();
+    await expectAccessible(theirs, "[role=dialog]");
     await regularization.fill("-1");
     await dialog.getByRole("button", { name: "Run it" }).click();
     await expect(regularization).toHaveAccessibleDescription(/must be between 1e-9 and 1e9/);
@@ -105,6 +107,7 @@ test("a supervisor runs a scorer beside, cannot promote it alone, and the risk m
     await expect(approver.getByRole("button", { name: /^Drop / })).toHaveCount(0);
     const article = waiting(approver, reason);
     await expect(article).toContainText(`Put “${name}” in use`);
+    await expectAccessible(approver);
     await article.getByRole("button", { name: "Approve" }).click();
     await approver.getByRole("dialog").getByRole("button", { name: "Approve" }).click();
     await expect(approver.getByText("Approved and done.")).toBeVisible();
