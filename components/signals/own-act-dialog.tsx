@@ -3,8 +3,7 @@ import { useMutation } from "@tanstack/react-query";
 import type { OwnSignalView } from "@/lib/signals/own-schema";
 import { type ApiProblem, api } from "../api";
 import { ReasonDialog } from "../learning/reason-dialog";
-import { Button } from "../ui/button";
-import { Dialog } from "../ui/dialog";
+import { FormDialog } from "../ui/form-dialog";
 import { Notice } from "../ui/notice";
 import type { OwnAct } from "./own-card";
 
@@ -45,21 +44,15 @@ function PutAwayDialog({ signal, onClose, onDone }: Omit<OwnActDialogProps, "act
     onSuccess: () => onDone(`${name} is put away.`),
   });
   return (
-    <Dialog
-      open
-      onOpenChange={onClose}
+    <FormDialog
       title={`Put away: ${name}`}
       description="It leaves this page and cannot be switched on again. Past scores that it took part in still name it."
-      footer={
-        <>
-          <Button onClick={onClose}>Cancel</Button>
-          <Button look="danger" busy={away.isPending} onClick={() => away.mutate()}>
-            Put away
-          </Button>
-        </>
-      }
+      verb="Put away"
+      busy={away.isPending}
+      onSend={() => away.mutate()}
+      onClose={onClose}
     >
       {away.error && <Notice kind="error">{away.error.message}</Notice>}
-    </Dialog>
+    </FormDialog>
   );
 }

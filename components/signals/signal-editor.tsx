@@ -1,11 +1,11 @@
 "use client";
 import { useMutation } from "@tanstack/react-query";
-import { type FormEvent, useId, useState } from "react";
+import { useState } from "react";
 import type { OwnSignalView } from "@/lib/signals/own-schema";
 import { type ApiProblem, api } from "../api";
 import { Button } from "../ui/button";
-import { Dialog } from "../ui/dialog";
 import { Field, Input, TextArea } from "../ui/field";
+import { FormDialog } from "../ui/form-dialog";
 import { Notice } from "../ui/notice";
 import { FormulaHelp } from "./formula-help";
 import { FormulaPlace } from "./formula-place";
@@ -25,7 +25,6 @@ type SignalEditorProps = {
 export function SignalEditor({ signal, onClose, onDone }: SignalEditorProps) {
   const [draft, setDraft] = useState<SignalDraft>(() => (signal ? draftOfSignal(signal) : EMPTY_DRAFT));
   const [asked, setAsked] = useState(false);
-  const formId = useId();
   const middle = readNumber(draft.middle);
   const reach = readNumber(draft.reach);
   const { preview, error, isBehind } = usePreview({
@@ -44,8 +43,7 @@ export function SignalEditor({ signal, onClose, onDone }: SignalEditorProps) {
     onSuccess: () =>
       onDone(signal ? "The draft is changed." : "Defined. Propose to switch it on when it is right."),
   });
-  const send = (event: FormEvent) => {
-    event.preventDefault();
+  const send = () => {
     setAsked(true);
     if (middle !== null && reach !== null) save.mutate({ middle, reach });
   };
@@ -57,110 +55,101 @@ export function SignalEditor({ signal, onClose, onDone }: SignalEditorProps) {
   const suggested = figures?.suggested ?? null;
   const others = save.error?.errors.every(({ path }) => !(path in draft));
   return (
-    <Dialog
-      open
+    <FormDialog
       wide
-      onOpenChange={onClose}
       title={signal ? `Edit ${signal.name}` : "Define a signal"}
       description="A draft counts for nothing. Attributes of a person such as age, sex, religion or nationality are never a signal."
-      footer={
-        <>
-          <Button onClick={onClose}>Cancel</Button>
-          <Button type="submit" form={formId} look="action" busy={save.isPending}>
-            {signal ? "Save the draft" : "Save as a draft"}
-          </Button>
-        </>
-      }
+      verb={signal ? "Save the draft" : "Save as a draft"}
+      busy={save.isPending}
+      onSend={send}
+      onClose={onClose}
     >
-      <form id={formId} onSubmit={send} noValidate className="flex flex-col gap-4">
-        <Field label="Name" hint="As it stands in the evidence." error={fault("name")} required>
-          <Input value={draft.name} maxLength={80} autoComplete="off" onChange={set("name")} />
-        </Field>
+      <Field label="Name" hint="As it stands in the evidence." error={fault("name")} required>
+        <Input value={draft.name} maxLength={80} autoComplete="off" onChange={set("name")} />
+      </Field>
+      <Field
+        label="Sentence for reviewers"
+        hint="What it measures and why it tells."
+        error={fault("sentence")}
+        required
+      >
+        <TextArea rows={2} value={draft.sentence} maxLength={400} onChange={set("sentence")} />
+      </Field>
+      <div className="flex flex-col gap-1.5">
         <Field
-          label="Sentence for reviewers"
-          hint="What it measures and why it tells."
-          error={fault("sentence")}
+          label="Formula"
+          hint="For example: amount > 250 and attributes.loyalty_years < 1"
+          error={isBehind ? null : (problem?.message ?? fault("formula"))}
           required
         >
-          <TextArea rows={2} value={draft.sentence} maxLength={400} onChange={set("sentence")} />
+          <TextArea
+            rows={3}
+            value={draft.formula}
+            maxLength={1000}
+            spellCheck={false}
+            autoCapitalize="off"
+            className="font-mono"
+            onChange={set("formula")}
+          />
         </Field>
-        <div className="flex flex-col gap-1.5">
+        {problem && !isBehind && <FormulaPlace formula={draft.formula} problem={problem} />}
+        <FormulaHelp />
+      </div>
+      <fieldset>
+        <legend className="text-small font-strong">Scale</legend>
+        <p className="mb-2 text-small text-soft">
+          The middle counts as 0, middle + reach as 1 and middle − reach as −1; what lies beyond stands at the
+          ends.
+        </p>
+        <div className="flex flex-wrap items-end gap-x-6 gap-y-3">
           <Field
-            label="Formula"
-            hint="For example: amount > 250 and attributes.loyalty_years < 1"
-            error={isBehind ? null : (problem?.message ?? fault("formula"))}
+            label="Middle"
+            error={asked && middle === null ? "needs a number" : fault("middle")}
             required
           >
-            <TextArea
-              rows={3}
-              value={draft.formula}
-              maxLength={1000}
-              spellCheck={false}
-              autoCapitalize="off"
-              className="font-mono"
-              onChange={set("formula")}
+            <Input
+              inputMode="decimal"
+              autoComplete="off"
+              className="max-w-36"
+              value={draft.middle}
+              onChange={set("middle")}
             />
           </Field>
-          {problem && !isBehind && <FormulaPlace formula={draft.formula} problem={problem} />}
-          <FormulaHelp />
-        </div>
-        <fieldset>
-          <legend className="text-small font-strong">Scale</legend>
-          <p className="mb-2 text-small text-soft">
-            The middle counts as 0, middle + reach as 1 and middle − reach as −1; what lies beyond stands at
-            the ends.
-          </p>
-          <div className="flex flex-wrap items-end gap-x-6 gap-y-3">
-            <Field
-              label="Middle"
-              error={asked && middle === null ? "needs a number" : fault("middle")}
-              required
+          <Field
+            label="Reach"
+            error={asked && reach === null ? "needs a number above 0" : fault("reach")}
+            required
+          >
+            <Input
+              inputMode="decimal"
+              autoComplete="off"
+              className="max-w-36"
+              value={draft.reach}
+              onChange={set("reach")}
+            />
+          </Field>
+          {suggested && !problem && (
+            <Button
+              onClick={() =>
+                setDraft({ ...draft, middle: String(suggested.middle), reach: String(suggested.reach) })
+              }
             >
-              <Input
-                inputMode="decimal"
-                autoComplete="off"
-                className="max-w-36"
-                value={draft.middle}
-                onChange={set("middle")}
-              />
-            </Field>
-            <Field
-              label="Reach"
-              error={asked && reach === null ? "needs a number above 0" : fault("reach")}
-              required
-            >
-              <Input
-                inputMode="decimal"
-                autoComplete="off"
-                className="max-w-36"
-                value={draft.reach}
-                onChange={set("reach")}
-              />
-            </Field>
-            {suggested && !problem && (
-              <Button
-                onClick={() =>
-                  setDraft({ ...draft, middle: String(suggested.middle), reach: String(suggested.reach) })
-                }
-              >
-                Take {numberText(suggested.middle)} ± {numberText(suggested.reach)}, as recent payments
-                suggest
-              </Button>
-            )}
-          </div>
-        </fieldset>
-        <section aria-label="On recent payments" aria-busy={isBehind} className="border-t border-rule pt-3">
-          <h3 className="mb-2 font-strong">On recent payments</h3>
-          {error && <Notice kind="error">{error.message}</Notice>}
-          {!figures && !error && (
-            <p className="text-soft">
-              {problem ? "Shown once the formula can be read." : "Write a formula to see what it measures."}
-            </p>
+              Take {numberText(suggested.middle)} ± {numberText(suggested.reach)}, as recent payments suggest
+            </Button>
           )}
-          {figures && <SignalFiguresView figures={figures} />}
-        </section>
-        {others && <Notice kind="error">{save.error?.message}</Notice>}
-      </form>
-    </Dialog>
+        </div>
+      </fieldset>
+      <section aria-label="On recent payments" aria-busy={isBehind} className="border-t border-rule pt-3">
+        <h3 className="mb-2 font-strong">On recent payments</h3>
+        {error && <Notice kind="error">{error.message}</Notice>}
+        {!figures && !error && (
+          <p className="text-soft">
+            {problem ? "Shown once the formula can be read." : "Write a formula to see what it measures."}
+          </p>
+        )}
+        {figures && <SignalFiguresView figures={figures} />}
+      </section>
+      {others && <Notice kind="error">{save.error?.message}</Notice>}
+    </FormDialog>
   );
 }
