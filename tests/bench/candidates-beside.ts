@@ -26,6 +26,7 @@ import { ensureInstalled } from "./support/install";
 const LABELS = 10_000;
 const LABELS_IN_ACT = 500;
 const LONGEST_HOLD_MS = 20;
+const IDLE_MS = 10_000;
 const CANDIDATES = [
   { name: "Six rules", method: "aggregate" },
   { name: "Implicit", method: "implicit" },
@@ -43,6 +44,7 @@ export async function run(): Promise<Row[]> {
       await createCandidate(contextOf(db, supervisor), CandidateInput.parse(candidate));
     const system = contextOf(db, { kind: "system", job: "bench" });
     const { signal } = new AbortController();
+    const idle = await measured(() => new Promise((resolve) => setTimeout(resolve, IDLE_MS)));
     const followed = await measured(() => followLog(system, signal));
     const fitted = await measured(() => fitHindsight(system, signal));
     const compared = await measured(() => readLearning(contextOf(db, supervisor), {}));
@@ -61,6 +63,12 @@ export async function run(): Promise<Row[]> {
         ok: true,
       },
       { name: "the comparison of all four", measured: ms(compared.ms), limit: "–", ok: true },
+      {
+        name: "an idle process on this machine, for comparison",
+        measured: ms(idle.longestHoldMs),
+        limit: "–",
+        ok: true,
+      },
       ...Object.entries({ followed, fitted, compared }).map(([name, { longestHoldMs }]) => ({
         name: `longest time others were held up (${name})`,
         measured: ms(longestHoldMs),
