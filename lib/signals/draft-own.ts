@@ -1,5 +1,6 @@
 import "server-only";
 import type { Tx } from "@/db/client";
+import { isDuplicate } from "@/db/errors";
 import { ownSignals } from "@/db/schema/learning";
 import { demandPerson } from "../auth/demand";
 import type { Context } from "../context";
@@ -37,7 +38,13 @@ type Draft = Omit<typeof ownSignals.$inferInsert, "key" | "state">;
 
 async function insert(tx: Tx, rows: readonly OwnRow[], draft: Draft): Promise<void> {
   const key = ownKey(draft.name, new Set(rows.map((row) => row.key)));
-  await tx.insert(ownSignals).values({ ...draft, key, state: "draft" });
+  try {
+    await tx.insert(ownSignals).values({ ...draft, key, state: "draft" });
+  } catch (error) {
+    // Two first drafts at once: there was no row yet to lock.
+    if (isDuplicate(error)) throw ruleBroken("Another signal has just been given this name", "name");
+    throw error;
+  }
 }
 
 function refuseTooMany(rows: readonly OwnRow[]): void {
