@@ -1,4 +1,4 @@
-import { eq, sql } from "drizzle-orm";
+import { asc, eq, sql } from "drizzle-orm";
 import { afterAll, beforeAll, expect, test } from "vitest";
 import { policies } from "@/db/schema/policies";
 import { termChanges } from "@/lib/policy/changes";
@@ -22,7 +22,7 @@ test("terms of a record from before payments could mature read as ignoring them,
     .where(eq(policies.version, 1));
   const [stored] = await db.select({ text: sql<string>`${policies.terms}` }).from(policies);
   expect(stored?.text).not.toContain("maturedUnlabelled");
-  const [record] = await listRecords(db, eq(policies.version, 1), policies.proposedAt);
+  const [record] = await listRecords(db, eq(policies.version, 1), asc(policies.proposedAt));
   for (const terms of [
     (await policyInForce(db, WORLD_START)).terms,
     (await newestApproved(db)).terms,
