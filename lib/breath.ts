@@ -1,6 +1,6 @@
 import "server-only";
 
-const LONGEST_HOLD_MS = 8;
+const LONGEST_HOLD_MS = 4;
 
 /** Lets the rest of the process have its turn now and then during a long loop. */
 export class Breath {

@@ -6,7 +6,7 @@ import type { Label } from "../scorer";
 import { fitVectors } from "../signals/read-signal-set";
 import type { SignalSet } from "../signals/signal-set";
 
-const PAGE_ROWS = 1_000;
+const PAGE_ROWS = 250;
 
 /** The label that holds now at each place of a span of the log where it is another than the one that came; 0: none. */
 export async function replacedLabels(

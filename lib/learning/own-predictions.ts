@@ -8,7 +8,7 @@ import type { Label } from "../scorer";
 import { replacedLabels } from "./labels-in-force";
 import { countUpTo } from "./rows";
 
-const PAGE_ROWS = 1_000;
+const PAGE_ROWS = 400;
 
 /** A label as it came: what holds now may be another. `isFinding`: somebody found it; else it matured by itself. */
 export type JudgedRow = {

@@ -9,7 +9,7 @@ import { lockCandidate } from "./candidate";
 import { takeInRows } from "./take-in";
 
 /** Few enough that state and losses are written in a moment. */
-const ROWS_IN_TURN = 200;
+const ROWS_IN_TURN = 100;
 /** Decisions come first: between two turns this rests so many times as long as the last one took. */
 const REST_FACTOR = 2;
 const LONGEST_REST_MS = 1_000;
