@@ -33,7 +33,7 @@ test("a supervisor runs a scorer beside, cannot promote it alone, and the risk m
     await expect(figures).toContainText(/Cumulative loss\d+\.\d/);
     await expect(figures).toContainText(/Drift(✓ steady|▲ |not yet)/);
     const inUse = table(theirs).getByRole("row").nth(1);
-    await expect(inUse).toContainText("In use since");
+    await expect(inUse).toContainText("In use, begun");
     await expect(inUse).toContainText(/0\.\d{4}–0\.\d{4}n \d/);
     await expect(theirs.getByRole("img", { name: /^Loss in nats at the end/ })).toBeVisible();
     await expect(theirs.getByRole("img", { name: /^Reliability of/ }).first()).toBeVisible();
@@ -117,8 +117,8 @@ test("a supervisor runs a scorer beside, cannot promote it alone, and the risk m
   await test.step("the new scorer is the one in use, and the one before it goes on beside", async () => {
     const inUse = table(approver).getByRole("row").nth(1);
     await expect(inUse).toContainText(name);
-    await expect(inUse).toContainText("In use since");
-    await expect(table(approver).getByRole("row").nth(2)).toContainText("Beside it since");
+    await expect(inUse).toContainText("In use, begun");
+    await expect(table(approver).getByRole("row").nth(2)).toContainText("Beside it, begun");
     const [now] = await db
       .select()
       .from(scorers)

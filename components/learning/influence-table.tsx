@@ -18,7 +18,7 @@ export function InfluenceTable({ view, personId, onRemove }: InfluenceTableProps
     <Table caption="Influence of each person's labels" captionHidden>
       <thead>
         <tr>
-          <Th>Person</Th>
+          <Th className="sticky left-0 bg-paper">Person</Th>
           <Th numeric>Labels</Th>
           <Th numeric>Corrected by others</Th>
           <Th numeric>Overturned by outcomes</Th>
@@ -31,7 +31,7 @@ export function InfluenceTable({ view, personId, onRemove }: InfluenceTableProps
       <tbody>
         {view.people.map((one) => (
           <tr key={one.person.id}>
-            <RowTh className="min-w-36">
+            <RowTh className="sticky left-0 min-w-36 bg-paper">
               {one.person.name}
               <Span of={one} />
             </RowTh>
@@ -46,7 +46,7 @@ export function InfluenceTable({ view, personId, onRemove }: InfluenceTableProps
               <Td>
                 {one.labels > 0 &&
                   (one.person.id === personId ? (
-                    <span className="text-small text-soft">Yours: somebody else proposes</span>
+                    <span className="block text-small text-soft">Yours: somebody else proposes</span>
                   ) : (
                     <Button
                       small

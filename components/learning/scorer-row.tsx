@@ -20,10 +20,10 @@ export function ScorerRow({ scorer, acts }: ScorerRowProps) {
     scorer;
   return (
     <tr>
-      <RowTh className="min-w-44 max-w-64">
+      <RowTh className="sticky left-0 min-w-40 max-w-64 bg-paper">
         <span className="font-strong">{name}</span>
         <span className="block text-small text-soft">
-          {role === "in_use" ? "In use" : "Beside it"} since <Time at={startedAt} as="day" />
+          {role === "in_use" ? "In use" : "Beside it"}, begun <Time at={startedAt} as="day" />
         </span>
         <span className="block text-small text-soft" title={METHOD_WORDS[method].does}>
           {METHOD_WORDS[method].name}; {optionsText(scorer.options)}

@@ -18,7 +18,7 @@ export function ScorerTable({ view: { scorers, capacityPerDay }, acts }: ScorerT
     <Table caption="Scorers compared on the same labels" captionHidden>
       <thead>
         <tr>
-          <Th>Scorer</Th>
+          <Th className="sticky left-0 bg-paper">Scorer</Th>
           <Th numeric>Labels predicted</Th>
           <Th numeric>Loss per label, nats</Th>
           <Th numeric>Regret, nats</Th>

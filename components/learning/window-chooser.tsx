@@ -47,7 +47,7 @@ export function WindowChooser({ fields, unreadable, candidates, onChoose }: Wind
           <option value={MONTH}>The last {MONTH_DAYS} days</option>
           {candidates.map(({ id, name, startedAt }) => (
             <option key={id} value={startedAt}>
-              Since “{name}” runs beside
+              Since “{name}” began
             </option>
           ))}
           <option value={DAYS}>Chosen days</option>

@@ -16,7 +16,7 @@ export function Figure({ label, value, unit, note }: FigureProps) {
       <dt className="text-small text-soft">{label}</dt>
       <dd className="font-mono text-figure tabular-nums">
         {value}
-        {unit && <span className="ml-1.5 font-sans text-small text-soft">{unit}</span>}
+        {unit && <span className="ml-1.5 inline-block font-sans text-small text-soft">{unit}</span>}
       </dd>
       {note && <dd className="text-small text-soft">{note}</dd>}
     </div>
