@@ -1,7 +1,7 @@
 import "server-only";
+import { Breath } from "../../breath";
 import type { Scorer, Step } from "../../scorer";
 import { countMove, type Movement, noMovement } from "./movement";
-import { Breath } from "./turns";
 import type { WaitingCases } from "./waiting-cases";
 
 /** Cases brought forward without a pause: a millisecond or two. */

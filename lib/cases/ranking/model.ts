@@ -1,6 +1,7 @@
 import "server-only";
 import type { Database } from "@/db/client";
 import { bytesToVector } from "@/db/columns";
+import { Breath } from "../../breath";
 import { type HeldScorer, readScorerInUse } from "../../learning/held-scorer";
 import { log } from "../../log";
 import type { Label, Step } from "../../scorer";
@@ -19,7 +20,7 @@ import {
   readScorerNews,
   readWaitingIds,
 } from "./read-waiting";
-import { Breath, Turns } from "./turns";
+import { Turns } from "./turns";
 import { RankingView } from "./view";
 import { WaitingCases } from "./waiting-cases";
 

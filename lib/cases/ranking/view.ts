@@ -1,10 +1,10 @@
 import "server-only";
+import { Breath } from "../../breath";
 import type { HeldScorer } from "../../learning/held-scorer";
 import type { PolicyInForce } from "../../policy/read";
 import type { Thresholds } from "../../policy/rules";
 import type { Reader } from "../visibility";
 import { inOrder, isBehind, keysOf, type Place, type Ranking } from "./order";
-import { Breath } from "./turns";
 import type { CaseFacts, WaitingCases } from "./waiting-cases";
 
 /** The waiting cases in their order at one version; index 0 is the best case. */
