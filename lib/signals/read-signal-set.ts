@@ -3,6 +3,7 @@ import { desc, eq, inArray } from "drizzle-orm";
 import type { Executor } from "@/db/client";
 import { bytesToVector } from "@/db/columns";
 import { signalSets, transactions } from "@/db/schema/transactions";
+import { Breath } from "../breath";
 import type { FormulaPayment } from "./formula-fields";
 import { extendVector, padVector, type SetDefinition, type SignalSet, signalSetOf } from "./signal-set";
 
@@ -57,7 +58,8 @@ export const FORMULA_COLUMNS = {
   attributes: transactions.attributes,
 } as const;
 
-const IN_STATEMENT = 1_000;
+/** So few that turning them into objects holds nobody up. */
+const IN_STATEMENT = 200;
 
 /**
  * Stored vectors as the set has them, in the order given. Own signals are always measured from the stored payment, at
@@ -75,11 +77,15 @@ export async function fitVectors(
     db,
     rows.map(({ transactionId }) => transactionId),
   );
-  return rows.map(({ transactionId, vector }) => {
+  const breath = new Breath();
+  const fitted: Float64Array[] = [];
+  for (const { transactionId, vector } of rows) {
     const payment = payments.get(transactionId);
     if (!payment) throw new Error(`Transaction ${transactionId} is not there`);
-    return extendVector(set, bytesToVector(vector), payment);
-  });
+    fitted.push(extendVector(set, bytesToVector(vector), payment));
+    await breath.take();
+  }
+  return fitted;
 }
 
 /** As `fitVectors`, of one. */
