@@ -54,10 +54,18 @@ export async function readScorerForScoring(db: Database): Promise<ScoringScorer>
   return fresh;
 }
 
+/** Scorers that may come into use one after the other while one waits for the lock. */
+const MOST_LOOKS = 5;
+
 /** Locks the scorer in use until the transaction ends. Case rows must be locked before it, the trail's head after. */
 export async function lockScorerInUse(tx: Tx): Promise<HeldScorer> {
-  const [row] = await tx.select().from(scorers).where(eq(scorers.inUse, 1)).limit(1).for("update");
-  return orThrow(row ? await toHeld(tx, row) : null);
+  for (let look = 1; look <= MOST_LOOKS; look++) {
+    const [row] = await tx.select().from(scorers).where(eq(scorers.inUse, 1)).limit(1).for("update");
+    if (row) return toHeld(tx, row);
+    // Whoever waited while another came into use goes on from the old one's place in the index, and misses a new
+    // one that stands before it there. Looking again begins at the front.
+  }
+  return orThrow(null);
 }
 
 /** Writes the advanced state back, once, at the end of the learning steps of a transaction. */
