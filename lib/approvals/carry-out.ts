@@ -4,7 +4,7 @@ import type { Context } from "../context";
 import { conflict } from "../errors";
 import { promoteScorer } from "../learning/promote";
 import { foldRemovalAhead, removeLabels } from "../learning/remove-labels";
-import type { FoldAhead } from "../learning/replace";
+import type { ReplacedAhead } from "../learning/replace";
 import { switchOwnSignal } from "../signals/switch-own";
 import type { ApprovalKind, ApprovalSubject } from "./codes";
 
@@ -18,7 +18,7 @@ type Subjects = {
 /** One line for every kind: the function of its domain, which runs in the approval's transaction. */
 const CARRY_OUT: {
   [K in ApprovalKind]:
-    | ((ctx: Context, tx: Tx, subject: Subjects[K], ahead: FoldAhead | undefined) => Promise<void>)
+    | ((ctx: Context, tx: Tx, subject: Subjects[K], ahead: ReplacedAhead | undefined) => Promise<void>)
     | null;
 } = {
   "scorer.promote": promoteScorer,
@@ -32,7 +32,7 @@ export async function foldAheadOf(
   db: Database,
   kind: ApprovalKind,
   subject: ApprovalSubject,
-): Promise<FoldAhead | undefined> {
+): Promise<ReplacedAhead | undefined> {
   return kind === "labels.remove" && "personId" in subject ? foldRemovalAhead(db, subject) : undefined;
 }
 
@@ -42,7 +42,7 @@ export async function carryOut<K extends ApprovalKind>(
   tx: Tx,
   kind: K,
   subject: ApprovalSubject,
-  ahead: FoldAhead | undefined,
+  ahead: ReplacedAhead | undefined,
 ): Promise<void> {
   const act = CARRY_OUT[kind];
   if (!act) throw conflict("This is not available here");

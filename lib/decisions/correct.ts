@@ -10,11 +10,11 @@ import { applyLearned } from "../cases/after-decision";
 import type { Context, PersonActor } from "../context";
 import { conflict, ruleBroken } from "../errors";
 import { evidenceOf, packEvidence } from "../learning/evidence";
-import { type HeldScorer, lockScorerInUse, saveScorer } from "../learning/held-scorer";
+import { type HeldScorer, lockScorerInUse, readScorerInUse, saveScorer } from "../learning/held-scorer";
 import { learnLabel } from "../learning/learn";
 import { markLabel } from "../learning/mark-label";
 import { type LabelInForce, labelsInForce } from "../learning/place";
-import { type FoldAhead, foldAhead, replaceLabels } from "../learning/replace";
+import { foldAhead, type ReplacedAhead, replaceLabels } from "../learning/replace";
 import { bookDecision, reverseBooking } from "../losses/book";
 import { newId } from "../new-id";
 import { policyInForce } from "../policy/read";
@@ -97,7 +97,7 @@ export async function correctDecision(ctx: Context, input: CorrectionInput): Pro
 }
 
 /** The long part of a correction, done before anything is locked. */
-async function foldAheadOf(ctx: Context, input: CorrectionInput): Promise<FoldAhead | undefined> {
+async function foldAheadOf(ctx: Context, input: CorrectionInput): Promise<ReplacedAhead | undefined> {
   const [row] = await ctx.db
     .select({ transactionId: cases.transactionId })
     .from(cases)
@@ -105,7 +105,8 @@ async function foldAheadOf(ctx: Context, input: CorrectionInput): Promise<FoldAh
   if (!row) return undefined;
   const inForce = (await labelsInForce(ctx.db, [row.transactionId])).get(row.transactionId);
   if (!inForce) return undefined;
-  return foldAhead(ctx.db, [{ place: inForce.place, label: labelOf(input.verdict) ?? 0 }]);
+  const held = await readScorerInUse(ctx.db);
+  return foldAhead(ctx.db, held, [{ place: inForce.place, label: labelOf(input.verdict) ?? 0 }]);
 }
 
 /** Neither one's own finding that stands, nor a case on which one's own first verdict has been corrected since. */
@@ -195,7 +196,7 @@ type Relabel = {
   decisionId: string;
   label: 1 | -1 | null;
   now: Date;
-  ahead: FoldAhead | undefined;
+  ahead: ReplacedAhead | undefined;
 };
 
 /** At the place of the label that holds; where none does, a new label at a place of its own. */

@@ -13,7 +13,7 @@ import { findRemovals, type Removal, type RemovalSpan } from "./find-removals";
 import { lockScorerInUse, readScorerInUse, saveScorer } from "./held-scorer";
 import { labelFromOutcomes, type OutcomeLabel } from "./label-outcomes";
 import { forgetEntities, markEntities } from "./mark-label";
-import { type FoldAhead, foldAhead, type Replacement, replaceLabels } from "./replace";
+import { foldAhead, type ReplacedAhead, type Replacement, replaceLabels } from "./replace";
 
 /** As it stands in an approval. */
 export type RemovalSubject = { personId: string; from: string | null; to: string | null };
@@ -28,10 +28,10 @@ export const spanOf = ({ personId, from, to }: RemovalSubject): RemovalSpan => (
 export async function foldRemovalAhead(
   db: Database,
   subject: RemovalSubject,
-): Promise<FoldAhead | undefined> {
-  const { logSeq } = await readScorerInUse(db);
-  const removals = await findRemovals(db, spanOf(subject), logSeq);
-  return removals.length === 0 ? undefined : foldAhead(db, removals);
+): Promise<ReplacedAhead | undefined> {
+  const held = await readScorerInUse(db);
+  const removals = await findRemovals(db, spanOf(subject), held.logSeq);
+  return removals.length === 0 ? undefined : foldAhead(db, held, removals);
 }
 
 /**
@@ -44,7 +44,7 @@ export async function removeLabels(
   ctx: Context,
   tx: Tx,
   subject: RemovalSubject,
-  ahead?: FoldAhead,
+  ahead?: ReplacedAhead,
 ): Promise<void> {
   const now = ctx.now();
   const agreeing = await lockAgreeingOutcomes(tx, subject);

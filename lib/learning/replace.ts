@@ -4,7 +4,7 @@ import type { Database, Tx } from "@/db/client";
 import { labelLog, scorerSnapshots } from "@/db/schema/scorers";
 import { type Label, restoreScorer } from "../scorer";
 import { type Folded, foldedBy, foldLog, foldStart } from "./fold";
-import { type HeldScorer, readScorerInUse } from "./held-scorer";
+import type { HeldScorer } from "./held-scorer";
 import { keepSnapshot, type LabelSource } from "./learn";
 
 /** What shall hold from now on at a place of the log; 0 takes the label away. */
@@ -21,16 +21,19 @@ export type FoldAhead = {
   snapshots: Folded["snapshots"];
 };
 
+/** With the labels by place that it holds although the log does not say so yet. */
+export type ReplacedAhead = FoldAhead & { labels: ReadonlyMap<number, Label | 0> };
+
 /** Folds the log with the replacements in place, outside any lock. */
 export async function foldAhead(
   db: Database,
+  held: HeldScorer,
   changes: readonly Pick<Replacement, "place" | "label">[],
-): Promise<FoldAhead> {
-  const held = await readScorerInUse(db);
+): Promise<ReplacedAhead> {
   const from = await foldStart(db, foldedBy(held), lowestPlace(changes));
   const labels = new Map(changes.map((change) => [change.place, change.label]));
   const { scorer, snapshots } = await foldLog(db, from, held.logSeq, labels);
-  return { scorerId: held.id, logSeq: held.logSeq, state: scorer.snapshot(), snapshots };
+  return { scorerId: held.id, logSeq: held.logSeq, state: scorer.snapshot(), snapshots, labels };
 }
 
 /**
@@ -42,7 +45,7 @@ export async function replaceLabels(
   held: HeldScorer,
   now: Date,
   changes: readonly Replacement[],
-  ahead?: FoldAhead,
+  ahead?: ReplacedAhead,
 ): Promise<void> {
   if (changes.length === 0) return;
   const seqBefore = held.logSeq;
@@ -53,7 +56,8 @@ export async function replaceLabels(
   await tx
     .delete(scorerSnapshots)
     .where(and(eq(scorerSnapshots.scorerId, held.id), gte(scorerSnapshots.place, lowest)));
-  const usable = ahead && (await isStillGood(tx, held, seqBefore, ahead)) ? ahead : null;
+  const usable =
+    ahead && isOfThese(changes, ahead) && (await isStillGood(tx, held, seqBefore, ahead)) ? ahead : null;
   const caughtUp = usable
     ? await foldLog(
         tx,
@@ -94,6 +98,12 @@ async function appendRows(
       };
     }),
   );
+}
+
+/** Whether the fold holds just what is replaced within it: between the two, findings may have come or gone. */
+function isOfThese(changes: readonly Replacement[], { logSeq, labels }: ReplacedAhead): boolean {
+  const within = changes.filter(({ place }) => place <= logSeq);
+  return within.length === labels.size && within.every(({ place, label }) => labels.get(place) === label);
 }
 
 /** Labels that only came behind the fold can be caught up with; a replacement among them cannot. */

@@ -13,11 +13,13 @@ import type { PersonActor } from "@/lib/context";
 import { correctDecision } from "@/lib/decisions/correct";
 import { decideCase } from "@/lib/decisions/decide";
 import { undoDecision } from "@/lib/decisions/undo";
+import { findRemovals } from "@/lib/learning/find-removals";
 import { readScorerInUse } from "@/lib/learning/held-scorer";
 import { RemovalPreview } from "@/lib/learning/influence-schema";
 import { previewRemoval } from "@/lib/learning/preview-removal";
 import { proposeRemoval } from "@/lib/learning/propose-removal";
-import { foldRemovalAhead, removeLabels } from "@/lib/learning/remove-labels";
+import { foldRemovalAhead, removeLabels, spanOf } from "@/lib/learning/remove-labels";
+import { foldAhead } from "@/lib/learning/replace";
 import { replayLog } from "@/lib/learning/replay";
 import { sendOutcome } from "../outcomes/payments";
 import { testWorld, type WaitingCase, WORLD_START, type World } from "../support/world";
@@ -382,6 +384,20 @@ describe("after their labels were taken out", () => {
     const ctx = team.world.ctx(team.riskManager, later(team));
     await inTransaction(team.world.db, (tx) => removeLabels(ctx, tx, subject, ahead));
     expect((await logOf(byIll)).map(({ kind }) => kind)).toEqual(["decision", "removal"]);
+    await replays();
+  });
+
+  test("a fold made ahead of fewer labels than go in the end is not adopted", async () => {
+    const made = await Promise.all([one(), one()]);
+    for (const on of made) await decide(team, team.ill, on, true);
+    const { db } = team.world;
+    const held = await readScorerInUse(db);
+    const subject = { personId: team.ill.personId, from: null, to: null };
+    // As where they labelled once more while their findings were looked for.
+    const found = await findRemovals(db, spanOf(subject), held.logSeq - 1);
+    const ahead = await foldAhead(db, held, found);
+    const ctx = team.world.ctx(team.riskManager, later(team));
+    await inTransaction(db, (tx) => removeLabels(ctx, tx, subject, ahead));
     await replays();
   });
 });
