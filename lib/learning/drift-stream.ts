@@ -2,7 +2,7 @@ import "server-only";
 import { and, asc, between, desc, eq, gt, isNotNull, isNull, max } from "drizzle-orm";
 import type { Executor } from "@/db/client";
 import { bytesToVector } from "@/db/columns";
-import { candidateLosses, driftWarnings } from "@/db/schema/learning";
+import { driftWarnings } from "@/db/schema/learning";
 import { labelLog, scorers } from "@/db/schema/scorers";
 import type { DriftKind } from "./codes";
 import { type LivedLabel, WARM_UP_LABELS } from "./drift-rules";
@@ -30,7 +30,7 @@ export async function readDriftStream(db: Executor): Promise<DriftStream | null>
     .where(eq(scorers.inUse, 1))
     .limit(1);
   if (!scorer) return null;
-  const from = Math.max(await lastRowOfWarmUp(db), await lastRowAsCandidate(db, scorer.id));
+  const from = Math.max(await lastRowOfWarmUp(db), await lastRowBeforeIt(db));
   const rows = await db
     .select({ seq: labelLog.seq, at: labelLog.at, label: labelLog.label, loss: labelLog.loss })
     .from(labelLog, IN_ORDER)
@@ -52,12 +52,12 @@ async function lastRowOfWarmUp(db: Executor): Promise<number> {
   return row?.seq ?? Number.MAX_SAFE_INTEGER;
 }
 
-/** A scorer that was promoted predicted as a candidate up to here. */
-async function lastRowAsCandidate(db: Executor, scorerId: string): Promise<number> {
+/** What the scorers before it lived says nothing about this one, and has been warned of in their time. */
+async function lastRowBeforeIt(db: Executor): Promise<number> {
   const [row] = await db
-    .select({ seq: max(candidateLosses.seq) })
-    .from(candidateLosses)
-    .where(eq(candidateLosses.scorerId, scorerId));
+    .select({ seq: max(scorers.logSeq) })
+    .from(scorers)
+    .where(eq(scorers.role, "retired"));
   return row?.seq ?? 0;
 }
 

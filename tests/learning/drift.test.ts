@@ -8,6 +8,7 @@ import type { PersonActor } from "@/lib/context";
 import { lockScorerInUse, saveScorer } from "@/lib/learning/held-scorer";
 import { learnLabel } from "@/lib/learning/learn";
 import { raiseDriftWarnings } from "@/lib/learning/raise-drift-warnings";
+import { rebaseScorer } from "@/lib/learning/rebase";
 import { seeDriftWarning } from "@/lib/learning/see-drift-warning";
 import { showDrift } from "@/lib/learning/show-drift";
 import { CATALOGUE, DIMENSION, OFFSETS } from "@/lib/signals/catalogue";
@@ -161,6 +162,15 @@ describe("on the label log of an installation", () => {
     await live(150, "flood");
     await raiseDriftWarnings(system());
     expect((await warnings()).length).toBeGreaterThan(before);
+  });
+
+  test("a scorer that takes its place is not warned of for what the one before it lived", async () => {
+    const before = (await warnings()).length;
+    await inTransaction(world.db, (tx) => rebaseScorer(world.ctx(supervisor, now()), tx, 0.04));
+    await live(3, "first");
+    await raiseDriftWarnings(system());
+    expect((await warnings()).length).toBe(before);
+    expect((await showDrift(world.ctx(supervisor, now()))).watched).toBe(3);
   });
 
   test("an unknown warning is not found", async () => {
