@@ -14,6 +14,8 @@ export async function refuseProposal(ctx: Context, input: RefuseApprovalInput): 
   return writeOnce(ctx, async (tx) => {
     const { id, kind, subject, proposedBy } = await lockWaiting(tx, input.id);
     if (proposedBy === person.personId) throw forbidden("You proposed this; you can withdraw it");
+    if ("personId" in subject && subject.personId === person.personId)
+      throw forbidden("These labels are yours; somebody else has to settle their removal");
     await settle(tx, id, "refused", person.personId, ctx.now(), input.reason);
     await appendTrail(ctx, tx, {
       act: "approval.refused",

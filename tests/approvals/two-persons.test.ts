@@ -123,9 +123,12 @@ test("of two who settle at once, one does it and the other hears so", async () =
   expect(await trailOf(id)).toHaveLength(2);
 });
 
-test("who gave the labels neither proposes nor approves their removal", async () => {
+test("who gave the labels neither proposes, approves nor refuses their removal", async () => {
   const subject = { personId: supervisor.personId, from: null, to: null };
   await expect(wish(supervisor, subject, "labels.remove")).rejects.toMatchObject({ code: "forbidden" });
   const { approvalId: id } = await wish(other, subject, "labels.remove");
   await expect(approveProposal(world.ctx(supervisor), { id })).rejects.toMatchObject({ code: "forbidden" });
+  await expect(refuseProposal(world.ctx(supervisor), { id, reason: "No" })).rejects.toMatchObject({
+    code: "forbidden",
+  });
 });
