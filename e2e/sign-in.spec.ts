@@ -24,13 +24,17 @@ const MENUS: Record<Role, { begins: string; offers: string[]; refuses: string }>
   reviewer: { begins: "/desk", offers: ["Desk", "Cases"], refuses: "/floor" },
   supervisor: {
     begins: "/floor",
-    offers: ["Desk", "Cases", "Floor", "Policy", "Losses", "Trail", "Intake"],
+    offers: ["Desk", "Cases", "Floor", "Policy", "Learning", "Signals", "Losses", "Trail", "Intake"],
     refuses: "/people",
   },
-  risk_manager: { begins: "/losses", offers: ["Cases", "Policy", "Losses", "Trail"], refuses: "/desk" },
+  risk_manager: {
+    begins: "/losses",
+    offers: ["Cases", "Policy", "Learning", "Signals", "Losses", "Trail"],
+    refuses: "/desk",
+  },
   auditor: {
     begins: "/trail",
-    offers: ["Cases", "Policy", "Losses", "Trail", "Intake", "People"],
+    offers: ["Cases", "Policy", "Learning", "Signals", "Losses", "Trail", "Intake", "People"],
     refuses: "/desk",
   },
   administrator: { begins: "/people", offers: ["Intake", "People"], refuses: "/cases" },
