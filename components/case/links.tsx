@@ -59,23 +59,27 @@ function LinkTable({ group, showScore, ticks }: { group: LinkGroup; showScore: b
         <caption className="sr-only">{BY_WORDS[group.by]}</caption>
         <colgroup>
           {ticks && <col className="w-7" />}
-          <col className="w-24 sm:w-32" />
-          <col className="w-24 sm:w-28" />
+          <col className="w-22 sm:w-32" />
+          <col className="sm:w-28" />
           <col className="w-28 sm:w-40" />
           <col className="max-sm:hidden" />
-          <col />
+          <col className="max-sm:hidden" />
           {showScore && <col className="w-20 max-sm:hidden" />}
         </colgroup>
         <thead className="sr-only">
           <tr>
             {ticks && <th scope="col">Decide together</th>}
             <th scope="col">Case</th>
-            <th scope="col">Time</th>
+            <th scope="col">
+              Time<span className="sm:hidden"> and finding</span>
+            </th>
             <th scope="col">Amount</th>
             <th scope="col" className="max-sm:hidden">
               Channel
             </th>
-            <th scope="col">Finding</th>
+            <th scope="col" className="max-sm:hidden">
+              Finding
+            </th>
             {showScore && (
               <th scope="col" className="max-sm:hidden">
                 Fraud, %
@@ -123,12 +127,14 @@ function LinkRow({ link, showScore, ticks }: { link: LinkedCase; showScore: bool
       </th>
       <td className="py-1 pr-3">
         <Time at={link.occurredAt} as="short" />
+        {/* A narrow screen has no room for a column of it. */}
+        <span className="block sm:hidden">{findingOf(link)}</span>
       </td>
-      <td className="py-1 pr-3 text-right">
+      <td className="py-1 text-right sm:pr-3">
         <Amount amount={link.amount} currency={link.currency} aligned />
       </td>
       <td className="py-1 pr-3 max-sm:hidden">{CHANNEL_WORDS[link.channel]}</td>
-      <td className="py-1 pr-3">{findingOf(link)}</td>
+      <td className="py-1 pr-3 max-sm:hidden">{findingOf(link)}</td>
       {showScore && (
         <td className="py-1 text-right max-sm:hidden">
           <span title="Score when it was last taken">
