@@ -30,7 +30,7 @@ export function UndoDialog({ sent, onClose, onUndo }: UndoDialogProps) {
       footer={
         <>
           <Button onClick={onClose}>Leave it</Button>
-          <Button look="action" autoFocus onClick={confirm}>
+          <Button look="action" data-first-focus="" onClick={confirm}>
             Take it back
           </Button>
         </>

@@ -1,4 +1,5 @@
 "use client";
+import Link from "next/link";
 import { useId, useState } from "react";
 import type { ApprovalView } from "@/lib/approvals/schema";
 import { api } from "../api";
@@ -42,7 +43,17 @@ export function ApprovalCard({ approval, names, personId, maySettle, onDone }: A
         </p>
       </header>
       <p className="max-w-[70ch] whitespace-pre-line">{reason}</p>
-      <p className="max-w-[70ch] text-small text-soft">Once approved: {APPROVAL_DOES[kind]}</p>
+      <p className="max-w-[70ch] text-small text-soft">
+        Once approved: {APPROVAL_DOES[kind]}
+        {"signalId" in approval.subject && (
+          <>
+            {" "}
+            <Link href="/signals" className="underline decoration-edge underline-offset-2">
+              Read its formula
+            </Link>
+          </>
+        )}
+      </p>
       <div className="flex flex-wrap items-center gap-2">
         <Button look="action" {...barred} onClick={ask("approve")}>
           Approve
@@ -59,7 +70,7 @@ export function ApprovalCard({ approval, names, personId, maySettle, onDone }: A
       </div>
       {asking === "approve" && (
         <ConfirmDialog
-          title="Approve this?"
+          title={<>{title}?</>}
           says={`What ${proposedBy.name} proposed is done at once, by your approval. ${APPROVAL_DOES[kind]}`}
           verb="Approve"
           act={() => api("POST /api/approvals/{id}/approve", { id })}
@@ -69,7 +80,7 @@ export function ApprovalCard({ approval, names, personId, maySettle, onDone }: A
       )}
       {asking === "refuse" && (
         <ReasonDialog
-          title="Refuse this?"
+          title={<>Refuse this: {title}?</>}
           says="Nothing changes. The proposal stays on record as refused, with your reason."
           hint={`${proposedBy.name} reads it, and so does whoever looks later.`}
           verb="Refuse"

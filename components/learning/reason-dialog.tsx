@@ -7,7 +7,7 @@ import { FormDialog } from "../ui/form-dialog";
 import { Notice } from "../ui/notice";
 
 type ReasonDialogProps = {
-  title: string;
+  title: ReactNode;
   /** What will happen. */
   says: ReactNode;
   /** Who will read the reason. */

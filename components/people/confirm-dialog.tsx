@@ -1,12 +1,13 @@
 "use client";
 import { useMutation } from "@tanstack/react-query";
+import type { ReactNode } from "react";
 import type { ApiProblem } from "../api";
 import { Button } from "../ui/button";
 import { Dialog } from "../ui/dialog";
 import { Notice } from "../ui/notice";
 
 type ConfirmDialogProps<Answer> = {
-  title: string;
+  title: ReactNode;
   says: string;
   verb: string;
   act: () => Promise<Answer>;
@@ -26,7 +27,7 @@ export function ConfirmDialog<Answer>(props: ConfirmDialogProps<Answer>) {
       description={says}
       footer={
         <>
-          <Button onClick={onClose} autoFocus>
+          <Button onClick={onClose} data-first-focus="">
             Cancel
           </Button>
           <Button look="action" busy={confirmed.isPending} onClick={() => confirmed.mutate()}>

@@ -33,7 +33,7 @@ export function ApproveDialog({ proposal, onClose, onDone }: ApproveDialogProps)
       description={`It becomes the next version, by your approval of what ${proposal.proposedBy?.name ?? "the system"} proposed.`}
       footer={
         <>
-          <Button onClick={onClose} autoFocus>
+          <Button onClick={onClose} data-first-focus="">
             Cancel
           </Button>
           <Button

@@ -17,6 +17,9 @@ type DialogProps = {
   opaque?: boolean;
 };
 
+/** Marks the control that has the focus when the dialog opens, where that is not the first. */
+const FIRST = "[data-first-focus]";
+
 export function Dialog(props: DialogProps) {
   const { open, onOpenChange, title, description, children, footer } = props;
   const { mustAnswer = false, wide = false, opaque = false } = props;
@@ -28,8 +31,14 @@ export function Dialog(props: DialogProps) {
         <Radix.Overlay className={`fixed inset-0 z-40 ${opaque ? "bg-sunk" : "bg-[rgb(20_18_14/0.45)]"}`} />
         <Radix.Content
           {...(description === undefined && { "aria-describedby": undefined })}
-          onOpenAutoFocus={() => {
+          onOpenAutoFocus={(event) => {
+            // Not by autoFocus, which moves the focus before anybody has noted where it came from.
             before.current = document.activeElement;
+            const first =
+              event.currentTarget instanceof HTMLElement && event.currentTarget.querySelector(FIRST);
+            if (!(first instanceof HTMLElement)) return;
+            event.preventDefault();
+            first.focus();
           }}
           onCloseAutoFocus={(event) => {
             // These dialogs are opened by keys as often as by buttons, so there is no trigger to go back to.
