@@ -98,14 +98,17 @@ function Bar({ row, onOpen }: { row: BarRow; onOpen?: () => void }) {
       <span
         className={`relative block truncate pr-14 sm:absolute sm:max-w-[calc(50%-0.75rem)] sm:pr-0 ${right ? "sm:right-[calc(50%+0.5rem)]" : "sm:left-[calc(50%+0.5rem)]"}`}
       >
-        {onOpen ? (
-          <button type="button" onClick={onOpen} className="underline decoration-edge underline-offset-2">
-            {row.name}
-          </button>
-        ) : (
-          <span className={row.kind === "total" ? "font-strong" : ""}>{row.name}</span>
-        )}
-        {row.reading && <span className="text-soft">, {row.reading}</span>}
+        {/* On the ground's colour, so that the lines pass behind the words. */}
+        <span className="bg-paper">
+          {onOpen ? (
+            <button type="button" onClick={onOpen} className="underline decoration-edge underline-offset-2">
+              {row.name}
+            </button>
+          ) : (
+            <span className={row.kind === "total" ? "font-strong" : ""}>{row.name}</span>
+          )}
+          {row.reading && <span className="text-soft">, {row.reading}</span>}
+        </span>
       </span>
       <span
         aria-hidden="true"

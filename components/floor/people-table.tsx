@@ -43,7 +43,7 @@ export function PeopleTable({ people, onDone }: PeopleTableProps) {
               <Td numeric>{person.decidedToday}</Td>
               <Td>
                 {person.claimed > 0 && (
-                  <Button small onClick={() => setReleasing(person)}>
+                  <Button small className="whitespace-nowrap" onClick={() => setReleasing(person)}>
                     Take back
                   </Button>
                 )}

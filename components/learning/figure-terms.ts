@@ -12,7 +12,7 @@ export const FIGURE_TERMS = [
   {
     term: "Regret",
     means:
-      "What was lost beyond the best that unchanging weights could have done, had they been known from the first label. Below 0 it did better than those. “At most” is what the method guarantees.",
+      "What was lost beyond the best that unchanging weights could have done, had they been known from the first label. Below 0 it did better than those. “At most” is what the method guarantees for the labels as they stand in the log now; what was lived with labels that were taken back or replaced since is not in it.",
   },
   {
     term: "Brier",
@@ -37,5 +37,10 @@ export const FIGURE_TERMS = [
     term: "Small print",
     means:
       "Beneath each figure its 95 % interval and n, the labels it is over. Where intervals overlap widely, the labels do not yet tell the scorers apart.",
+  },
+  {
+    term: "After a change of signals or base rate",
+    means:
+      "The scorer in use is judged by what was predicted at the time; one that runs beside it has lived the whole log again with the change. Compare them on labels since the change.",
   },
 ] as const;

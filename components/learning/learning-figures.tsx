@@ -48,7 +48,7 @@ export function LearningFigures({ view, drift }: LearningFiguresProps) {
                   , reckoned <Time at={hindsight.computedAt} as="short" />
                 </>
               )}
-              {certificate !== null && <>; at most {natsText(certificate)}</>}
+              {certificate !== null && <>; as the log stands at most {natsText(certificate)}</>}
             </>
           )
         }

@@ -10,7 +10,7 @@ import {
 export const approvalEndpoints = {
   "GET /api/approvals": {
     summary: "What needs a second person: promotions of scorers, own signals, removals of labels",
-    may: "scorer.read",
+    may: "approvals.read",
     input: ApprovalsInput,
     output: ApprovalsView,
   },

@@ -13,7 +13,7 @@ const SHOWN = 100;
 
 /** What waits for a second person or has been settled, newest first. */
 export async function listApprovals(ctx: Context, input: ApprovalsInput): Promise<ApprovalsView> {
-  demand(ctx, "scorer.read");
+  demand(ctx, "approvals.read");
   return { items: await read(ctx.db, input.state && eq(approvals.state, input.state)) };
 }
 

@@ -30,6 +30,9 @@ export const CAPABILITIES = {
   "policy.approve": { roles: ["supervisor", "risk_manager"], scope: "policy:write" },
   "scorer.read": { roles: ["supervisor", "risk_manager", "auditor"], scope: "reports:read" },
   "scorer.manage": { roles: ["supervisor"] },
+  // What named people did, and what is said of them, is for people and for no machine.
+  "influence.read": { roles: ["supervisor", "risk_manager", "auditor"] },
+  "approvals.read": { roles: ["supervisor", "risk_manager", "auditor"] },
   "approvals.settle": { roles: ["supervisor", "risk_manager"] },
   "losses.read": { roles: ["supervisor", "risk_manager", "auditor"], scope: "reports:read" },
   "summary.manage": { roles: ["risk_manager"] },

@@ -62,13 +62,13 @@ export const learningEndpoints = {
   },
   "GET /api/learning/influence": {
     summary: "What each person's labels do to the scorer in use; while it is reckoned anew, the last figures",
-    may: "scorer.read",
+    may: "influence.read",
     input: InfluenceInput,
     output: InfluenceView,
   },
   "GET /api/learning/removals/preview": {
     summary: "What removing one person's labels would do to the scorer in use",
-    may: "scorer.read",
+    may: "approvals.settle",
     input: RemovalPreviewInput,
     output: RemovalPreview,
   },

@@ -21,7 +21,7 @@ const WAIT_MS = 1_500;
  * anew in the background, by one server at a time, and the last ones are shown meanwhile.
  */
 export async function readInfluence(ctx: Context): Promise<InfluenceView> {
-  demand(ctx, "scorer.read");
+  demand(ctx, "influence.read");
   const held = await readScorerInUse(ctx.db);
   let run = await newestRun(ctx.db);
   if (!isOf(run, held) && isRested(run, ctx.now())) {

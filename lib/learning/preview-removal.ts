@@ -11,7 +11,7 @@ import { effectOfRemoving } from "./without-labels";
 
 /** What a removal would do if it were carried out now, folded in full. @throws KnownError not_found, invalid */
 export async function previewRemoval(ctx: Context, input: RemovalPreviewInput): Promise<RemovalPreview> {
-  demand(ctx, "scorer.read");
+  demand(ctx, "approvals.settle");
   const { person, subject } = await checkedSubject(ctx.db, input);
   const held = await readScorerInUse(ctx.db);
   const removals = await findRemovals(ctx.db, spanOf(subject), held.logSeq);
