@@ -1,6 +1,7 @@
 import "server-only";
 import { setTimeout as sleep } from "node:timers/promises";
 import { and, asc, eq, gt, inArray, isNull, ne } from "drizzle-orm";
+import type { Tx } from "@/db/client";
 import { cases } from "@/db/schema/cases";
 import { scores, signalSets } from "@/db/schema/transactions";
 import { inTransaction } from "@/db/tx";
@@ -9,10 +10,11 @@ import type { Context } from "../context";
 import { type HeldScorer, readScorerInUse } from "../learning/held-scorer";
 import { recomputeVectors } from "../signals/recompute";
 import { UNDECIDED_STATES } from "./codes";
-import { casesChanged } from "./notify";
+import { casesRescored } from "./notify";
 import { writeScores } from "./refresh";
 
-const CASES_IN_BATCH = 200;
+/** So long a decision on one of them may have to wait. */
+const CASES_IN_BATCH = 40;
 /** Decisions come first: between two batches this rests so many times as long as the last one took. */
 const REST_FACTOR = 3;
 /** A payment that was being scored while the set changed may open its case a little later. */
@@ -45,26 +47,32 @@ async function rescoreAll(ctx: Context, held: HeldScorer, signal: AbortSignal): 
   for (let after = 0; ; ) {
     if (signal.aborted) return false;
     const startedMs = performance.now();
-    const page = await findOfOtherSets(ctx, held, after);
+    const now = await readScorerInUse(ctx.db);
+    if (now.signals.version !== held.signals.version) return false;
+    const page = await inTransaction(ctx.db, (tx) => rescorePage(ctx, tx, now, after));
     const last = page.at(-1);
     if (!last) return true;
     after = last.number;
-    const now = await readScorerInUse(ctx.db);
-    if (now.signals.version !== held.signals.version) return false;
-    const vectors = await recomputeVectors(
-      ctx.db,
-      page.map(({ transactionId }) => transactionId),
-      now.signals,
-    );
-    await inTransaction(ctx.db, (tx) => writeScores(ctx, tx, now, page, vectors));
-    casesChanged(page.map(({ caseId }) => caseId));
+    casesRescored(page.map(({ caseId }) => caseId));
     const restMs = REST_FACTOR * (performance.now() - startedMs);
     await sleep(restMs, undefined, { ref: false, signal }).catch(() => undefined);
   }
 }
 
-function findOfOtherSets({ db }: Context, { signals }: HeldScorer, afterNumber: number) {
-  return db
+/** Locks the cases before their signals are taken anew: a refresh in between must not be followed by an older one. */
+async function rescorePage(ctx: Context, tx: Tx, held: HeldScorer, afterNumber: number) {
+  const page = await lockOfOtherSets(tx, held, afterNumber);
+  const vectors = await recomputeVectors(
+    ctx.db,
+    page.map(({ transactionId }) => transactionId),
+    held.signals,
+  );
+  await writeScores(ctx, tx, held, page, vectors);
+  return page;
+}
+
+function lockOfOtherSets(tx: Tx, { signals }: HeldScorer, afterNumber: number) {
+  return tx
     .select({ caseId: cases.id, number: cases.number, transactionId: cases.transactionId })
     .from(cases, { forceIndex: ["cases_number_unique"] })
     .innerJoin(scores, eq(scores.id, cases.scoreId))
@@ -76,5 +84,6 @@ function findOfOtherSets({ db }: Context, { signals }: HeldScorer, afterNumber: 
       ),
     )
     .orderBy(asc(cases.number))
-    .limit(CASES_IN_BATCH);
+    .limit(CASES_IN_BATCH)
+    .for("update");
 }
