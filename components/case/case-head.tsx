@@ -52,7 +52,7 @@ export function CaseHead({ view, headingRef, level = 2 }: CaseHeadProps) {
           Payment {PAYMENT_STATE_WORDS[transaction.paymentState].toLowerCase()}
           {transaction.holdExpiresAt && (
             <>
-              , <TimeLeft until={transaction.holdExpiresAt} before="hold ends in" after="hold ended" />
+              , <TimeLeft until={transaction.holdExpiresAt} before="hold ends in" after="hold ended" ago />
             </>
           )}
         </span>

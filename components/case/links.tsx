@@ -50,7 +50,8 @@ export function Links({ links, evidence, ticks, level = 4 }: LinksProps) {
 function LinkTable({ group, showScore, ticks }: { group: LinkGroup; showScore: boolean; ticks?: Ticks }) {
   return (
     <section
-      className="overflow-x-auto"
+      // Room at the sides for the ring of what has the focus, which scrolling would cut.
+      className="-mx-1 overflow-x-auto px-1"
       aria-label={`${BY_WORDS[group.by]}, payments`}
       // biome-ignore lint/a11y/noNoninteractiveTabindex: what scrolls must be reachable by keyboard (WCAG 2.1.1)
       tabIndex={0}

@@ -34,7 +34,7 @@ export function WithoutSignals({ lines, past = false }: WithoutSignalsProps) {
         </span>
       </p>
       {lines.length > 0 && (
-        <ul className="grid gap-x-6 lg:grid-cols-3">
+        <ul className="grid gap-x-10 lg:grid-cols-[repeat(3,auto)] lg:justify-start">
           {lines.map((line) => (
             <li key={line.key}>
               Without <span className="font-strong">{line.name}</span>:{" "}

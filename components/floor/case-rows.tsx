@@ -97,7 +97,7 @@ export function CaseRows({ items, selection, sorting, busy }: CaseRowsProps) {
               <TimeLeft until={item.dueAt} before="" after="overdue by" />
             </Td>
             <Td>
-              {item.holdExpiresAt ? <TimeLeft until={item.holdExpiresAt} before="" after="ended" /> : "–"}
+              {item.holdExpiresAt ? <TimeLeft until={item.holdExpiresAt} before="" after="ended" ago /> : "–"}
             </Td>
             <Td>
               <Time at={item.openedAt} as="short" />

@@ -27,7 +27,7 @@ export function PersonRow({ person, onTask }: PersonRowProps) {
       <Td>{person.lastSignInAt ? <Time at={person.lastSignInAt} /> : "never"}</Td>
       {onTask && (
         <Td>
-          <div className="flex flex-wrap gap-1.5">
+          <div className="flex gap-1.5 whitespace-nowrap">
             <Task name="Roles" of={person.name} onPress={() => onTask("roles")} />
             <Task name="Reset password" of={person.name} onPress={() => onTask("reset")} />
             {isActive ? (

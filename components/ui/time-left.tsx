@@ -21,10 +21,12 @@ type TimeLeftProps = {
   /** Words before the span while it runs, and after it is over. */
   before: string;
   after: string;
+  /** What is over is a moment past ("ended 3 h ago"), not a span that still grows ("overdue by 3 h"). */
+  ago?: boolean;
 };
 
 /** "due in 2 h 05 min", "overdue by 3 h"; the moment itself on hover. */
-export function TimeLeft({ until, before, after }: TimeLeftProps) {
+export function TimeLeft({ until, before, after, ago = false }: TimeLeftProps) {
   const nowMs = useNowMs();
   if (nowMs === null) {
     return (
@@ -42,6 +44,7 @@ export function TimeLeft({ until, before, after }: TimeLeftProps) {
       className={`whitespace-nowrap tabular-nums ${over ? "font-strong" : ""}`}
     >
       {over ? after : before} {spanWords(Math.abs(leftMs))}
+      {over && ago && " ago"}
     </time>
   );
 }
