@@ -15,7 +15,7 @@ export function CaseLine({ view }: { view: CaseView }) {
   const { transaction } = view;
   return (
     <p aria-hidden="true" className="truncate">
-      <span className="font-strong">Case {view.number}</span>{" "}
+      <span className="mr-1 font-strong">Case {view.number}</span>{" "}
       <Amount amount={transaction.amount} currency={transaction.currency} />{" "}
       {transaction.direction === "incoming" ? "from" : "to"} {counterpartyOf(transaction)}
     </p>

@@ -116,7 +116,7 @@ function Bar({ row, onOpen }: { row: BarRow; onOpen?: () => void }) {
         style={span}
       />
       <span
-        className={`figures absolute top-0 right-0 ${row.kind === "total" ? "font-strong" : ""} ${right ? "sm:right-auto sm:left-[calc(var(--end)+0.375rem)]" : "sm:right-[calc(100%-var(--end)+0.375rem)]"}`}
+        className={`figures absolute top-0 right-0 bg-paper ${row.kind === "total" ? "font-strong" : ""} ${right ? "sm:right-auto sm:left-[calc(var(--end)+0.375rem)]" : "sm:right-[calc(100%-var(--end)+0.375rem)]"}`}
       >
         {signedDecibans(row.decibans)}
       </span>
