@@ -15,7 +15,7 @@ import { summaryRecipients } from "../schema/mail";
 import type { DemoTransaction, Truth } from "./payment";
 import { Chance } from "./random";
 import { DEMO_DAYS, scenarioDays } from "./scenario";
-import { correctMistake, type Mistake, workShift } from "./shift";
+import { correctMistake, type Mistake, MOST_SECONDS_A_CASE, workShift } from "./shift";
 import { type Clock, clockFrom, contextAt, type Team } from "./team";
 
 const HOUR_MS = 3_600_000;
@@ -23,6 +23,7 @@ const SOURCE = "core-banking";
 /** Hours of the day at which the payments since the last one have come in. */
 const DELIVERIES = [6, 10, 14, 18, 24];
 const CASES_A_SHIFT = 3;
+const LONGEST_SHIFT_MS = CASES_A_SHIFT * MOST_SECONDS_A_CASE * 1_000;
 /** Two of the reviewers are away in the end, so that whoever looks around finds work waiting. */
 const SHORT_DAYS = 3;
 const CHARGEBACK_AFTER_DAYS = 11;
@@ -79,7 +80,8 @@ export async function liveMonth(
       clock.set(until);
       await deliver(ctx, clock, happened, from, until);
       from = until;
-      if (hour >= 24 || until >= now) continue;
+      // No shift that might last past `now`: nobody has yet decided in the future, and undo goes by the newest decision.
+      if (hour >= 24 || until.getTime() + LONGEST_SHIFT_MS > now.getTime()) continue;
       const isShort = hour < 10 || dayNumber >= DEMO_DAYS - SHORT_DAYS;
       for (const reviewer of isShort ? team.reviewer.slice(0, 1) : team.reviewer) {
         mistakes.push(...(await workShift(ctx, clock, chance, reviewer, CASES_A_SHIFT, truthOf)));

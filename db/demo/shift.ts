@@ -26,6 +26,9 @@ const NOTES = {
   customer_misuse: ["Delivered and signed for; the customer disputes it now."],
 };
 
+/** The longest that a reviewer looks at one case. */
+export const MOST_SECONDS_A_CASE = 420;
+
 export type Mistake = { caseId: string; truth: Truth };
 
 /** One reviewer's part of a shift: takes what the queue serves and decides it, now and then wrongly. */
@@ -41,7 +44,7 @@ export async function workShift(
   for (let count = 0; count < cases; count++) {
     const view = await takeNextCase(contextAt(ctx, reviewer, clock), { notThese: [] });
     if (!view) break;
-    clock.set(new Date(clock.now().getTime() + chance.whole(60, 420) * 1_000));
+    clock.set(new Date(clock.now().getTime() + chance.whole(60, MOST_SECONDS_A_CASE) * 1_000));
     const truth = truthOf(view.transaction.externalId);
     if (await setAside(contextAt(ctx, reviewer, clock), clock, chance, view)) continue;
     const finding = findingOf(chance, truth);
