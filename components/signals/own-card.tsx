@@ -67,8 +67,10 @@ export function OwnCard({ signal, mayManage, onEdit, onAct }: OwnCardProps) {
           </dd>
           <dt className="text-soft">Last changed</dt>
           <dd>
-            <Time at={signal.changedAt} as="day" />, defined by {signal.createdBy}
+            <Time at={signal.changedAt} as="day" />
           </dd>
+          <dt className="text-soft">Defined by</dt>
+          <dd>{signal.createdBy}</dd>
         </dl>
         {mayManage && !waiting && (
           <div className="flex flex-wrap gap-2">

@@ -1,5 +1,5 @@
 import "server-only";
-import { and, asc, eq, inArray, lte, ne, sql } from "drizzle-orm";
+import { and, asc, eq, inArray, isNull, lte, ne, sql } from "drizzle-orm";
 import { cases } from "@/db/schema/cases";
 import { transactions } from "@/db/schema/transactions";
 import { inTransaction } from "@/db/tx";
@@ -13,7 +13,7 @@ const BATCH = 500;
 
 /**
  * Alerts that nobody reached in their lifetime close unlabelled, and so do the cases of payments that were decided
- * together with one and then undone. Those in somebody's hands, set aside or escalated
+ * together with one and then undone. Those in somebody's hands, assigned, set aside or escalated
  * stay, and so do held payments and samples: leaving samples out would bias the estimate they are drawn for.
  */
 export async function lapseUnreachedCases(ctx: Context, signal: AbortSignal): Promise<void> {
@@ -36,6 +36,7 @@ async function lapseBatch(ctx: Context): Promise<string[]> {
         and(
           eq(cases.state, "open"),
           lte(cases.lapsesAt, now),
+          isNull(cases.assignedTo),
           ne(cases.kind, "sample"),
           ne(transactions.paymentState, "held"),
         ),

@@ -19,8 +19,9 @@ export type Workload = {
 /** What the team had to do in the week and what was left of it. */
 export async function readWorkload(db: Executor, { start, end }: WeekInterval, now: Date): Promise<Workload> {
   const asOf = end < now ? end : now;
-  const within = (column: typeof cases.openedAt | typeof cases.decidedAt | typeof cases.lapsesAt) =>
+  const within = (column: typeof cases.openedAt | typeof cases.decidedAt | typeof cases.changedAt) =>
     and(gte(column, start), lt(column, end));
+  // A lapsed case never changes again: its last change is when it closed, which may be later than planned.
   const isLapsed = eq(cases.state, "lapsed");
   const undecided = and(
     lt(cases.openedAt, asOf),
@@ -28,7 +29,7 @@ export async function readWorkload(db: Executor, { start, end }: WeekInterval, n
     or(
       inArray(cases.state, [...UNDECIDED_STATES]),
       gte(cases.decidedAt, asOf),
-      and(isLapsed, gte(cases.lapsesAt, asOf)),
+      and(isLapsed, gte(cases.changedAt, asOf)),
     ),
   );
   const [opened, decided, lapsed, waiting] = await Promise.all([
@@ -37,7 +38,7 @@ export async function readWorkload(db: Executor, { start, end }: WeekInterval, n
     db
       .select({ n: count() })
       .from(cases)
-      .where(and(isLapsed, within(cases.lapsesAt))),
+      .where(and(isLapsed, within(cases.changedAt))),
     db
       .select({ n: count(), overdue: count(lt(cases.dueAt, asOf)) })
       .from(cases)

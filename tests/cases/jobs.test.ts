@@ -157,6 +157,8 @@ describe("when a hold ends undecided", () => {
 describe("when nobody reaches an alert in its lifetime", () => {
   test("it lapses unlabelled, while samples, held payments and cases in somebody's hands stay", async () => {
     const [alert, sample, held, waits] = [await one(), await one(), await one({ held: true }), await one()];
+    const assigned = await one();
+    await world.db.update(cases).set({ assignedTo: mira.personId }).where(eq(cases.id, assigned.caseId));
     await world.db
       .update(cases)
       .set({ kind: "sample", sampleProbability: 0.03 })
@@ -170,7 +172,8 @@ describe("when nobody reaches an alert in its lifetime", () => {
     await lapseUnreachedCases(job(days(14)), signal);
     expect(await rowOf(alert.caseId)).toMatchObject({ state: "lapsed", decidedAt: null });
     expect((await paymentOf(alert))?.label).toBeNull();
-    for (const { caseId } of [sample, held]) expect(await rowOf(caseId)).toMatchObject({ state: "open" });
+    for (const { caseId } of [sample, held, assigned])
+      expect(await rowOf(caseId)).toMatchObject({ state: "open" });
     expect(await rowOf(waits.caseId)).toMatchObject({ state: "waiting" });
     const [entry] = await batches("cases.lapsed");
     expect(JSON.parse(entry?.facts as string).caseIds).toContain(alert.caseId);

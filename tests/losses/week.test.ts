@@ -198,10 +198,17 @@ test("the workload is what came in, what was done, and what was left when the we
     return insertCase(own, transactionId, at, more);
   };
   const waiting = { state: "open" as const, decidedAt: null };
+  // It lapsed when it was closed, which may be later than it was to.
+  const planned = new Date("2026-03-11T00:00:00Z");
   // Opened before the week: one decided in it, one after it, one lapsed in it, one overdue and still waiting.
   await open("2026-03-10T00:00:00Z", { decidedAt: WEDNESDAY });
   await open("2026-03-10T00:00:00Z", { decidedAt: NEXT_MONDAY });
-  await open("2026-03-05T00:00:00Z", { ...waiting, state: "lapsed", lapsesAt: WEDNESDAY });
+  await open("2026-03-05T00:00:00Z", {
+    ...waiting,
+    state: "lapsed",
+    lapsesAt: planned,
+    changedAt: WEDNESDAY,
+  });
   await open("2026-03-10T00:00:00Z", waiting);
   // Opened in it: one in time at its end, one decided.
   await open("2026-03-22T12:00:00Z", { ...waiting, dueAt: new Date("2026-03-23T12:00:00Z") });
