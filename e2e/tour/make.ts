@@ -1,5 +1,5 @@
 import path from "node:path";
-import { type Browser, chromium, type Page } from "@playwright/test";
+import { type Browser, chromium, expect, type Page } from "@playwright/test";
 import type { Role } from "@/lib/auth/codes";
 import type { QueueView } from "@/lib/cases/schema";
 import { startApp } from "@/tests/support/app";
@@ -38,10 +38,20 @@ const PICTURES: Record<string, Picture> = {
   "desk-dark": { as: "reviewer", dark: true, zoom: 2 / 3, show: openHeaviest },
   floor: { as: "supervisor", show: open("Floor") },
   policy: { as: "supervisor", show: open("Policy") },
+  learning: { as: "supervisor", zoom: 0.8, show: openLearning },
   losses: { as: "risk_manager", show: open("Losses") },
   trail: { as: "auditor", show: async (page) => void (await page.goto("/trail?act=case.decided")) },
   intake: { as: "supervisor", show: importWithFaults },
 };
+
+/** With the best weights in hindsight, which a job works out soon after the start. */
+async function openLearning(page: Page): Promise<void> {
+  const reckoned = async () => {
+    await page.goto("/learning");
+    return page.getByText(/over \d+ labels, reckoned/).isVisible();
+  };
+  await expect.poll(reckoned, { timeout: 120_000, intervals: [5_000] }).toBe(true);
+}
 
 /** The case that the evidence speaks against most, of those that are anybody's. */
 async function openHeaviest(page: Page): Promise<void> {
