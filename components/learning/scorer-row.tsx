@@ -48,7 +48,7 @@ export function ScorerRow({ scorer, acts }: ScorerRowProps) {
       ) : (
         <Td numeric className="whitespace-nowrap">
           {signedNats(regret.value)}
-          {certificate !== null && <CellNote>log as it stands: at most {natsText(certificate)}</CellNote>}
+          {certificate !== null && <CellNote>log now: at most {natsText(certificate)}</CellNote>}
           <CellNote>n {countText(regret.labels)}</CellNote>
         </Td>
       )}
