@@ -1,6 +1,7 @@
 import { probabilityOf } from "../../decibans";
 import { valueAtRisk } from "../../policy/rules";
 import type { PolicyTerms } from "../../policy/schema";
+import { atOnce } from "../../steps";
 import { Best } from "./best";
 import { sortDescending } from "./sort";
 
@@ -35,16 +36,19 @@ export type Keys = Omit<Ranking, "order" | "expiring"> & { expiring: readonly nu
  * - learning value: leverage × p(1 − p), where a verdict teaches the scorer most.
  */
 export const rank = (cases: Rankable, terms: PolicyTerms, nowMs: number): Ranking =>
-  inOrder(keysOf(cases, terms, nowMs));
+  inOrder(atOnce(keysInSteps(cases, terms, nowMs)));
 
-/** The first half of `rank`, for those who let others have their turn before the second. */
-export function keysOf(cases: Rankable, terms: PolicyTerms, nowMs: number): Keys {
+const CASES_IN_STEP = 8_192;
+
+/** The first half of `rank`, with a pause now and then for those who let others have their turn. */
+export function* keysInSteps(cases: Rankable, terms: PolicyTerms, nowMs: number): Generator<void, Keys> {
   const { count } = cases;
   const keys = new Float64Array(count);
   const expiring: number[] = [];
   const windowMs = terms.expiringMinutes * 60_000;
   let goodUntilMs = Number.POSITIVE_INFINITY;
   for (let i = 0; i < count; i++) {
+    if (i % CASES_IN_STEP === CASES_IN_STEP - 1) yield;
     keys[i] = orderKey(cases, i, terms);
     const expiresMs = cases.holdEndMs(i);
     if (expiresMs === Number.POSITIVE_INFINITY || expiresMs <= nowMs) continue;

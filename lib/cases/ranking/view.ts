@@ -1,10 +1,10 @@
 import "server-only";
-import { Breath } from "../../breath";
+import { inBreaths } from "../../breath";
 import type { HeldScorer } from "../../learning/held-scorer";
 import type { PolicyInForce } from "../../policy/read";
 import type { Thresholds } from "../../policy/rules";
 import type { Reader } from "../visibility";
-import { inOrder, isBehind, keysOf, type Place, type Ranking } from "./order";
+import { inOrder, isBehind, keysInSteps, type Place, type Ranking } from "./order";
 import type { CaseFacts, WaitingCases } from "./waiting-cases";
 
 /** The waiting cases in their order at one version; index 0 is the best case. */
@@ -33,10 +33,8 @@ export class RankingView {
     thresholds: Thresholds,
     now: Date,
   ): Promise<RankingView> {
-    const breath = new Breath();
     const slots = cases.slotsByArrival();
-    const keys = keysOf(cases.rankable(slots), policy.terms, now.getTime());
-    await breath.take();
+    const keys = await inBreaths(keysInSteps(cases.rankable(slots), policy.terms, now.getTime()));
     return new RankingView(cases, held, policy, thresholds, slots, inOrder(keys), now.getTime());
   }
 

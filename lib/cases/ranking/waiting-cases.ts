@@ -103,7 +103,7 @@ export class WaitingCases {
   }
 
   slotsByArrival(): Uint32Array {
-    return Uint32Array.from(this.arrival);
+    return new Uint32Array(this.arrival);
   }
 
   /** The cases in these slots, for ranking. */
