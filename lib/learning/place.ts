@@ -4,20 +4,8 @@ import type { Executor } from "@/db/client";
 import { labelLog } from "@/db/schema/scorers";
 import type { LabelKind } from "../decisions/codes";
 import type { Label } from "../scorer";
+import { findingColumns } from "./find-removals";
 import { type FindingRow, findingThatHolds } from "./finding";
-
-const FINDING = {
-  seq: labelLog.seq,
-  place: labelLog.place,
-  kind: labelLog.kind,
-  label: labelLog.label,
-  transactionId: labelLog.transactionId,
-  caseId: labelLog.caseId,
-  decisionId: labelLog.decisionId,
-  outcomeId: labelLog.outcomeId,
-  personId: labelLog.personId,
-  at: labelLog.at,
-};
 
 export type LabelInForce = { place: number; label: Label; kind: LabelKind; decisionId: string | null };
 
@@ -29,7 +17,7 @@ export async function labelsInForce(
   const held = new Map<string, LabelInForce>();
   if (transactionIds.length === 0) return held;
   const rows = await db
-    .select(FINDING)
+    .select({ ...findingColumns, place: labelLog.place })
     .from(labelLog)
     .where(inArray(labelLog.transactionId, [...transactionIds]))
     .orderBy(asc(labelLog.seq));
@@ -74,7 +62,7 @@ export async function settledWithoutLabel(
 /** All that was said at one place of the log, oldest first. */
 export async function rowsAtPlace(db: Executor, place: number): Promise<FindingRow[]> {
   const rows = await db
-    .select(FINDING)
+    .select({ ...findingColumns, place: labelLog.place })
     .from(labelLog)
     .where(or(eq(labelLog.seq, place), eq(labelLog.place, place)))
     .orderBy(asc(labelLog.seq));

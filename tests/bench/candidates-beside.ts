@@ -1,11 +1,8 @@
-import { createHash } from "node:crypto";
-import { monitorEventLoopDelay, performance } from "node:perf_hooks";
 import { eq } from "drizzle-orm";
 import { createDatabase, type Database } from "@/db/client";
 import { Chance } from "@/db/demo/random";
 import { people } from "@/db/schema/people";
 import { scorers } from "@/db/schema/scorers";
-import { transactions } from "@/db/schema/transactions";
 import { inTransaction } from "@/db/tx";
 import type { PersonActor } from "@/lib/context";
 import { environment } from "@/lib/env";
@@ -22,6 +19,8 @@ import type { Row } from "../support/bench";
 import { contextOf } from "../support/people";
 import { ms } from "./support/figures";
 import { ensureInstalled } from "./support/install";
+import { measured } from "./support/measured";
+import { insertPayment } from "./support/payment";
 
 const LABELS = 10_000;
 const LABELS_IN_ACT = 500;
@@ -81,40 +80,11 @@ export async function run(): Promise<Row[]> {
   }
 }
 
-async function measured(work: () => Promise<unknown>): Promise<{ ms: number; longestHoldMs: number }> {
-  const delay = monitorEventLoopDelay({ resolution: 1 });
-  delay.enable();
-  const started = performance.now();
-  await work();
-  const took = performance.now() - started;
-  // One more turn, so that a hold at the very end is seen too.
-  await new Promise((resolve) => setTimeout(resolve, 5));
-  delay.disable();
-  return { ms: took, longestHoldMs: delay.max / 1e6 };
-}
-
 /** Labels of one payment over and over: what is measured does not look at the payment. */
 async function learnMany(db: Database): Promise<void> {
   const chance = new Chance(5);
-  const transactionId = newId();
+  const transactionId = await insertPayment(db);
   const now = new Date();
-  await db.insert(transactions).values({
-    id: transactionId,
-    source: "bench",
-    externalId: transactionId,
-    contentHash: createHash("sha256").update(transactionId).digest(),
-    receivedAt: now,
-    occurredAt: now,
-    amountMinor: 1_000,
-    currency: "EUR",
-    amountBaseMinor: 1_000,
-    direction: "outgoing",
-    channel: "card_remote",
-    accountId: "account",
-    counterpartyId: "shop",
-    action: "review",
-    paymentState: "settled",
-  });
   const source = { transactionId, caseId: null, decisionId: null, outcomeId: null, personId: null };
   for (let done = 0; done < LABELS; done += LABELS_IN_ACT) {
     await inTransaction(db, async (tx) => {

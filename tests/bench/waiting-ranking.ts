@@ -1,5 +1,4 @@
 import { createHash } from "node:crypto";
-import { monitorEventLoopDelay, performance } from "node:perf_hooks";
 import { createDatabase, type Database } from "@/db/client";
 import { vectorToBytes } from "@/db/columns";
 import { Chance } from "@/db/demo/random";
@@ -19,6 +18,7 @@ import { ensureFirstPolicy } from "@/lib/policy/install";
 import { DIMENSION } from "@/lib/signals/catalogue";
 import type { Row } from "../support/bench";
 import { ms, quantile } from "./support/figures";
+import { measured } from "./support/measured";
 
 const WAITING_CASES = 100_000;
 const LABELS = 60;
@@ -69,18 +69,6 @@ export async function run(): Promise<Row[]> {
   } finally {
     await close();
   }
-}
-
-async function measured(work: () => Promise<unknown>): Promise<{ ms: number; longestHoldMs: number }> {
-  const delay = monitorEventLoopDelay({ resolution: 1 });
-  delay.enable();
-  const started = performance.now();
-  await work();
-  const took = performance.now() - started;
-  // One more turn, so that a hold at the very end is seen too.
-  await new Promise((resolve) => setTimeout(resolve, 5));
-  delay.disable();
-  return { ms: took, longestHoldMs: delay.max / 1e6 };
 }
 
 function systemContext(db: Database): Context {
